@@ -1,0 +1,204 @@
+/* read.c - one reader for each kind of parameter, and what ties parameters together. */
+#include "read.h"
+#include "models.h"
+#include "words.h"
+
+#include <math.h>
+#include <string.h>
+
+static bool bounded(const param *p)
+{
+    return p->low != 0 || p->high != 0;
+}
+
+static bool in_bounds(const param *p, double x)
+{
+    if (!bounded(p)) return true;
+    return (p->open & LOW_OPEN ? x > p->low : x >= p->low) &&
+           (p->open & HIGH_OPEN ? x < p->high : x <= p->high);
+}
+
+static status refuse_bounds(const param *p, double x, report *r)
+{
+    bool low = p->low > -HUGE_VAL, high = p->high < HUGE_VAL;
+    const char *above = p->open & LOW_OPEN ? "above" : "at least";
+    const char *below = p->open & HIGH_OPEN ? "below" : "at most";
+    if (low && high)
+        return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g and %s %g", p->name, x, above,
+                      p->low, below, p->high);
+    if (low)
+        return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g", p->name, x, above, p->low);
+    return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g", p->name, x, below, p->high);
+}
+
+static status no_single(const param *p, const value *one, const char *wanted, report *r)
+{
+    if (one->is == IS_TABLE)
+        return refuse(r, BAD_KIND, "%s is %zu x %zu cells, but must be %s", p->name,
+                      one->table.rows, one->table.cols, wanted);
+    if (one->is == IS_TEXT)
+        return refuse(r, BAD_KIND, "%s is the text \"%s\", but must be %s", p->name, one->text,
+                      wanted);
+    if (one->is == IS_NUMBER)
+        return refuse(r, BAD_KIND, "%s is the number %g, but must be %s", p->name, one->number,
+                      wanted);
+    return refuse(r, BAD_KIND, "%s is empty, but must be %s", p->name, wanted);
+}
+
+static status read_number(const param *p, const value *v, argument *a, report *r)
+{
+    value one = single_of(v);
+    if (one.is == IS_NOTHING && p->optional) return OK;
+    if (one.is != IS_NUMBER)
+        return no_single(p, &one, p->kind == WHOLE ? "one whole number" : "one number", r);
+    if (fault_in(one.number) != OK)
+        return refuse(r, fault_in(one.number), "%s is an error", p->name);
+    if (!isfinite(one.number))
+        return refuse(r, OUT_OF_DOMAIN, "%s is not a finite number", p->name);
+    if (!in_bounds(p, one.number)) return refuse_bounds(p, one.number, r);
+    if (p->kind == WHOLE && one.number != floor(one.number))
+        return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be a whole number", p->name,
+                      one.number);
+    a->given = true;
+    a->number = one.number;
+    return OK;
+}
+
+static status read_range(const param *p, const value *v, argument *a, report *r)
+{
+    status s = read_numbers(p->name, v, a, r);
+    if (s != OK) return s;
+    if (a->data.at == &a->number && !in_bounds(p, a->number)) return refuse_bounds(p, a->number, r);
+    return OK;
+}
+
+static status read_word(const param *p, const value *v, argument *a, report *r)
+{
+    value one = single_of(v);
+    if (one.is == IS_NOTHING && p->optional) return OK;
+    if (one.is != IS_TEXT) return no_single(p, &one, "a word", r);
+    int place = word_in(p->words, one.text);
+    if (place < 0) {
+        const char *words = listed(r->pool, p->words);
+        return words ? refuse(r, BAD_KIND, "%s is \"%s\", but must be %s", p->name, one.text, words)
+                     : NO_MEMORY;
+    }
+    a->given = true;
+    a->word = (size_t)place;
+    return OK;
+}
+
+/* Each of the words must be known, unless the list is empty. */
+static status read_words(const param *p, const value *v, argument *a, report *r)
+{
+    value one = single_of(v);
+    if (one.is == IS_NOTHING && p->optional) return OK;
+    if (one.is != IS_TEXT) return no_single(p, &one, "a text of one or more words", r);
+    char *text = tidy_words(r->pool, one.text), *copy = text ? pool_text(r->pool, text) : NULL;
+    if (!copy) return NO_MEMORY;
+    for (char *word = copy, *next; p->words && word && *word; word = next) {
+        next = strchr(word, ' ');
+        if (next) *next++ = '\0';
+        if (word_in(p->words, word) >= 0) continue;
+        const char *words = listed(r->pool, p->words);
+        return words ? refuse(r, BAD_KIND, "%s has the word \"%s\", but knows only %s", p->name,
+                              word, words)
+                     : NO_MEMORY;
+    }
+    a->given = true;
+    a->text = text;
+    return OK;
+}
+
+/* How many lines an argument speaks of, and their names. */
+static size_t lines_of(const argument *a, const char ***names)
+{
+    if (a->param->kind == MODEL) return *names = a->model->lines, a->model->dimension;
+    if (a->param->kind == MARGINS) return *names = a->margins.names, a->margins.lines;
+    if (a->param->kind == TERMS) return *names = a->terms.names, a->terms.lines;
+    return *names = a->data.names, a->data.cols;
+}
+
+static status check_length(const argument *a, const argument *earlier, report *r)
+{
+    if (a->data.rows == earlier->data.rows) return OK;
+    const char *name = a->param->name, *other = earlier->param->name;
+    return refuse(r, BAD_KIND, "%s is %zu long, but %s is %zu long%s", name, a->data.rows, other,
+                  earlier->data.rows,
+                  a->header != earlier->header
+                      ? " (only one of them has a header, which is not counted)"
+                      : "");
+}
+
+static status check_fit(const argument *a, const argument *earlier, report *r)
+{
+    if (a->param->kind == COLUMN) return check_length(a, earlier, r);
+    const char **names, **theirs;
+    size_t lines = lines_of(a, &names), wanted = lines_of(earlier, &theirs);
+    if (lines != wanted)
+        return refuse(r, BAD_KIND, "%s has %zu line%s, but %s has %zu", a->param->name, lines,
+                      plural(lines), earlier->param->name, wanted);
+    for (size_t i = 0; names && theirs && i < lines; i++)
+        if (*names[i] && *theirs[i] && !same_word(names[i], theirs[i]))
+            return refuse(r, BAD_KIND, "%s names line %zu \"%s\", but %s names it \"%s\"",
+                          a->param->name, i + 1, names[i], earlier->param->name, theirs[i]);
+    return OK;
+}
+
+static status read_given(const param *p, const value *v, const char **names, argument *a, report *r)
+{
+    a->given = true;
+    switch (p->kind) {
+    case COLUMN: return read_column(p->name, v, a, r);
+    case DATA: return read_data(p->name, v, true, a, r);
+    case FULL_DATA: return read_data(p->name, v, false, a, r);
+    case MATRIX: return read_matrix(v, p->name, &a->data, &a->header, r);
+    case MODEL: return read_copula(v, p->name, &a->model, r);
+    case MARGINS: return read_margins(p->name, v, &a->margins, r);
+    case TERMS: return read_terms(p->name, v, names, &a->terms, r);
+    case AGGREGATE: return read_aggregate(p->name, v, &a->terms, r);
+    case SETTINGS: return read_settings(p, v, &a->settings, r);
+    default: return read_range(p, v, a, r);
+    }
+}
+
+/* The adaptor reads what it takes, but a number that is none goes no further. */
+static status read_raw(const param *p, const value *v, argument *a, report *r)
+{
+    a->given = true;
+    if (v->is == IS_NUMBER && !isfinite(v->number))
+        return refuse(r, OUT_OF_DOMAIN, "%s is not a finite number", p->name);
+    const table *t = &v->table;
+    for (size_t i = 0; v->is == IS_TABLE && i < t->rows * t->cols; i++) {
+        double x = t->at[i];
+        if (!isfinite(x) && !marks_gap(x))
+            return number_at(p->name, t, i / t->cols, i % t->cols, &x, r);
+    }
+    return OK;
+}
+
+status read_argument(const param *p, const value *v, const argument *earlier, argument *a,
+                     report *r)
+{
+    *a = (argument){ .number = p->otherwise, .raw = v, .param = p };
+    if (p->kind == WORD || p->kind == WORDS || p->kind == NUMBER || p->kind == WHOLE) {
+        if (v->is == IS_NOTHING && !p->optional)
+            return refuse(r, BAD_KIND, "%s is missing", p->name);
+        if (p->kind == WORD) return read_word(p, v, a, r);
+        return p->kind == WORDS ? read_words(p, v, a, r) : read_number(p, v, a, r);
+    }
+    if (v->is == IS_NOTHING || (v->is == IS_TEXT && !*v->text && p->optional)) {
+        if (p->optional) {
+            static const setting none[MAX_SETTINGS];
+            a->settings = none;
+            return OK;
+        }
+        return refuse(r, BAD_KIND, "%s is missing", p->name);
+    }
+    if (p->kind == RAW) return read_raw(p, v, a, r);
+    const char **names = NULL;
+    if (earlier && earlier->given) lines_of(earlier, &names);
+    status s = read_given(p, v, names, a, r);
+    if (s == OK && a->header) remark(r, "header of %s skipped", p->name);
+    return s == OK && earlier && earlier->given ? check_fit(a, earlier, r) : s;
+}

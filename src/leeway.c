@@ -1,0 +1,157 @@
+/* leeway.c - how far entries of a correlation matrix can go, and triples that have gone too far.
+ *
+ * Method: with K the correlations among the other lines, a and b those of the two lines with them,
+ * the matrix has no negative eigenvalue exactly when K has none, a and b are in the range of K, and
+ * the Schur complement
+ *     1 - a' K^-1 a        x - a' K^-1 b
+ *     x - a' K^-1 b        1 - b' K^-1 b
+ * has none (Horn & Johnson, Matrix Analysis, 2nd edition 2013, theorem 7.7.9), which bounds x. K^-1
+ * is taken from the eigenvalues of K, without those that are zero to rounding. The lowest
+ * eigenvalue of a triple is the lowest root of its characteristic cubic, by cosines (Viete).
+ * Special cases: pairs are free in [-1;1]. A triple needs no decomposition: K is 1.
+ * Accuracy: 1e-15 for triples and about 1e-15 divided by the lowest eigenvalue of K else.
+ */
+#include "leeway.h"
+#include "linear.h"
+
+#include <math.h>
+
+/* 1 - a' K^-1 a, 1 - b' K^-1 b and a' K^-1 b */
+typedef struct {
+    double rest_a, rest_b, across;
+    bool in_range;
+} complement;
+
+static complement decomposed(const double *values, const double *vectors, const double *a,
+                             const double *b, size_t n)
+{
+    complement c = { 1, 1, 0, true };
+    double zero = 4e-16 * (double)n * fmax(1, values[n - 1]), nothing = 1e-7 * (double)n;
+    for (size_t k = 0; k < n; k++) {
+        double along_a = 0, along_b = 0;
+        for (size_t i = 0; i < n; i++) {
+            along_a += vectors[k * n + i] * a[i];
+            along_b += vectors[k * n + i] * b[i];
+        }
+        if (values[k] > zero) {
+            c.rest_a -= along_a * along_a / values[k];
+            c.rest_b -= along_b * along_b / values[k];
+            c.across += along_a * along_b / values[k];
+        } else if (values[k] < -1e-12 * (double)n || fmax(fabs(along_a), fabs(along_b)) > nothing) {
+            c.in_range = false;
+        }
+    }
+    return c;
+}
+
+static status schur_complement(const double *matrix, size_t d, size_t row, size_t column,
+                               complement *c, pool *p)
+{
+    size_t n = d - 2, i = 0;
+    eigen_room room;
+    status s = make_eigen_room(&room, n, true, p);
+    if (s) return s;
+    double *others = pool_take(p, n, n * sizeof *others);
+    double *values = pool_take(p, 3 * n, sizeof *values);
+    if (!others || !values) return NO_MEMORY;
+    double *a = values + n, *b = values + 2 * n;
+    for (size_t from = 0; from < d; from++) {
+        if (from == row || from == column) continue;
+        size_t j = 0;
+        for (size_t to = 0; to < d; to++)
+            if (to != row && to != column) others[i * n + j++] = matrix[from * d + to];
+        a[i] = matrix[row * d + from];
+        b[i++] = matrix[column * d + from];
+    }
+    s = eigen(others, values, &room);
+    if (s) return s;
+    *c = decomposed(values, others, a, b, n);
+    return OK;
+}
+
+void third_correlation(double r_ab, double r_bc, double *low, double *high)
+{
+    double reach = sqrt((1 - r_ab) * (1 + r_ab) * ((1 - r_bc) * (1 + r_bc)));
+    *low = fmax(-1, r_ab * r_bc - reach);
+    *high = fmin(1, r_ab * r_bc + reach);
+}
+
+static status from_complement(const complement *c, size_t d, double *low, double *high)
+{
+    double rounding = 1e-12 * (double)d;
+    if (!c->in_range || c->rest_a < -rounding || c->rest_b < -rounding) return OUT_OF_DOMAIN;
+    double reach = sqrt(fmax(0, c->rest_a) * fmax(0, c->rest_b));
+    *low = fmin(1, fmax(-1, c->across - reach));
+    *high = fmax(-1, fmin(1, c->across + reach));
+    return OK;
+}
+
+status entry_leeway(const double *matrix, size_t d, size_t row, size_t column, double *low,
+                    double *high, pool *p)
+{
+    if (row >= d || column >= d || row == column) return OUT_OF_DOMAIN;
+    if (d == 2) {
+        *low = -1;
+        *high = 1;
+        return OK;
+    }
+    if (d == 3) {
+        size_t other = 3 - row - column;
+        double a = matrix[row * 3 + other], b = matrix[other * 3 + column];
+        if (!(fabs(a) <= 1 && fabs(b) <= 1)) return OUT_OF_DOMAIN;
+        third_correlation(a, b, low, high);
+        return OK;
+    }
+    complement c;
+    struct block *mark = p->last;
+    status s = schur_complement(matrix, d, row, column, &c, p);
+    pool_back_to(p, mark);
+    return s ? s : from_complement(&c, d, low, high);
+}
+
+/* The lowest eigenvalue of three correlations. The cubic of the matrix less I has no square term.
+ */
+static double lowest_of_three(double a, double b, double c)
+{
+    double size = sqrt((a * a + b * b + c * c) / 3);
+    if (size == 0) return 1;
+    double turn = fmax(-1, fmin(1, a * b * c / (size * size * size)));
+    return 1 + 2 * size * cos((acos(turn) + 2 * acos(-1)) / 3);
+}
+
+static bool before(const clash *a, const clash *b)
+{
+    if (a->lowest != b->lowest) return a->lowest < b->lowest;
+    for (int k = 0; k < 2; k++)
+        if (a->line[k] != b->line[k]) return a->line[k] < b->line[k];
+    return a->line[2] < b->line[2];
+}
+
+/* Puts a clash into its place in a sorted list that holds at most `most`. */
+static void insert(clash *list, size_t *n, size_t most, const clash *c)
+{
+    if (*n == most && (most == 0 || !before(c, &list[*n - 1]))) return;
+    size_t k = *n < most ? (*n)++ : most - 1;
+    for (; k > 0 && before(c, &list[k - 1]); k--) list[k] = list[k - 1];
+    list[k] = *c;
+}
+
+status clashing_triples(const double *matrix, size_t d, size_t most, clash **found, size_t *n_found,
+                        size_t *n_all, pool *p)
+{
+    *n_found = *n_all = 0;
+    *found = pool_take(p, most ? most : 1, sizeof **found);
+    if (!*found) return NO_MEMORY;
+    for (size_t i = 0; i < d; i++)
+        for (size_t j = i + 1; j < d; j++)
+            for (size_t k = j + 1; k < d; k++) {
+                double a = matrix[i * d + j], b = matrix[i * d + k], c = matrix[j * d + k];
+                if (1 + 2 * a * b * c - a * a - b * b - c * c >= 0) continue;
+                clash now = { { i, j, k }, lowest_of_three(a, b, c), 0, 0 };
+                if (now.lowest >= -3e-12) continue;
+                ++*n_all;
+                third_correlation(a, b, &now.low, &now.high);
+                insert(*found, n_found, most, &now);
+            }
+    return OK;
+}

@@ -1,0 +1,40 @@
+/* spearman_inverse.c - Spearman's rho to the parameter.
+ *
+ * Method
+ *   rho grows with tau, so tau is searched for and theta is that of tau. The search is bracketed by
+ *   1 - sqrt(2 (1 - rho)) <= tau (Durbin & Stuart 1951) and tau <= rho, which holds for pairs that
+ *   are left-tail decreasing and right-tail increasing (Caperaa & Genest 1993), as all positively
+ *   dependent ones here are; for negative rho the signs change.
+ *
+ * Special cases
+ *   rho = 0 and, where the family reaches them, -1 and 1 have the theta of the same tau.
+ */
+#include "spearman_inverse.h"
+#include "root.h"
+
+#include <math.h>
+
+struct target {
+    const family *family;
+    double rho, df;
+};
+
+static double over(double tau, const void *with)
+{
+    const struct target *t = with;
+    double theta, rho;
+    if (t->family->theta_from_tau(tau, &theta) != OK) return NAN;
+    return t->family->rho_from_theta(theta, t->df, &rho) == OK ? rho - t->rho : NAN;
+}
+
+status theta_from_rho(const family *f, double rho, double df, double *theta)
+{
+    double tau = rho, size = fabs(rho);
+    status s = f->theta_from_tau(tau, theta);
+    if (s != OK || rho == 0 || size == 1) return s;
+
+    struct target t = { f, rho, df };
+    double nearest = copysign(fmax(0, 1 - sqrt(2 * (1 - size))), rho);
+    s = root_between(over, &t, nearest, rho, &tau);
+    return s == OK ? f->theta_from_tau(tau, theta) : NOT_SETTLED;
+}

@@ -1,0 +1,137 @@
+/* Tests of src/allocate.c. */
+#include "table.h"
+
+#include "../../src/allocate.h"
+
+enum { N = 100000, LINES = 5 };
+static double at[LINES * N];
+
+/* The normal model of tests/values/euler_allocation_elliptical.csv: its lines and the first
+ * five segments of Annex IV of Delegated Regulation (EU) 2015/35. The part of line i in the sd
+ * of the sum is cov(i, S) / sd(S). */
+static const double mean[LINES] = { 100, 80, 50, 120, 200 }, sd[LINES] = { 10, 8, 7.5, 12, 28 };
+
+static void read_matrix(double *matrix)
+{
+    struct csv *t = csv_read("law_correlation_matrices.csv");
+    for (size_t r = 0; r < t->rows; r++) {
+        size_t i = (size_t)csv_number(t, r, "i"), j = (size_t)csv_number(t, r, "j");
+        if (csv_is(t, r, "matrix", "nonlife_premium_reserve_segments") && i <= LINES && j <= LINES)
+            matrix[(i - 1) * LINES + j - 1] = csv_number(t, r, "value");
+    }
+    csv_free(t);
+}
+
+static void cholesky_factor(const double *matrix, double *factor)
+{
+    for (size_t i = 0; i < LINES; i++)
+        for (size_t j = 0; j <= i; j++) {
+            double sum = matrix[i * LINES + j];
+            for (size_t k = 0; k < j; k++) sum -= factor[i * LINES + k] * factor[j * LINES + k];
+            factor[i * LINES + j] = i == j ? sqrt(sum) : sum / factor[j * LINES + j];
+        }
+}
+
+static samples simulate(const double *matrix, size_t rows, uint64_t *random)
+{
+    double factor[LINES * LINES] = { 0 };
+    cholesky_factor(matrix, factor);
+    for (size_t i = 0; i < rows; i++) {
+        double z[LINES];
+        for (size_t j = 0; j < LINES; j++) {
+            double sum = 0;
+            z[j] = random_normal(random);
+            for (size_t k = 0; k <= j; k++) sum += factor[j * LINES + k] * z[k];
+            at[j * rows + i] = mean[j] + sd[j] * sum;
+        }
+    }
+    return (samples){ rows, LINES, at, NULL };
+}
+
+static void parts_of_a_normal_model(void **state)
+{
+    (void)state;
+    double matrix[LINES * LINES], variance = 0, alone[LINES];
+    uint64_t random = 3;
+    estimate part[LINES];
+    pool p = { 0 };
+    read_matrix(matrix);
+    samples losses = simulate(matrix, N, &random);
+    struct csv *t = csv_read("euler_allocation_elliptical.csv");
+    for (size_t r = 0; r < t->rows; r++) {
+        if (!csv_is(t, r, "model", "normal") || csv_is(t, r, "item", "total")) continue;
+        size_t j = (size_t)csv_number(t, r, "item") - 1;
+        assert_int_equal(allocate_tail(&losses, csv_number(t, r, "p"), &p, part, alone), OK);
+        assert_within(part[j].value, csv_number(t, r, "TVaR_contribution"), 4 * part[j].error);
+    }
+    csv_free(t);
+    for (size_t i = 0; i < LINES * LINES; i++)
+        variance += matrix[i] * sd[i / LINES] * sd[i % LINES];
+    assert_int_equal(allocate_covariance(&losses, &p, part, alone), OK);
+    for (size_t j = 0; j < LINES; j++) {
+        double covariance = 0;
+        for (size_t k = 0; k < LINES; k++) covariance += matrix[j * LINES + k] * sd[j] * sd[k];
+        assert_within(part[j].value, covariance / sqrt(variance), 4 * part[j].error);
+        assert_close(alone[j], sd[j], 0.01);
+    }
+    pool_empty(&p);
+}
+
+/* parts add up, and the error of a part of the sd is the spread of such parts */
+static void parts_add_up(void **state)
+{
+    (void)state;
+    double matrix[LINES * LINES], alone[LINES], sum = 0, squares = 0, errors = 0;
+    uint64_t random = 8;
+    size_t rounds = effort(300);
+    read_matrix(matrix);
+    for (size_t round = 0; round < rounds; round++) {
+        pool p = { 0 };
+        estimate part[LINES], whole[1], tvar;
+        double added = 0, added_tail = 0, level = 0.9, whole_alone;
+        const double *sums;
+        samples losses = simulate(matrix, 500, &random);
+        assert_int_equal(row_sums(&losses, &p, &sums), OK);
+        samples total = { 500, 1, (double *)sums, NULL };
+        assert_int_equal(allocate_tail(&losses, level, &p, part, alone), OK);
+        for (size_t j = 0; j < LINES; j++) added_tail += part[j].value;
+        assert_int_equal(tail_values_at_risk(sums, 500, &level, 1, &p, &tvar), OK);
+        assert_close(added_tail, tvar.value, 1e-13);
+        assert_int_equal(allocate_covariance(&losses, &p, part, alone), OK);
+        assert_int_equal(allocate_covariance(&total, &p, whole, &whole_alone), OK);
+        for (size_t j = 0; j < LINES; j++) added += part[j].value;
+        assert_close(added, whole_alone, 1e-12);
+        assert_close(whole->value, whole_alone, 1e-12);
+        sum += part[1].value;
+        squares += part[1].value * part[1].value;
+        errors += part[1].error;
+        pool_empty(&p);
+    }
+    double m = (double)rounds, spread = sqrt((squares - sum * sum / m) / (m - 1));
+    assert_close(errors / m, spread, 0.15);
+}
+
+static void refusals(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    double x[] = { 1, 2, 2, 1 }, alone[2];
+    estimate part[2];
+    const samples still = { 2, 2, x, NULL }, none = { 0, 2, x, NULL };
+    assert_int_equal(allocate_covariance(&still, &p, part, alone), NO_VARIATION);
+    assert_int_equal(allocate_covariance(&none, &p, part, alone), TOO_FEW);
+    assert_int_equal(allocate_tail(&none, 0.5, &p, part, alone), TOO_FEW);
+    p.fail_at = p.taken + 1;
+    assert_int_equal(allocate_tail(&still, 0.5, &p, part, alone), NO_MEMORY);
+    pool_empty(&p);
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(parts_of_a_normal_model),
+        cmocka_unit_test(parts_add_up),
+        cmocka_unit_test(refusals),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}

@@ -1,0 +1,131 @@
+/* Tests of src/margin_fit.c and of the fits in src/distributions/. */
+#include "margins.h"
+
+#include "../../src/margin_fit.h"
+
+/* tests/values/margin_fits.csv: score equations solved with 30 digits for the loss and expense
+ * data */
+static void agrees_with_many_digits(void **state)
+{
+    (void)state;
+    struct csv *want = csv_read("margin_fits.csv"), *data = csv_read("data_loss_alae.csv");
+    for (size_t i = 0; i < want->rows; i++) {
+        size_t n, row;
+        double *loss = csv_numbers(data, csv_text(want, i, "column"), NULL, NULL, &n);
+        margin_fit f;
+        const distribution *d = distribution_named(csv_text(want, i, "distribution"));
+        assert_non_null(d);
+        assert_int_equal(n, (size_t)csv_number(want, i, "n"));
+        assert_int_equal(fit_margin(d, loss, n, &f, &row), OK);
+        double b = csv_number(want, i, "b"), likelihood = csv_number(want, i, "log_likelihood");
+        assert_close(f.margin.a, csv_number(want, i, "a"), 1e-10);
+        if (isnan(b)) assert_true(isnan(f.margin.b) && isnan(f.error[1]));
+        else assert_close(f.margin.b, b, 1e-10);
+        assert_close(f.log_likelihood, likelihood, 1e-10);
+        assert_close(f.aic, 2 * (isnan(b) ? 1 : 2) - 2 * likelihood, 1e-10);
+        free(loss);
+    }
+    csv_free(want);
+    csv_free(data);
+}
+
+/* The errors are the spread of the fits to many samples, and the fits are centred on the truth. The
+ * threshold of a pareto has a bias of the size of its error. */
+static void errors_are_the_spread(void **state)
+{
+    (void)state;
+    static const struct { const char *word; double a, b; } truth[] = {
+        { "normal", 100, 20 }, { "lognormal", 6, 1.2 }, { "gamma", 0.7, 300 },
+        { "exponential", 250, NAN }, { "weibull", 1.6, 500 }, { "pareto", 2.2, 1000 },
+        { "lomax", 2.5, 900 }
+    };
+    enum { N = 2000 };
+    uint64_t random = 31;
+    static double loss[N];
+    size_t rounds = effort(150);
+    for (size_t k = 0; k < sizeof truth / sizeof *truth; k++) {
+        margin m = margin_of(truth[k].word, truth[k].a, truth[k].b);
+        double sum[2] = { 0 }, squares[2] = { 0 }, errors[2] = { 0 }, count = (double)rounds;
+        for (size_t i = 0; i < rounds; i++) {
+            margin_fit f;
+            size_t row;
+            for (size_t j = 0; j < N; j++) loss[j] = margin_quantile(&m, random_uniform(&random));
+            assert_int_equal(fit_margin(m.distribution, loss, N, &f, &row), OK);
+            for (size_t j = 0; j < 2; j++) {
+                double away = margin_parameter(&f.margin, j) - margin_parameter(&m, j);
+                sum[j] += away;
+                squares[j] += away * away;
+                errors[j] += f.error[j];
+            }
+        }
+        for (size_t j = 0; j < distribution_parameters(m.distribution); j++) {
+            double mean = sum[j] / count, spread = sqrt(squares[j] / count - mean * mean);
+            bool threshold = j == 1 && !strcmp(truth[k].word, "pareto");
+            assert_close(errors[j] / count, spread, 0.25);
+            assert_within(mean, 0, (threshold ? 1.4 : 0.5) * spread);
+        }
+    }
+}
+
+/* a scale only scales, for samples as far apart as computers can hold */
+static void fits_scale(void **state)
+{
+    (void)state;
+    const double loss[] = { 3, 17, 8, 44, 91, 26, 5, 12, 63, 150, 2, 900 };
+    for (const distribution *const *d = distributions; *d; d++) {
+        if (!(*d)->fit || !strcmp((*d)->word, "lognormal") || !strcmp((*d)->word, "normal"))
+            continue;
+        margin_fit f, big;
+        double scaled[12];
+        size_t row, last = distribution_parameters(*d) - 1;
+        for (size_t i = 0; i < 12; i++) scaled[i] = 1e90 * loss[i];
+        assert_int_equal(fit_margin(*d, loss, 12, &f, &row), OK);
+        assert_int_equal(fit_margin(*d, scaled, 12, &big, &row), OK);
+        assert_close(margin_parameter(&big.margin, last), 1e90 * margin_parameter(&f.margin, last),
+                     1e-9);
+        if (last) assert_close(big.margin.a, f.margin.a, 1e-9);
+    }
+}
+
+static void nearly_alike(void **state)
+{
+    (void)state;
+    double loss[50];
+    for (int i = 0; i < 50; i++) loss[i] = 1000 + 1e-3 * i;
+    margin_fit f;
+    size_t row;
+    assert_int_equal(fit_margin(distribution_named("gamma"), loss, 50, &f, &row), OK);
+    double mean, sd, squares = 0;
+    f.margin.distribution->moments(&f.margin, &mean, &sd);
+    for (int i = 0; i < 50; i++) squares += (loss[i] - 1000.0245) * (loss[i] - 1000.0245);
+    assert_close(mean, 1000.0245, 1e-12);
+    assert_close(sd, sqrt(squares / 50), 1e-4);
+    assert_int_equal(fit_margin(distribution_named("weibull"), loss, 50, &f, &row), OK);
+}
+
+static void refusals(void **state)
+{
+    (void)state;
+    const double zero[] = { 3, 0, 5 }, alike[] = { 4, 4, 4 }, even[] = { 10, 11, 12, 13 };
+    margin_fit f;
+    size_t row;
+    assert_int_equal(fit_margin(distribution_named("gamma"), zero, 3, &f, &row), OUT_OF_DOMAIN);
+    assert_int_equal(row, 1);
+    assert_int_equal(fit_margin(distribution_named("exponential"), zero, 3, &f, &row), OK);
+    assert_int_equal(fit_margin(distribution_named("weibull"), alike, 3, &f, &row), NO_VARIATION);
+    assert_int_equal(fit_margin(distribution_named("normal"), even, 1, &f, &row), TOO_FEW);
+    assert_int_equal(fit_margin(distribution_named("lomax"), even, 4, &f, &row), OUT_OF_DOMAIN);
+    assert_int_equal(row, 4);
+}
+
+int main(void)
+{
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(agrees_with_many_digits),
+        cmocka_unit_test(errors_are_the_spread),
+        cmocka_unit_test(fits_scale),
+        cmocka_unit_test(nearly_alike),
+        cmocka_unit_test(refusals),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}

@@ -1,0 +1,225 @@
+/* Tau, rho and tail dependence of two columns under rotation and grouped degrees of freedom, and
+ * the searches that turn rho and tail dependence into parameters. */
+#include "table.h"
+
+#include "../../src/grouped_t.h"
+#include "../../src/pair_measures.h"
+#include "../../src/spearman_inverse.h"
+
+#include <gsl/gsl_errno.h>
+
+static double tau_of(const copula *c)
+{
+    pool p = { 0 };
+    double tau;
+    assert_int_equal(tau_of_pair(c, 0, 1, &tau, &p), OK);
+    pool_empty(&p);
+    return tau;
+}
+
+static double rho_of(const copula *c)
+{
+    pool p = { 0 };
+    double rho;
+    assert_int_equal(rho_of_pair(c, 0, 1, &rho, &p), OK);
+    pool_empty(&p);
+    return rho;
+}
+
+static double tail_of(const copula *c, enum corner corner)
+{
+    double lambda;
+    assert_int_equal(tail_of_pair(c, 0, 1, corner, &lambda), OK);
+    return lambda;
+}
+
+/* Turning one column round changes signs, turning both exchanges the corners. */
+static void rotations(void **state)
+{
+    (void)state;
+    for (const family *const *f = families; *f; f++) {
+        if (!(*f)->has_theta) continue;
+        copula c = { .family = *f, .dimension = 2, .theta = 2.5 };
+        double tau = tau_of(&c), rho = rho_of(&c);
+        double lower = tail_of(&c, LOWER), upper = tail_of(&c, UPPER);
+        assert_true(tau > 0.2 && rho > tau);
+        c.rotation = 180;
+        assert_same(tau_of(&c), tau);
+        assert_same(rho_of(&c), rho);
+        assert_same(tail_of(&c, LOWER), upper);
+        assert_same(tail_of(&c, UPPER), lower);
+        for (c.rotation = 90; c.rotation <= 270; c.rotation += 180) {
+            assert_same(tau_of(&c), -tau);
+            assert_same(rho_of(&c), -rho);
+            assert_same(tail_of(&c, LOWER), 0);
+        }
+    }
+    copula opposed = { .family = family_named("clayton"), .dimension = 2, .theta = -1,
+                       .rotation = 90 };
+    assert_same(tail_of(&opposed, UPPER), 1);                  /* U and U */
+    assert_same(tau_of(&opposed), 1);
+}
+
+static copula t_pair(double correlation, double df1, double df2, double matrix[4], double df[2])
+{
+    matrix[0] = matrix[3] = 1;
+    matrix[1] = matrix[2] = correlation;
+    df[0] = df1;
+    df[1] = df2;
+    return (copula){ .family = family_named("t"), .dimension = 2, .matrix = matrix, .df = df };
+}
+
+/* Equal df through the integrals of the grouped t give what the plain t has. */
+static void grouped_meets_plain(void **state)
+{
+    (void)state;
+    uint64_t s = 21;
+    for (size_t i = 0; i < effort(10); i++) {
+        double df = 1 + 30 * random_uniform(&s), correlation = 1.9 * random_uniform(&s) - 0.95;
+        double matrix[4], dfs[2], tau, rho;
+        copula plain = t_pair(correlation, df, df, matrix, dfs);
+        pool p = { 0 };
+        assert_int_equal(tau_of_grouped(correlation, df, df, &tau, &p), OK);
+        assert_int_equal(rho_of_grouped(correlation, df, df, &rho, &p), OK);
+        assert_int_equal(p.bytes, 0);
+        assert_within(tau, tau_of(&plain), 1e-9);
+        assert_within(rho, rho_of(&plain), 1e-9);
+        double nearly = tail_of_grouped(correlation, df, df * (1 + 1e-9));
+        assert_within(nearly, tail_of(&plain, UPPER), 1e-8);
+        pool_empty(&p);
+    }
+}
+
+/* P(X > x, Y > y)/q at q = 1e-12 by SciPy (bivariate normal probabilities, trapezoid rule in the
+ * mixing variable): correlation 0.5, df 1 and 2 */
+static void grouped_tail(void **state)
+{
+    (void)state;
+    double matrix[4], df[2];
+    copula c = t_pair(0.5, 1, 2, matrix, df);
+    assert_within(tail_of(&c, UPPER), 0.420764705498, 2e-11);
+    assert_same(tail_of(&c, LOWER), tail_of(&c, UPPER));
+    c.rotation = 90;
+    double crossed = tail_of(&c, UPPER);
+    copula turned = t_pair(-0.5, 2, 1, matrix, df);
+    assert_within(tail_of(&turned, UPPER), crossed, 1e-14);
+    turned = t_pair(-1, 2, 1, matrix, df);
+    assert_same(tail_of(&turned, UPPER), 0);
+    turned = t_pair(0.5, 2, 200, matrix, df);
+    assert_true(tail_of(&turned, UPPER) > 0 && tail_of(&turned, UPPER) < 1e-12);
+}
+
+/* A grouped t of 200,000 rows made here, by the definition: its sample rho and tau bracket what is
+ * computed, four standard errors either way. */
+static void grouped_by_definition(void **state)
+{
+    (void)state;
+    double matrix[4], df[2], sum = 0, square = 0;
+    copula c = t_pair(0.7, 1, 4, matrix, df);
+    uint64_t s = 22;
+    size_t n = effort(100000);
+    for (size_t i = 0; i < n; i++) {
+        double x[2], y[2];
+        for (int k = 0; k < 2; k++) {
+            /* chi-square quantiles in closed form: df 2 and 4 would need none; df 1 is the square
+             * of a normal quantile, so both come from one uniform by bisection on erf and exp */
+            double u = random_uniform(&s), low = 0, high = 60, root = 0;
+            for (int j = 0; j < 60; j++) {
+                double middle = (low + high) / 2;
+                if (1 - exp(-middle / 2) * (1 + middle / 2) < u) low = middle;
+                else high = middle;
+            }
+            double four = (low + high) / 2;
+            low = 0, high = 9;
+            for (int j = 0; j < 60; j++) {
+                root = (low + high) / 2;
+                if (erf(root / sqrt(2)) < u) low = root;
+                else high = root;
+            }
+            double z = random_normal(&s), e = random_normal(&s);
+            x[k] = z / root;
+            y[k] = (0.7 * z + sqrt(1 - 0.49) * e) / sqrt(four / 4);
+        }
+        double agree = (x[0] - x[1]) * (y[0] - y[1]) > 0 ? 1 : -1;
+        sum += agree;
+        square += agree * agree;
+    }
+    double mean = sum / (double)n, error = sqrt((square / (double)n - mean * mean) / (double)n);
+    assert_within(mean, tau_of(&c), 4 * error);
+}
+
+/* Back and forth through the cell function's search, on all scales */
+static void theta_from_rho_and_back(void **state)
+{
+    (void)state;
+    uint64_t s = 23;
+    for (const family *const *f = families; *f; f++) {
+        if ((*f)->tau_low == (*f)->tau_high) continue;
+        for (size_t i = 0; i < effort(60); i++) {
+            double rho = 0.98 * random_uniform(&s) * pow(10, -6 * random_uniform(&s)), theta, back;
+            if ((*f)->tau_low < 0 && random_below(&s, 2)) rho = -rho;
+            assert_int_equal(theta_from_rho(*f, rho, 3.5, &theta), OK);
+            assert_int_equal((*f)->rho_from_theta(theta, 3.5, &back), OK);
+            close_or_fail(back, rho, 3e-15 + 1e-12 * fabs(rho), (*f)->word, __FILE__, __LINE__);
+        }
+        double theta;
+        assert_int_equal(theta_from_rho(*f, 0, 3, &theta), OK);
+        assert_same(theta, (*f)->theta_low == 1 ? 1 : 0);
+        assert_int_equal(theta_from_rho(*f, 1, 3, &theta), (*f)->has_matrix ? OK : OUT_OF_DOMAIN);
+        assert_int_equal(theta_from_rho(*f, 1.1, 3, &theta), OUT_OF_DOMAIN);
+    }
+}
+
+/* tau_to_parameter.csv read from its column of rho: the parameter to 1e-10 */
+static void published_theta_from_rho(void **state)
+{
+    (void)state;
+    struct csv *t = csv_read("tau_to_parameter.csv");
+    size_t checked = 0;
+    for (size_t i = 0; i < t->rows; i++) {
+        const char *word = csv_text(t, i, "family");
+        const family *f = family_named(strcmp(word, "normal") ? word : "gaussian");
+        double rho = csv_number(t, i, "rho_spearman"), want = csv_number(t, i, "parameter"), theta;
+        if (!f || isnan(rho) || fabs(rho) > 0.999) continue;
+        assert_int_equal(theta_from_rho(f, rho, 0, &theta), OK);
+        close_or_fail(theta, want, 1e-11 * fabs(want), f->word, __FILE__, __LINE__);
+        checked++;
+    }
+    assert_true(checked > 90);
+    csv_free(t);
+}
+
+/* tail_dependence.csv backwards: df from correlation and tail dependence */
+static void published_df(void **state)
+{
+    (void)state;
+    struct csv *t = csv_read("tail_dependence.csv");
+    size_t checked = 0;
+    for (size_t i = 0; i < t->rows; i++) {
+        double correlation = csv_number(t, i, "rho"), lambda = csv_number(t, i, "lambda_upper");
+        if (!csv_is(t, i, "family", "student_t") || fabs(correlation) == 1) continue;
+        double df, highest, want = csv_number(t, i, "parameter_or_nu");
+        assert_int_equal(df_from_tail(correlation, lambda, &df, &highest), OK);
+        assert_close(df, want, 1e-11);
+        checked++;
+    }
+    assert_true(checked > 100);
+    csv_free(t);
+    double df, highest;
+    assert_int_equal(df_from_tail(0, 0.5, &df, &highest), OUT_OF_DOMAIN);
+    assert_close(highest, 0.5, 1e-15);
+    assert_int_equal(df_from_tail(0, 0, &df, &highest), OUT_OF_DOMAIN);
+    assert_int_equal(df_from_tail(1, 0.5, &df, &highest), OUT_OF_DOMAIN);
+}
+
+int main(void)
+{
+    gsl_set_error_handler_off();                             /* as the add-in does at load */
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(rotations), cmocka_unit_test(grouped_meets_plain),
+        cmocka_unit_test(grouped_tail), cmocka_unit_test(grouped_by_definition),
+        cmocka_unit_test(theta_from_rho_and_back), cmocka_unit_test(published_theta_from_rho),
+        cmocka_unit_test(published_df),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}

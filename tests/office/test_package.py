@@ -1,0 +1,26 @@
+"""What is in the extension: its files, what the library needs and what it shows to others."""
+import re
+import subprocess
+import zipfile
+
+FILES = {'META-INF/manifest.xml', 'description.xml', 'description.txt', 'jointsheet.components',
+         'jointsheet.uno.so', 'types.rdb', 'CalcAddIns.xcu', 'LICENSE', 'NOTICES'}
+NEEDED = {'libuno_cppu.so.3', 'libuno_sal.so.3', 'libm.so.6', 'libc.so.6'}
+
+
+def said(*command):
+    return subprocess.run(command, check=True, stdout=subprocess.PIPE, text=True).stdout
+
+
+def run(checks, given):
+    files = {f for f in zipfile.ZipFile(given.package).namelist() if not f.endswith('/')}
+    checks.check(files == FILES, 'package: holds %s' % ' '.join(sorted(files ^ FILES)))
+    library = given.out + '/oxt/jointsheet.uno.so'
+    needed = set(re.findall(r'NEEDED.*\[(.*)\]', said('readelf', '-d', library)))
+    checks.check(needed == NEEDED, 'package: the library needs %s' % ' '.join(sorted(needed)))
+    exported = re.findall(r' [A-Z] (\S+)', said('nm', '-D', '--defined-only', library))
+    checks.check(exported == ['jointsheet_create'],
+                 'package: the library exports %s' % ' '.join(exported))
+    versions = set(re.findall(r'UDK_\w+', said('objdump', '-T', library)))
+    checks.check(versions == {'UDK_3_0_0'},
+                 'package: symbols of %s are used' % ' '.join(sorted(versions)))
