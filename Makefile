@@ -191,8 +191,7 @@ uninstall: setup ## take it out of your own LibreOffice
 # ---- benchmarks ----
 
 BENCHES = $(patsubst tests/bench/%.c,$(OUT)/bench/%,$(wildcard tests/bench/*.c))
-BENCHED = $(sort $(basename $(notdir $(wildcard tests/bench/*.c) \
-                                     $(filter-out tests/bench/run.py,$(wildcard tests/bench/*.py)))))
+BENCHED = $(filter-out run,$(sort $(basename $(notdir $(wildcard tests/bench/*.c tests/bench/*.py)))))
 
 $(OUT)/bench/%: $(OUT)/obj/tests/bench/%.o $(OUT)/core.a $(LINK_OBJECTS)
 	@mkdir -p $(@D)
@@ -220,12 +219,15 @@ FUZZERS = $(patsubst tests/fuzz/%.c,$(OUT)/fuzz/%,$(wildcard tests/fuzz/*.c))
 fuzz: $(FUZZERS)
 	@for f in $(FUZZERS); do $$f --seconds $(FUZZ_SECONDS) || exit 1; done
 
-VALGRIND = timeout 1800 valgrind -q --error-exitcode=9 --leak-check=full \
+# Valgrind has no 80-bit long double, so some values of the tests come out wrong there: only what it
+# says of memory counts (99), and a crash or no end (124 and more).
+VALGRIND = timeout 1800 valgrind -q --error-exitcode=99 --leak-check=full \
            --errors-for-leak-kinds=definite
 
 valgrind: $(TESTS)
-	@printf '%s\n' $(TESTS) | xargs -P 2 -I {} sh -c '$(VALGRIND) {} > {}.valgrind 2>&1 \
-	    && echo "valgrind: {}" || { cat {}.valgrind; echo "FAILED: valgrind {}"; exit 1; }'
+	@printf '%s\n' $(TESTS) | xargs -P 2 -I {} sh -c '$(VALGRIND) {} > {}.valgrind 2>&1; \
+	    if [ $$? -lt 99 ]; then echo "valgrind: {}"; \
+	    else cat {}.valgrind; echo "FAILED: valgrind {}"; exit 1; fi'
 
 check-all: setup-check test ## test, and sanitizers, fuzzing, valgrind, sanitizers in the office
 	@$(MAKE) --no-print-directory $(SANITIZED) core-test

@@ -29,8 +29,8 @@ static void idl_method(const function *f)
 
 static void idl(void)
 {
-    puts("/* Written by addin/generate.c from addin/functions. Every parameter is any: only any can "
-         "be\n"
+    puts("/* Written by addin/generate.c from addin/functions. Every parameter is any: "
+         "only any can be\n"
          " * left out, and it keeps what the cell holds. */\n"
          "module org { module jointsheet {\n"
          "    interface XFunctions : com::sun::star::uno::XInterface {");

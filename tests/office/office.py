@@ -152,7 +152,8 @@ class Office:
         self.pipe = 'jointsheet' + uuid.uuid4().hex
         command = ['setpriv', '--pdeathsig', 'TERM',      # an office must not outlive its test
                    *self.wrapper, os.path.join(PROGRAM, 'soffice.bin'),
-                   profile_argument(self.profile), '--headless', '--invisible', '--norestore', '--nodefault', '--nologo',
+                   profile_argument(self.profile), '--headless', '--invisible', '--norestore',
+                   '--nodefault', '--nologo',
                    '--accept=pipe,name=%s;urp' % self.pipe]
         self.log = tempfile.TemporaryFile()
         self.process = subprocess.Popen(command, stdin=subprocess.DEVNULL, stdout=self.log,

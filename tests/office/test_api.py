@@ -47,7 +47,8 @@ def shapes(checks, call):
     checks.check(isinstance(expected, float) and error_in(expected) is None,
                  'api: tau gives %r' % (expected,))
     for kind, column in (('[][]any', tuple((v,) for v in X)), ('[]double', tuple(X)),
-                         ('[]any', tuple(X)), ('[]any', tuple((v,) for v in X)), ('[][]float', tuple((v,) for v in X)),
+                         ('[]any', tuple(X)), ('[]any', tuple((v,) for v in X)),
+                         ('[][]float', tuple((v,) for v in X)),
                          ('[][]long', tuple((int(v * 10),) for v in X)),
                          ('[][]hyper', tuple((int(v * 10),) for v in X))):
         result = call('tau', typed(kind, column), typed('[]double', tuple(Y)))
