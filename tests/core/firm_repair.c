@@ -64,6 +64,59 @@ static void equal_firmness_is_the_nearest_matrix(void **unused)
     csv_free(t);
 }
 
+/* Firm and held entries found by a general optimiser (tests/generators/firm_matrices.py). */
+static void firm_and_held_as_a_general_optimiser_finds(void **unused)
+{
+    (void)unused;
+    struct csv *t = csv_read("nearest_correlation_firm.csv");
+    size_t cases = 0;
+    for (size_t first = 0, d; first < t->rows; first += d * (d - 1) / 2, cases++) {
+        pool p = { .last = NULL };
+        d = 1;
+        while (first + d - 1 < t->rows && csv_number(t, first + d - 1, "i") == 1 &&
+               csv_number(t, first + d - 1, "j") == (double)d + 1)
+            d++;
+        double *given = pool_take_zeroed(&p, d, d * sizeof *given);
+        double *w = pool_take_zeroed(&p, d, d * sizeof *w), *x = pool_take(&p, d, d * sizeof *x);
+        for (size_t r = first; r < first + d * (d - 1) / 2; r++) {
+            size_t i = (size_t)csv_number(t, r, "i") - 1, j = (size_t)csv_number(t, r, "j") - 1;
+            given[i * d + j] = given[j * d + i] = csv_number(t, r, "given");
+            w[i * d + j] = w[j * d + i] =
+                csv_number(t, r, "held") == 1 ? INFINITY : csv_number(t, r, "firmness");
+        }
+        assert_int_equal(nearest_firm(given, w, d, 0, x, NULL, NULL, NULL, &p), OK);
+        for (size_t r = first; r < first + d * (d - 1) / 2; r++) {
+            size_t i = (size_t)csv_number(t, r, "i") - 1, j = (size_t)csv_number(t, r, "j") - 1;
+            assert_within(x[i * d + j], csv_number(t, r, "nearest"),
+                          csv_number(t, r, "tolerance"));
+        }
+        pool_empty(&p);
+    }
+    assert_int_equal(cases, 9);
+    csv_free(t);
+}
+
+/* The leading block held: shrinking to a feasible matrix, as a numerical library's manual does, is
+ * one way to meet the hold, so that its distance bounds the least one from above. */
+static void a_held_block_is_nearer_than_by_shrinking(void **unused)
+{
+    (void)unused;
+    struct csv *t = csv_read("nearest_correlation.csv");
+    struct csv *bound = csv_read("nearest_correlation_fixed_block.csv");
+    pool p = { .last = NULL };
+    size_t d, held = (size_t)csv_number(bound, 0, "fixed_leading_block");
+    double *given = matrix_of(t, "shrink5", "given", &d, &p), squares = 0;
+    double *x = pool_take(&p, d, d * sizeof *x), *w = pool_take(&p, d, d * sizeof *w);
+    for (size_t i = 0; i < d; i++)
+        for (size_t j = 0; j < d; j++) w[i * d + j] = i < held && j < held ? INFINITY : 1;
+    assert_int_equal(nearest_firm(given, w, d, 0, x, NULL, NULL, NULL, &p), OK);
+    for (size_t i = 0; i < d * d; i++) squares += (x[i] - given[i]) * (x[i] - given[i]);
+    assert_true(sqrt(squares) < csv_number(bound, 0, "frobenius_distance"));
+    pool_empty(&p);
+    csv_free(t);
+    csv_free(bound);
+}
+
 /* Any firmness, no holds: proved without the solver's own S. */
 static void random_firmness_carries_its_proof(void **unused)
 {
@@ -251,6 +304,8 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(equal_firmness_is_the_nearest_matrix),
+        cmocka_unit_test(firm_and_held_as_a_general_optimiser_finds),
+        cmocka_unit_test(a_held_block_is_nearer_than_by_shrinking),
         cmocka_unit_test(random_firmness_carries_its_proof),
         cmocka_unit_test(entries_held_keep_their_bits),
         cmocka_unit_test(the_third_correlation_goes_to_its_limit),
