@@ -2,6 +2,7 @@
 #include "../correlations.h"
 #include "../square.h"
 #include "../words.h"
+#include "../../src/duality.h"
 #include "../../src/firm_repair.h"
 
 #include <math.h>
@@ -69,32 +70,38 @@ static status refuse_holds(const argument *a, const double *proof, report *r)
                   "those among lines %s", lines);
 }
 
-static status mend_firmly(const argument *in, const double *given, const double *firmness,
-                          double *nearest, course *how, report *r)
+/* A repaired matrix and what proves it: no firmness and no proof where all entries count alike. */
+struct mended {
+    double *nearest, *firmness, *proof;
+    course how;
+};
+
+static status mend_firmly(const argument *in, const double *given, struct mended *m, report *r)
 {
     size_t d = in[GIVEN].data.cols;
     bool clash;
-    double *proof = pool_take(r->pool, d, d * sizeof *proof);
-    if (!proof) return NO_MEMORY;
-    status s = nearest_firm(given, firmness, d, in[FLOOR].number, nearest, proof, &clash, how,
-                            r->pool);
-    if (s == OUT_OF_DOMAIN && clash) return refuse_holds(&in[GIVEN], proof, r);
+    m->proof = pool_take(r->pool, d, d * sizeof *m->proof);
+    if (!m->proof) return NO_MEMORY;
+    status s = nearest_firm(given, m->firmness, d, in[FLOOR].number, m->nearest, m->proof, &clash,
+                            &m->how, r->pool);
+    if (s == OUT_OF_DOMAIN && clash) return refuse_holds(&in[GIVEN], m->proof, r);
     if (s == NOT_SETTLED)
         return refuse(r, s, "the repair did not settle; entries held that leave no room, and "
                       "firmness of very different size, can be the reason");
     return s;
 }
 
-static status mend(const argument *in, const double *given, double *nearest, course *how, report *r)
+/* Into m->nearest, where there is room already. */
+static status mend(const argument *in, const double *given, struct mended *m, report *r)
 {
     size_t d = in[GIVEN].data.cols;
-    double *firmness;
     bool alike = true;
     status s = OK;
-    if (in[FIRMNESS].given) s = read_firmness(in[FIRMNESS].raw, d, &firmness, &alike, r);
+    if (in[FIRMNESS].given) s = read_firmness(in[FIRMNESS].raw, d, &m->firmness, &alike, r);
     if (s) return s;
-    if (!alike) return mend_firmly(in, given, firmness, nearest, how, r);
-    s = nearest_correlation(given, d, in[FLOOR].number, nearest, how, r->pool);
+    if (!alike) return mend_firmly(in, given, m, r);
+    m->firmness = NULL;
+    s = nearest_correlation(given, d, in[FLOOR].number, m->nearest, &m->how, r->pool);
     return s == NOT_SETTLED ? refuse(r, s, "the repair did not settle") : s;
 }
 
@@ -131,7 +138,9 @@ static status cell_repair(const argument *in, value *out, report *r)
     size_t d = in[GIVEN].data.cols;
     status s = take_correlations(&in[GIVEN], &given, r);
     if (!s) s = new_table(r, d, d, out);
-    if (!s) s = mend(in, given, out->table.at, NULL, r);
+    if (s) return s;
+    struct mended m = { .nearest = out->table.at };
+    s = mend(in, given, &m, r);
     if (s) return s;
     changes c = compare(given, out->table.at, d);
     if (c.largest == 0)
@@ -142,20 +151,21 @@ static status cell_repair(const argument *in, value *out, report *r)
     return OK;
 }
 
-static status put_notes(const changes *c, double before, double after, const course *how,
-                        value *out, report *r)
+static status put_notes(const changes *c, const double eigenvalues[2], double gap,
+                        const course *how, value *out, report *r)
 {
     const struct {
         const char *label;
         double number;
     } notes[] = {
-        { "lowest before", before },
-        { "lowest after", after },
+        { "lowest before", eigenvalues[0] },
+        { "lowest after", eigenvalues[1] },
         { "distance", c->distance },
         { "largest change", c->largest },
         { "moved by 0.01", (double)c->small },
         { "moved by 0.05", (double)c->large },
         { "iterations", (double)how->iterations },
+        { "duality gap", gap },
     };
     size_t n = sizeof notes / sizeof *notes;
     status s = new_table(r, n, 4, out);
@@ -171,18 +181,19 @@ static status put_notes(const changes *c, double before, double after, const cou
 
 static status cell_repairnote(const argument *in, value *out, report *r)
 {
-    double *given, before, after;
-    course how;
+    double *given, lowest[2], gap;
     size_t d = in[GIVEN].data.cols;
-    double *nearest = pool_take(r->pool, d, d * sizeof *nearest);
-    if (!nearest) return NO_MEMORY;
+    struct mended m = { .nearest = pool_take(r->pool, d, d * sizeof *m.nearest) };
+    if (!m.nearest) return NO_MEMORY;
     status s = take_correlations(&in[GIVEN], &given, r);
-    if (!s) s = mend(in, given, nearest, &how, r);
-    if (!s) s = lowest_eigenvalue(given, d, &before, r->pool);
-    if (!s) s = lowest_eigenvalue(nearest, d, &after, r->pool);
+    if (!s) s = mend(in, given, &m, r);
+    if (!s) s = lowest_eigenvalue(given, d, &lowest[0], r->pool);
+    if (!s) s = lowest_eigenvalue(m.nearest, d, &lowest[1], r->pool);
+    if (!s)
+        s = duality_gap(given, m.firmness, m.proof, m.nearest, d, in[FLOOR].number, &gap, r->pool);
     if (s) return s;
-    changes c = compare(given, nearest, d);
-    return put_notes(&c, before, after, &how, out, r);
+    changes c = compare(given, m.nearest, d);
+    return put_notes(&c, lowest, gap, &m.how, out, r);
 }
 
 static status cell_mirror(const argument *in, value *out, report *r)
@@ -240,7 +251,8 @@ const function mend_functions[] = {
             "square root of the sum of squared changes over all cells of the matrix; largest "
             "change has the numbers of its two lines beside it; moved by 0.01 and moved by 0.05 "
             "count the pairs of lines whose correlation changed by more; iterations is 0 when no "
-            "repair was needed.",
+            "repair was needed; no other matrix has a sum of firmness x squared change (over all "
+            "cells) that is lower by more than the duality gap.",
         .examples = {
             { "INDEX(REPAIRNOTE({1;1;0|1;1;1|0;1;1});3;2)", "0.527790463581828" },
             { "INDEX(REPAIRNOTE({1;1;0|1;1;1|0;1;1});1;2)", "-0.414213562373095" },

@@ -108,16 +108,18 @@ static void notes_of_a_repair(void **unused)
     value out;
     assert_int_equal(ask("repairnote", CHAIN, 0, NULL, &out, &r), OK);
     const char *labels[] = { "lowest before", "lowest after", "distance", "largest change",
-                             "moved by 0.01", "moved by 0.05", "iterations" };
+                             "moved by 0.01", "moved by 0.05", "iterations", "duality gap" };
     const double want[] = { 1 - sqrt(2), 0, 0.52779046358182837, 0.2393101465977162, 3, 3 };
-    assert_int_equal(out.table.rows, 7);
+    assert_int_equal(out.table.rows, 8);
     assert_int_equal(out.table.cols, 4);
-    for (size_t k = 0; k < 7; k++) assert_string_equal(out.table.words[4 * k], labels[k]);
+    for (size_t k = 0; k < 8; k++) assert_string_equal(out.table.words[4 * k], labels[k]);
     for (size_t k = 0; k < 6; k++) assert_within(out.table.at[4 * k + 1], want[k], 1e-8);
     assert_same(out.table.at[14], 1);
     assert_true(out.table.at[15] == 2 && out.table.at[25] > 0);
+    assert_within(out.table.at[29], 0, 1e-12);
     assert_int_equal(ask("repairnote", "1,0.3;0.3,1", 0, NULL, &out, &r), OK);
     assert_same(out.table.at[25], 0);
+    assert_same(out.table.at[29], 0);
     assert_true(marks_gap(out.table.at[14]));
     pool_empty(&p);
 }
