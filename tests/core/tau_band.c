@@ -76,6 +76,31 @@ static void published_errors(void **state)
     csv_free(t);
 }
 
+/* The jackknife's error and the limits that follow from it, ties or not: SciPy's kendalltau with
+ * each row left out, in the file; 1.959963984540054 is the normal quantile of 97.5 %. */
+static void jackknife_with_ties(void **state)
+{
+    (void)state;
+    struct csv *t = csv_read("tau_b_jackknife.csv");
+    size_t tied = 0;
+    for (size_t k = 0; k < t->rows; k++) {
+        size_t n;
+        double *x = dataset(csv_text(t, k, "dataset"), &n), most = csv_number(t, k, "tolerance");
+        double tau = csv_number(t, k, "tau_b"), error = csv_number(t, k, "jackknife_error");
+        struct tau_band b;
+        pool p = { 0 };
+        assert_int_equal(tau_band(x, x + n, n, 0.95, BAND_JACKKNIFE, 0, &b, &p), OK);
+        assert_close(b.tau, tau, most);
+        assert_close(b.error, error, most);
+        assert_within(b.low, fmax(-1, tau - 1.959963984540054 * error), most);
+        assert_within(b.high, fmin(1, tau + 1.959963984540054 * error), most);
+        tied += has_ties(x, n);
+        free(x);
+    }
+    assert_int_equal(tied, 13);
+    csv_free(t);
+}
+
 /* The delta method: the derivative of tanh at atanh(tau), by a difference. */
 static void fisher_error(void **state)
 {
@@ -197,9 +222,9 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(binormal_variance), cmocka_unit_test(published_limits),
-        cmocka_unit_test(published_errors), cmocka_unit_test(fisher_error),
-        cmocka_unit_test(bootstrap_distribution), cmocka_unit_test(coverage),
-        cmocka_unit_test(special_cases),
+        cmocka_unit_test(published_errors), cmocka_unit_test(jackknife_with_ties),
+        cmocka_unit_test(fisher_error), cmocka_unit_test(bootstrap_distribution),
+        cmocka_unit_test(coverage), cmocka_unit_test(special_cases),
     };
     return cmocka_run_group_tests_name("tau_band", tests, NULL, NULL);
 }

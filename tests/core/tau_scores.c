@@ -106,6 +106,32 @@ static void influence_with_ties(void **state)
     csv_free(t);
 }
 
+/* The jackknife error of tau-b in data sets of which most have ties, and tau-b itself: SciPy's
+ * kendalltau with each row left out, in the file. */
+static void jackknife_with_ties(void **state)
+{
+    (void)state;
+    struct csv *t = csv_read("tau_b_jackknife.csv");
+    size_t tied = 0;
+    for (size_t k = 0; k < t->rows; k++) {
+        size_t n;
+        double *x = dataset(csv_text(t, k, "dataset"), &n), error, tau;
+        pool p = { 0 };
+        struct tau_scores s = scores_of(x, x + n, n, &p);
+        assert_int_equal(n, (size_t)csv_number(t, k, "n"));
+        assert_int_equal(tau_b(&s.counts, &tau), OK);
+        assert_close(tau, csv_number(t, k, "tau_b"), csv_number(t, k, "tolerance"));
+        assert_int_equal(tau_error_jackknife(&s, &error), OK);
+        assert_close(error, csv_number(t, k, "jackknife_error"), csv_number(t, k, "tolerance"));
+        tied += s.counts.tied_x || s.counts.tied_y;
+        pool_empty(&p);
+        free(x);
+    }
+    assert_int_equal(t->rows, 15);
+    assert_int_equal(tied, 13);
+    csv_free(t);
+}
+
 /* h of a pair of rows as in tau_scores.c, straight from its definition. */
 static double error_by_definition(const double *x, const double *y, size_t n)
 {
@@ -201,8 +227,9 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(equals_definition), cmocka_unit_test(published_variances),
-        cmocka_unit_test(influence_with_ties), cmocka_unit_test(errors_equal_definitions),
-        cmocka_unit_test(special_cases), cmocka_unit_test(memory),
+        cmocka_unit_test(influence_with_ties), cmocka_unit_test(jackknife_with_ties),
+        cmocka_unit_test(errors_equal_definitions), cmocka_unit_test(special_cases),
+        cmocka_unit_test(memory),
     };
     return cmocka_run_group_tests_name("tau_scores", tests, NULL, NULL);
 }

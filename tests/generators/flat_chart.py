@@ -24,15 +24,26 @@ DASHES = ["<draw:stroke-dash draw:name='%s' draw:style='rect' draw:dots1='1'"
 
 
 class Chart:
-    """A chart of ranges: scatter, or bars with one series."""
+    """A chart of ranges: scatter, or by the names in x: bars with one series, or a line chart."""
 
     def __init__(self, kind, title, x_title, y_title, **settings):
         self.kind, self.title, self.x_title, self.y_title = kind, title, x_title, y_title
         self.settings, self.series, self.styles = settings, [], []
+        self.named = kind in ("bar", "line")
 
-    def add(self, label, x, y, colour, line=None, symbol=None):
-        """A series: the cell that names it, its ranges, and how it is drawn."""
-        self.series.append((label, x, y, self.series_style(colour, line, symbol)))
+    def add(self, label, x, y, colour, line=None, symbol=None, around=None):
+        """A series: the cell that names it, its ranges, and how it is drawn; around are the
+        ranges of how far an error bar reaches below and above."""
+        self.series.append((label, x, y, self.series_style(colour, line, symbol),
+                            self.error_bars(colour, around) if around else ""))
+
+    def error_bars(self, colour, around):
+        style = self.style(
+            "chart:error-category='cell-range' chart:error-lower-indicator='true'"
+            " chart:error-upper-indicator='true' chart:error-lower-range=%s"
+            " chart:error-upper-range=%s" % tuple(map(quoteattr, around)),
+            "draw:stroke='solid' svg:stroke-width='0.05cm' svg:stroke-color='%s'" % colour)
+        return "<chart:error-indicator chart:style-name='%s' chart:dimension='y'/>" % style
 
     def style(self, chart="", graphic="", text="", more=""):
         name = "c%d" % (len(self.styles) + 1)
@@ -65,7 +76,7 @@ class Chart:
         angle = "style:rotation-angle='%d'" % (0 if dimension == "x" else 90)
         heading = self.style(angle, "draw:stroke='none'", self.font(1))
         grid = self.style("", "svg:stroke-color='%s'" % RULE)
-        lines = "" if dimension == "x" and self.kind == "bar" else (
+        lines = "" if dimension == "x" and self.named else (
             "<chart:grid chart:style-name='%s' chart:class='major'/>" % grid)
         return ("<chart:axis chart:dimension='%s' chart:name='primary-%s' chart:style-name='%s'>"
                 "<chart:title chart:style-name='%s'><text:p>%s</text:p></chart:title>%s%s"
@@ -73,7 +84,7 @@ class Chart:
                                    self.categories(dimension), lines))
 
     def categories(self, dimension):
-        if dimension != "x" or self.kind != "bar":
+        if dimension != "x" or not self.named:
             return ""
         return "<chart:categories table:cell-range-address=%s/>" % quoteattr(self.series[0][1])
 
@@ -98,7 +109,7 @@ class Chart:
                           " chart:auto-size='true' chart:gap-width='80'")
         lines = ["<office:body><office:chart>",
                  "<chart:chart chart:class='chart:%s' chart:style-name='%s' %s>"
-                 % (self.kind, blank, size),
+                 % ("bar" if self.named else self.kind, blank, size),
                  "<chart:title chart:style-name='%s'><text:p>%s</text:p></chart:title>"
                  % (heading, escape(self.title))]
         if self.settings.get("legend", True):
@@ -114,9 +125,10 @@ class Chart:
     def font(self, larger=0):
         return "fo:font-size='%dpt'" % (self.settings.get("size", 8) + larger)
 
-    def one_series(self, label, x, y, style):
-        domain = "" if self.kind == "bar" else (
+    def one_series(self, label, x, y, style, bars):
+        domain = "" if self.named else (
             "<chart:domain table:cell-range-address=%s/>" % quoteattr(x))
         return ("<chart:series chart:style-name='%s' chart:class='chart:%s'"
-                " chart:values-cell-range-address=%s chart:label-cell-address=%s>%s"
-                "</chart:series>" % (style, self.kind, quoteattr(y), quoteattr(label), domain))
+                " chart:values-cell-range-address=%s chart:label-cell-address=%s>%s%s"
+                "</chart:series>" % (style, self.kind, quoteattr(y), quoteattr(label), domain,
+                                     bars))

@@ -378,7 +378,7 @@ class Book:
     @staticmethod
     def condition(condition, words, sheet, where):
         _, when, then = condition
-        when = when % "[.%s]" % where if "%s" in when else when
+        when = when.format(cell="[.%s]" % where, row=position(where)[0] + 1)
         return ("<style:map style:condition=%s style:apply-style-name='%s'"
                 " style:base-cell-address=%s/>" % (
                     quoteattr(when), "-".join(words[:-1] + [then]),

@@ -46,8 +46,10 @@ ROLES = {
 
 ALIGN = {"left": "start", "right": "end", "center": "center"}
 
-# A style that changes with the cell's content: role, condition, the role then.
+# A style that changes with the cell's content: role, condition, the role then. In a condition
+# {cell} is the cell, {row} its row; "outside" is of a band that stands in columns C and D.
 CONDITIONS = {
     "verdict": ("pass", "cell-content()!=\"pass\"", "fail"),
+    "outside": ("cell", "is-true-formula(OR({cell}<[.$C{row}];{cell}>[.$D{row}]))", "moved"),
     "change": ("cell", "cell-content-is-not-between(-0.0199999,0.0199999)", "moved"),
 }

@@ -10,6 +10,7 @@ import sys
 from flat_chart import Chart
 from flat_sheet import Book
 from stop_loss_account import COLOURS, COPULAS, INVENTED, opened, quoted_link, section
+from stop_loss_evidence import evidence
 from stop_loss_inputs import dependence, loss_ratios, margins, models
 from stop_loss_price import as_if, blocks, check, exceedance, price, terms
 
@@ -66,6 +67,7 @@ def guide(sheet):
     for i, (name, text) in enumerate([
             ("Loss ratios", "forty years, five lines: the data"),
             ("Dependence", "Kendall's tau, pair by pair; the matrix it implies, and its repair"),
+            ("Evidence", "how sure each tau is, and what the years say of a tail"),
             ("Models", "four copulas from these taus"),
             ("Margins", "each line's distribution for the cover year"),
             ("Terms", "per line and for the sum"),
@@ -92,8 +94,8 @@ def caution(sheet):
             "tail from a t or gumbel tail. Read the table by copula as the range of one uncertain "
             "answer, and look beyond the mean: at the chance of exhausting the cover.",
             "Parameter uncertainty. The standard errors shown are errors of the simulation only. "
-            "Those of the taus, the loss ratios, the fitted margins and the chosen degrees of "
-            "freedom are larger and are not in the price.",
+            "Those of the taus (sheet Evidence), the loss ratios, the fitted margins and the "
+            "chosen degrees of freedom are larger and are not in the price.",
             "Judgement and law. Trend, development, exposure, cover wording and accumulations "
             "outside the data are for the actuary. Local regulation and professional standards "
             "come before anything in this workbook, and no figure of it should be used without "
@@ -111,8 +113,8 @@ def main():
         pathlib.Path(__file__).parents[2] / "sample-sheets" / "stop-loss.fods")
     book = Book("Stop-loss on five lines of business",
                 "Orrinby Mutual, cover year 2027; amounts in thousands", INVENTED)
-    for make in (summary, loss_ratios, dependence, models, margins, terms, as_if, price, blocks,
-                 exceedance, check):
+    for make in (summary, loss_ratios, dependence, evidence, models, margins, terms, as_if, price,
+                 blocks, exceedance, check):
         make(book)
     book.write(path)
 

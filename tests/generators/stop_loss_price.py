@@ -7,6 +7,7 @@ from flat_sheet import address, letters
 from stop_loss_account import (
     BLOCK, COLOURS, COPULAS, DASHES, FIRST, LAST, LIMITS, N, POINTS, SHARES, figure, opened,
     section, shifted, span)
+from stop_loss_evidence import AREA, LAST_POINT, YEARS
 
 
 def terms(book):
@@ -344,6 +345,12 @@ def dependence_checks():
         ("Tau of property and crop hail: JOINT.TAU and JOINT.TAUGRID",
          "=JOINT.TAU($'Loss ratios'.C%d:C%d;$'Loss ratios'.F%d:F%d)" % ((FIRST, LAST) * 2),
          "=Dependence.F11", 1e-12, "four"),
+        ("Its standard error: JOINT.TAUBAND, method free, and JOINT.TAUGRID",
+         "=INDEX(JOINT.TAUBAND($'Loss ratios'.C%d:C%d;$'Loss ratios'.F%d:F%d);1;4)" % (
+             (FIRST, LAST) * 2), "=Dependence.F20", 1e-12, "four"),
+        ("Upper tail of the pair at one half: JOINT.TAILCURVE and JOINT.TAIL",
+         "=Evidence.C%d" % LAST_POINT,
+         "=INDEX(JOINT.TAIL(%s;%s;\"upper\";0.5);1;1)" % tuple(YEARS), 1e-12, "four"),
         ("The repaired matrix is feasible at the floor",
          "=JOINT.FEASIBLE(CORRELATION;EIGENVALUE_FLOOR)", 1, 0, "whole"),
         ("Its eigenvalues add up to the number of lines", "=SUM(Dependence.C37:C41)", N, 1e-9,
@@ -390,8 +397,8 @@ def price_checks():
 
 def function_checks():
     ceded = FIRST + CEDED_YEAR - 1986
-    areas = ["Dependence.A5:M49", "Models.A4:M40", "Margins.A6:L42", "Terms.A6:K25",
-             "$'As if'.A8:P%d" % LAST, "Price.A6:M52", "Blocks.A7:O58",
+    areas = ["Dependence.A5:M49", "Evidence." + AREA, "Models.A4:M40", "Margins.A6:L42",
+             "Terms.A6:K25", "$'As if'.A8:P%d" % LAST, "Price.A6:M52", "Blocks.A7:O58",
              "Exceedance.A9:L%d" % (8 + POINTS)]
     return [
         ("Ceded loss of %d: JOINT.CEDE and plain arithmetic" % CEDED_YEAR,
