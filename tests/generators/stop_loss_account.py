@@ -65,7 +65,7 @@ DASHES = {"gaussian": "dashes", "t": "solid", "gumbel": "dots", "independent": "
 
 FIRST, LAST = 8, 7 + len(LOSS_RATIOS)          # rows of the years on sheet Loss ratios
 POINTS = 40                                    # of an exceedance curve
-REPAIR_NOTE = (7, 4)                           # rows, columns
+REPAIR_NOTE = (8, 4)                           # rows, columns
 BLOCK = (24, 7)                                # a price block: rows, columns
 
 INVENTED = "Invented data: the insurer, its lines and every figure were made up for this workbook."

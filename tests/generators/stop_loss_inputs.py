@@ -15,7 +15,8 @@ def loss_ratios(book):
                    "cover year", [1.5] + [1.9] * N + [0.5] + [1.9] * N + [0.6, 4.4] + [2.0] * N, 7)
     sheet.put("A5", "By year (input)", "section")
     sheet.put("H5", "Scaled ranks r/(n+1)", "section")
-    sheet.put("H6", "JOINT.RANKS(LOSS_RATIOS)", "note")
+    data = "B%d:F%d" % (FIRST, LAST)
+    sheet.put("H6", "JOINT.RANKS(%s)" % data, "note")
     sheet.put("A6", "an empty cell is a gap: the line was not written, or the record is lost",
               "note")
     sheet.put("A7", "Year", "lefthead")
@@ -24,7 +25,7 @@ def loss_ratios(book):
     for i, (year, *ratios) in enumerate(LOSS_RATIOS):
         sheet.put("A%d" % (FIRST + i), year, "year left cell")
         sheet.row("B%d" % (FIRST + i), ratios, "percent input")
-    sheet.array("H%d" % FIRST, len(LOSS_RATIOS), N, "=JOINT.RANKS(LOSS_RATIOS)", "three cell")
+    sheet.array("H%d" % FIRST, len(LOSS_RATIOS), N, "=JOINT.RANKS(%s)" % data, "three cell")
     sheet.book.name("LOSS_RATIOS", sheet, "B7:F%d" % LAST)
     statistics(sheet)
     x, y = "'Loss ratios'.I%d:'Loss ratios'.I%d", "'Loss ratios'.L%d:'Loss ratios'.L%d"
@@ -83,7 +84,8 @@ def dependence(book):
     eigenvalues(sheet)
     section(sheet, "H34", "Note on the repair", "JOINT.REPAIRNOTE(GREINER_MAP;EIGENVALUE_FLOOR)")
     sheet.array("H36", *REPAIR_NOTE, "=JOINT.REPAIRNOTE(GREINER_MAP;EIGENVALUE_FLOOR)",
-                lambda i, j: "cell" if not j else "four cell" if i < 4 and j == 1 else "whole cell")
+                lambda i, j: "cell" if not j else
+                "four cell" if i not in (4, 5, 6) and j == 1 else "whole cell")
     worst_triple(sheet)
 
 
