@@ -39,6 +39,20 @@ static bool same_value(const value *a, const value *b)
     return true;
 }
 
+/* All texts of a table in one block, since each of the pool's has its own overhead. */
+static bool copy_words(const char *const *from, const char **to, size_t n, pool *p)
+{
+    size_t bytes = 0;
+    for (size_t i = 0; i < n; i++) bytes += from[i] ? strlen(from[i]) + 1 : 0;
+    char *at = pool_take(p, bytes, 1);
+    for (size_t i = 0; at && i < n; i++) {
+        if (!from[i]) continue;
+        to[i] = at;
+        at += strlen(strcpy(at, from[i])) + 1;
+    }
+    return at;
+}
+
 static bool copy_table(const table *from, table *to, pool *p)
 {
     size_t n = from->rows * from->cols;
@@ -48,9 +62,7 @@ static bool copy_table(const table *from, table *to, pool *p)
     memcpy(to->at, from->at, n * sizeof *to->at);
     if (!from->words) return true;
     to->words = pool_take_zeroed(p, n, sizeof *to->words);
-    for (size_t i = 0; to->words && i < n; i++)
-        if (from->words[i] && !(to->words[i] = pool_text(p, from->words[i]))) return false;
-    return to->words;
+    return to->words && copy_words(from->words, to->words, n, p);
 }
 
 static bool copy_value(const value *from, value *to, pool *p)
@@ -109,7 +121,7 @@ void cache_keeps(const function *f, const value *in, size_t n_in, const value *o
     bool whole = (k.in = pool_take(&k.pool, n_in, sizeof *k.in)) &&
                  copy_value(out, &k.out, &k.pool);
     for (size_t i = 0; whole && i < n_in; i++) whole = copy_value(in + i, k.in + i, &k.pool);
-    if (!whole) {
+    if (!whole || k.pool.bytes > MOST_BYTES_OF_ONE) {
         pool_empty(&k.pool);
         return;
     }

@@ -56,13 +56,21 @@ static status read_all(const function *f, const value *in, size_t n_in, argument
     return OK;
 }
 
-/* A result beyond what a number can hold is an error, in a table in its own cell only. */
+/* A result beyond what a number can hold is an error, in a table in its own cell only. One that is
+ * undefined without saying why is our defect, which tests look for, but no number for the user. */
+static bool is_none(double x, report *r)
+{
+    bool undefined = isnan(x) && !marks_gap(x) && fault_in(x) == OK;
+    r->undefined = r->undefined || undefined;
+    return undefined || isinf(x);
+}
+
 static status refuse_overflow(value *out, report *r)
 {
-    if (out->is == IS_NUMBER && isinf(out->number))
-        return refuse(r, OUT_OF_DOMAIN, "the result is too large for a number");
+    if (out->is == IS_NUMBER && is_none(out->number, r))
+        return refuse(r, OUT_OF_DOMAIN, "the result is beyond the range of numbers");
     for (size_t i = 0; out->is == IS_TABLE && i < out->table.rows * out->table.cols; i++)
-        if (isinf(out->table.at[i])) out->table.at[i] = fault(OUT_OF_DOMAIN);
+        if (is_none(out->table.at[i], r)) out->table.at[i] = fault(OUT_OF_DOMAIN);
     return OK;
 }
 
@@ -84,8 +92,8 @@ static status run(const function *f, const value *in, size_t n_in, value *out, r
     argument read[MAX_PARAMS];
     size_t most = count_params(f);
     if (n_in > most && !f->rest)
-        return refuse(r, BAD_KIND, "%zu arguments are given, but there are at most %zu", n_in,
-                      most);
+        return refuse(r, BAD_KIND, "%zu argument%s given, but at most %zu can be", n_in,
+                      plural(n_in), most);
     status s = read_all(f, in, n_in, read, r);
     if (s != OK) return s;
     s = f->call(read, out, r);

@@ -1,7 +1,12 @@
-/* checksum.c - FNV-1a over the arguments, byte by byte from the lowest, whatever the machine. */
+/* checksum.c - FNV-1a over the arguments, whatever the machine.
+ *
+ * Numbers count with fifteen significant digits, which is what the office writes into a file: a
+ * workbook that is saved and opened again gives the same checksum.
+ */
 #include "checksum.h"
 
-#include <string.h>
+#include <math.h>
+#include <stdio.h>
 
 enum { CELL_EMPTY, CELL_NUMBER, CELL_TEXT };
 
@@ -16,6 +21,17 @@ static uint64_t add_word(uint64_t h, uint64_t word)
     return h;
 }
 
+/* Digits and signs only: the decimal point depends on the locale. */
+static uint64_t add_number(uint64_t h, double number)
+{
+    char digits[32];
+    snprintf(digits, sizeof digits, "%.14e", number == 0 ? fabs(number) : number);
+    for (const char *s = digits; *s; s++)
+        if ((*s >= '0' && *s <= '9') || *s == '-' || *s == '+' || *s == 'e')
+            h = add_byte(h, (unsigned char)*s);
+    return add_byte(h, 0);
+}
+
 static uint64_t add_cell(uint64_t h, const char *text, double number)
 {
     if (text && *text) {
@@ -24,10 +40,7 @@ static uint64_t add_cell(uint64_t h, const char *text, double number)
         return add_byte(h, 0);
     }
     if (text || marks_gap(number)) return add_byte(h, CELL_EMPTY);
-    if (number == 0) number = 0;
-    uint64_t bits;
-    memcpy(&bits, &number, sizeof bits);
-    return add_word(add_byte(h, CELL_NUMBER), bits);
+    return add_number(add_byte(h, CELL_NUMBER), number);
 }
 
 static uint64_t add_value(uint64_t h, const value *v)

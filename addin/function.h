@@ -88,7 +88,7 @@ typedef struct function {
     const char *name;         /* method of the interface, like tauGrid: never change it */
     const char *group;        /* heading in the reference */
     const char *help;         /* one sentence, for the wizard and the reference */
-    const char *detail;       /* for the reference: definitions, special cases, source; may be NULL */
+    const char *detail;       /* for the reference: definitions, special cases, source */
     example examples[MAX_EXAMPLES];
     param params[MAX_PARAMS]; /* up to the first without a name */
     bool costly;              /* worth keeping in the cache of recent results */

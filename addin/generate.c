@@ -280,8 +280,8 @@ static void each_group(void (*say)(const char *heading))
 static void reference(void)
 {
     puts("# Function reference\n\n"
-         "Written from the function tables in `addin/functions`; each example runs as a test in the "
-         "office. Formulas are as typed in an English office. What holds for every function stands "
+         "Written from the function tables in `addin/functions`; each example runs as a test in "
+         "the office. Formulas are as typed in an English office. What holds for every function stands "
          "in the README under Conventions.\n");
     each_group(contents_group);
     putchar('\n');

@@ -23,11 +23,14 @@ static status refuse_bounds(const param *p, double x, report *r)
     bool low = p->low > -HUGE_VAL, high = p->high < HUGE_VAL;
     const char *above = p->open & LOW_OPEN ? "above" : "at least";
     const char *below = p->open & HIGH_OPEN ? "below" : "at most";
+    const char *blank = x == 0 && p->optional
+                            ? " (a blank cell counts as 0; leave the argument out instead)" : "";
     if (low && high)
-        return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g and %s %g", p->name, x, above,
-                      p->low, below, p->high);
+        return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g and %s %g%s", p->name, x,
+                      above, p->low, below, p->high, blank);
     if (low)
-        return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g", p->name, x, above, p->low);
+        return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g%s", p->name, x, above, p->low,
+                      blank);
     return refuse(r, OUT_OF_DOMAIN, "%s is %g, but must be %s %g", p->name, x, below, p->high);
 }
 
@@ -123,14 +126,27 @@ static status check_length(const argument *a, const argument *earlier, report *r
 {
     if (a->data.rows == earlier->data.rows) return OK;
     const char *name = a->param->name, *other = earlier->param->name;
-    return refuse(r, BAD_KIND, "%s is %zu long, but %s is %zu long%s", name, a->data.rows, other,
-                  earlier->data.rows,
-                  a->header != earlier->header
-                      ? " (only one of them has a header, which is not counted)"
-                      : "");
+    if (a->header == earlier->header)
+        return refuse(r, BAD_KIND, "%s is %zu long, but %s is %zu long", name, a->data.rows, other,
+                      earlier->data.rows);
+    return refuse(r, BAD_KIND, "%s is %zu long, but %s is %zu long (%s has a header, which is not "
+                  "counted, and %s has none)", name, a->data.rows, other, earlier->data.rows,
+                  a->header ? name : other, a->header ? other : name);
 }
 
-static status check_fit(const argument *a, const argument *earlier, report *r)
+/* Margins without names are those of the lines they fit, so that what fits them sees the names. */
+static status adopt_names(struct margins *m, const char **names, report *r)
+{
+    if (!names) return OK;
+    const char **own = pool_take(r->pool, m->lines, sizeof *own);
+    if (!own) return NO_MEMORY;
+    for (size_t i = 0; i < m->lines; i++)
+        own[i] = m->names && *m->names[i] ? m->names[i] : names[i];
+    m->names = own;
+    return OK;
+}
+
+static status check_fit(argument *a, const argument *earlier, report *r)
 {
     if (a->param->kind == COLUMN) return check_length(a, earlier, r);
     const char **names, **theirs;
@@ -142,11 +158,14 @@ static status check_fit(const argument *a, const argument *earlier, report *r)
         if (*names[i] && *theirs[i] && !same_word(names[i], theirs[i]))
             return refuse(r, BAD_KIND, "%s names line %zu \"%s\", but %s names it \"%s\"",
                           a->param->name, i + 1, names[i], earlier->param->name, theirs[i]);
-    return OK;
+    return a->param->kind == MARGINS ? adopt_names(&a->margins, theirs, r) : OK;
 }
 
-static status read_given(const param *p, const value *v, const char **names, argument *a, report *r)
+static status read_given(const param *p, const value *v, const argument *earlier, argument *a,
+                         report *r)
 {
+    struct line_names known = { 0 };
+    if (earlier && earlier->given) known.lines = lines_of(earlier, &known.names);
     a->given = true;
     switch (p->kind) {
     case COLUMN: return read_column(p->name, v, a, r);
@@ -155,7 +174,7 @@ static status read_given(const param *p, const value *v, const char **names, arg
     case MATRIX: return read_matrix(v, p->name, &a->data, &a->header, r);
     case MODEL: return read_copula(v, p->name, &a->model, r);
     case MARGINS: return read_margins(p->name, v, &a->margins, r);
-    case TERMS: return read_terms(p->name, v, names, &a->terms, r);
+    case TERMS: return read_terms(p->name, v, &known, &a->terms, r);
     case AGGREGATE: return read_aggregate(p->name, v, &a->terms, r);
     case SETTINGS: return read_settings(p, v, &a->settings, r);
     default: return read_range(p, v, a, r);
@@ -177,6 +196,27 @@ static status read_raw(const param *p, const value *v, argument *a, report *r)
     return OK;
 }
 
+/* What counts as left out: an empty text, and a block without anything in it. */
+static bool is_empty(const param *p, const value *v)
+{
+    bool block = p->kind == MARGINS || p->kind == TERMS || p->kind == AGGREGATE ||
+                 p->kind == SETTINGS;
+    if (v->is == IS_TEXT) return !*v->text;
+    return block && v->is == IS_TABLE && !filled_rows(&v->table);
+}
+
+/* Quotes the first name, so that a stray text above the numbers does not pass unseen. */
+static void remark_header(const argument *a, report *r)
+{
+    const table *t = &a->raw->table;
+    for (size_t j = 0; j < t->cols; j++) {
+        if (!word_at(t, 0, j)) continue;
+        remark(r, "header of %s skipped (\"%s\"%s)", a->param->name, word_at(t, 0, j),
+               j + 1 < t->cols ? ", ..." : "");
+        return;
+    }
+}
+
 status read_argument(const param *p, const value *v, const argument *earlier, argument *a,
                      report *r)
 {
@@ -187,7 +227,7 @@ status read_argument(const param *p, const value *v, const argument *earlier, ar
         if (p->kind == WORD) return read_word(p, v, a, r);
         return p->kind == WORDS ? read_words(p, v, a, r) : read_number(p, v, a, r);
     }
-    if (v->is == IS_NOTHING || (v->is == IS_TEXT && !*v->text && p->optional)) {
+    if (v->is == IS_NOTHING || (p->optional && is_empty(p, v))) {
         if (p->optional) {
             static const setting none[MAX_SETTINGS];
             a->settings = none;
@@ -196,9 +236,7 @@ status read_argument(const param *p, const value *v, const argument *earlier, ar
         return refuse(r, BAD_KIND, "%s is missing", p->name);
     }
     if (p->kind == RAW) return read_raw(p, v, a, r);
-    const char **names = NULL;
-    if (earlier && earlier->given) lines_of(earlier, &names);
-    status s = read_given(p, v, names, a, r);
-    if (s == OK && a->header) remark(r, "header of %s skipped", p->name);
+    status s = read_given(p, v, earlier, a, r);
+    if (s == OK && a->header) remark_header(a, r);
     return s == OK && earlier && earlier->given ? check_fit(a, earlier, r) : s;
 }

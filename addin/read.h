@@ -30,8 +30,15 @@ status read_numbers(const char *name, const value *v, argument *a, report *r);
 
 status read_margins(const char *name, const value *v, struct margins *m, report *r);
 
-/* names: those of the cover's lines as known from elsewhere, for `with`, or NULL. */
-status read_terms(const char *name, const value *v, const char **names, struct terms *t, report *r);
+/* The names of lines as known from an earlier argument; NULL where there are none. */
+struct line_names {
+    size_t lines;
+    const char **names;
+};
+
+/* `known`, for lines that have no name in the block itself, may be NULL. */
+status read_terms(const char *name, const value *v, const struct line_names *known, struct terms *t,
+                  report *r);
 status read_aggregate(const char *name, const value *v, struct terms *t, report *r);
 status read_settings(const param *p, const value *v, const setting **settings, report *r);
 
@@ -43,7 +50,7 @@ const char *word_at(const table *t, size_t row, size_t col);
 /* true for a cell that holds nothing */
 bool empty_at(const table *t, size_t row, size_t col);
 
-/* true when the first row holds text and no number, nor a text that reads as one */
+/* true when the first row holds names and nothing else but empty cells: see reads_as_name() */
 bool header_in(const table *t);
 
 /* rows up to the last that is not empty */

@@ -42,7 +42,7 @@ static status layout_from_header(const char *name, const table *t, struct layout
                 return refuse(r, BAD_KIND, "%s has two columns for \"%s\"", name,
                               word ? word : "name");
             return refuse(r, BAD_KIND, "%s has the heading \"%s\" in column %zu, but knows only %s",
-                          name, word, j + 1, known);
+                          name, word ? word : "", j + 1, known);
         }
         l->column[place] = j;
     }
@@ -205,15 +205,16 @@ status read_margins(const char *name, const value *v, struct margins *m, report 
     if (s != OK) return s;
     *m = (struct margins){ .lines = l.rows, .of = pool_take(r->pool, l.rows, sizeof *m->of) };
     if (!m->of) return NO_MEMORY;
+    s = read_names(name, t, &l, MARGIN_NAME, &m->names, r);
     for (size_t i = 0; i < l.rows && s == OK; i++) s = read_margin(name, t, &l, i, m->of + i, r);
-    return s == OK ? read_names(name, t, &l, MARGIN_NAME, &m->names, r) : s;
+    return s;
 }
 
 /* ---- terms ------------------------------------------------------------------------------------
  */
 
 static const char term_words[] = "excess limit share name with",
-                  aggregate_words[] = "excess limit share";
+                  aggregate_words[] = "excess limit share name";
 enum { TERM_EXCESS, TERM_LIMIT, TERM_SHARE, TERM_NAME, TERM_WITH };
 
 static status term_layout(const char *name, const table *t, bool aggregate, struct layout *l,
@@ -221,10 +222,10 @@ static status term_layout(const char *name, const table *t, bool aggregate, stru
 {
     static const size_t as_given[] = { 0, 1, 2, 3, 4 }, name_first[] = { 3, 0, 1, 2, 4 };
     start_layout(l, aggregate ? aggregate_words : term_words);
-    bool named = !aggregate && word_at(t, 0, 0);
+    bool named = word_at(t, 0, 0);
     status s = header_in(t) ? layout_from_header(name, t, l, r)
                             : layout_in_order(name, t, named ? name_first : as_given,
-                                              aggregate ? 3 : 5, l, r);
+                                              aggregate ? 4 : 5, l, r);
     if (s == OK) s = count_rows(name, t, l, r);
     if (s == OK && aggregate && l->rows != 1)
         return refuse(r, BAD_KIND, "%s has %zu rows, but must be one row: excess limit share", name,
@@ -239,8 +240,13 @@ static status read_with(const char *name, const table *t, const struct layout *l
     size_t row = l->first + line + 1;
     const char *text = text_of(t, l, line, TERM_WITH);
     *with = 0;
-    for (size_t i = 0; text && names && i < all->lines; i++)
-        if (same_word(names[i], text)) *with = i + 1;
+    for (size_t i = 0; text && names && i < all->lines; i++) {
+        if (!*names[i] || !same_word(names[i], text)) continue;
+        if (*with)
+            return refuse(r, BAD_KIND, "%s has \"%s\" under with in row %zu, but lines %zu and %zu "
+                          "have that name", name, text, row, *with, i + 1);
+        *with = i + 1;
+    }
     if (text && !*with)
         return refuse(r, BAD_KIND, "%s has \"%s\" under with in row %zu, but no line of that name",
                       name, text, row);
@@ -300,13 +306,24 @@ static status refuse_term(const char *name, const term *t, terms_fault fault, st
     }
 }
 
-/* The names that `with` may use: those in the block itself, else those known from elsewhere. */
-static status read_followers(const char *name, const table *t, const struct layout *l,
-                             const char **names, struct terms *to, report *r)
+/* Lines without a name of their own take those known from elsewhere, when these are as many; when
+ * they are not, the terms do not fit, which is said later. */
+static status read_term_names(const char *name, const table *t, const struct layout *l,
+                              const struct line_names *known, struct terms *to, report *r)
 {
-    if (to->names) names = to->names;
+    status s = read_names(name, t, l, TERM_NAME, &to->names, r);
+    if (s != OK || !known || !known->names || known->lines != to->lines) return s;
+    if (!to->names) to->names = known->names;
+    for (size_t i = 0; i < to->lines; i++)
+        if (!*to->names[i]) to->names[i] = known->names[i];
+    return OK;
+}
+
+static status read_followers(const char *name, const table *t, const struct layout *l,
+                             struct terms *to, report *r)
+{
     for (size_t i = 0; i < to->lines; i++) {
-        status s = read_with(name, t, l, i, to, names, &to->of[i].with, r);
+        status s = read_with(name, t, l, i, to, to->names, &to->of[i].with, r);
         if (s != OK) return s;
         if (is_gap(to->of[i].share) && !to->of[i].with)
             return refuse(r, BAD_KIND, "%s gives no share in row %zu", name, l->first + i + 1);
@@ -335,15 +352,16 @@ static status read_rows(const char *name, const table *t, const struct layout *l
     return s;
 }
 
-status read_terms(const char *name, const value *v, const char **names, struct terms *to, report *r)
+status read_terms(const char *name, const value *v, const struct line_names *known,
+                  struct terms *to, report *r)
 {
     const table *t;
     struct layout l;
     status s = table_of(name, v, "a block of terms, one line a row: excess limit share", &t, r);
     if (s == OK) s = term_layout(name, t, false, &l, r);
     if (s == OK) s = read_rows(name, t, &l, to, r);
-    if (s == OK) s = read_names(name, t, &l, TERM_NAME, &to->names, r);
-    if (s == OK) s = read_followers(name, t, &l, names, to, r);
+    if (s == OK) s = read_term_names(name, t, &l, known, to, r);
+    if (s == OK) s = read_followers(name, t, &l, to, r);
     return s == OK ? check_terms(name, &l, to, r) : s;
 }
 

@@ -20,7 +20,7 @@ bool header_in(const table *t)
     bool text = false;
     for (size_t j = 0; j < t->cols; j++) {
         const char *word = word_at(t, 0, j);
-        if (word ? reads_as_number(word) : !marks_gap(t->at[j])) return false;
+        if (word ? !reads_as_name(word) : !marks_gap(t->at[j])) return false;
         text = text || word;
     }
     return text;
@@ -64,10 +64,7 @@ status table_of(const char *name, const value *v, const char *wanted, const tabl
     if (v->is == IS_NUMBER || (v->table.rows == 1 && v->table.cols == 1)) {
         double x = v->is == IS_NUMBER ? v->number : v->table.at[0];
         if (fault_in(x) != OK) return refuse(r, fault_in(x), "%s is an error", name);
-        return refuse(r, BAD_KIND,
-                      "%s is one value, but must be %s (a computed range reaches a function whole "
-                      "only in a formula entered with Ctrl+Shift+Enter)",
-                      name, wanted);
+        return refuse(r, BAD_KIND, "%s is one value, but must be %s", name, wanted);
     }
     *t = &v->table;
     return OK;

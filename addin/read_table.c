@@ -4,6 +4,7 @@
  * both, so it is handed on where it lies: adaptors never write to their arguments.
  */
 #include "read.h"
+#include "words.h"
 
 #include <math.h>
 
@@ -43,10 +44,22 @@ static size_t filled_column(const samples *s)
     return n;
 }
 
+/* One value where observations are needed is most often a computed range that the office cut. */
+static status observations_of(const char *name, const value *v, const char *wanted,
+                              const table **t, report *r)
+{
+    value one = single_of(v);
+    if (one.is == IS_NUMBER && fault_in(one.number) == OK)
+        return refuse(r, BAD_KIND, "%s is one value, but must be %s (a computed range reaches a "
+                      "function whole only in a formula entered with Ctrl+Shift+Enter)", name,
+                      wanted);
+    return table_of(name, v, wanted, t, r);
+}
+
 status read_column(const char *name, const value *v, argument *a, report *r)
 {
     const table *t;
-    status s = table_of(name, v, "one column or one row", &t, r);
+    status s = observations_of(name, v, "one column or one row", &t, r);
     if (s != OK) return s;
     if (t->rows > 1 && t->cols > 1)
         return refuse(r, BAD_KIND, "%s is %zu x %zu cells, but must be one column or one row", name,
@@ -57,7 +70,7 @@ status read_column(const char *name, const value *v, argument *a, report *r)
     a->data = (samples){ t->rows * t->cols - a->header, 1, t->at + a->header, NULL };
     if (a->header && !(a->data.names = names_in_row(t, 0, 0, 1, r))) return NO_MEMORY;
     a->filled = filled_column(&a->data);
-    return OK;
+    return a->filled ? OK : refuse(r, TOO_FEW, "%s has no observations", name);
 }
 
 static status refuse_gap(const char *name, const table *t, size_t first, size_t rows, report *r)
@@ -73,7 +86,7 @@ static status refuse_gap(const char *name, const table *t, size_t first, size_t 
 status read_data(const char *name, const value *v, bool gaps_allowed, argument *a, report *r)
 {
     const table *t;
-    status s = table_of(name, v, "a range, one observation a row", &t, r);
+    status s = observations_of(name, v, "a range, one observation a row", &t, r);
     if (s != OK) return s;
     a->header = header_in(t);
     s = check_numbers(name, t, a->header, r);
@@ -101,9 +114,24 @@ static bool names_in_column(const table *t, size_t first)
     return text;
 }
 
-static status names_of_matrix(const table *t, bool header, bool side, samples *m, report *r)
+/* Where both are there, the header row and the name column must tell the same lines. */
+static status check_sides(const char *name, const table *t, report *r)
+{
+    for (size_t i = 1; i < t->cols; i++) {
+        const char *above = word_at(t, 0, i), *beside = word_at(t, i, 0);
+        if (above && beside && !same_word(above, beside))
+            return refuse(r, BAD_KIND, "%s is headed \"%s\" in column %zu, but \"%s\" stands "
+                          "beside row %zu", name, above, i + 1, beside, i + 1);
+    }
+    return OK;
+}
+
+static status names_of_matrix(const char *name, const table *t, bool header, bool side, samples *m,
+                              report *r)
 {
     if (!header && !side) return OK;
+    status s = header && side ? check_sides(name, t, r) : OK;
+    if (s != OK) return s;
     m->names = header ? names_in_row(t, 0, side, m->cols, r)
                       : pool_take(r->pool, m->cols, sizeof *m->names);
     if (!m->names) return NO_MEMORY;
@@ -141,7 +169,7 @@ status read_matrix(const value *v, const char *name, samples *m, bool *header, r
                 return refuse(r, BAD_KIND, "%s has an empty cell in row %zu, column %zu", name,
                               i + *header + 1, j + side + 1);
         }
-    return names_of_matrix(t, *header, side, m, r);
+    return names_of_matrix(name, t, *header, side, m, r);
 }
 
 status read_numbers(const char *name, const value *v, argument *a, report *r)

@@ -13,6 +13,7 @@ typedef struct {
     char facts[512];    /* what there is to say of a call that went well */
     const value *given; /* the arguments as they came, for checksums */
     size_t n_given;
+    bool undefined;          /* the result held an undefined number: a defect, for tests */
 } report;
 
 /* Says what is wrong and hands the status back: return refuse(r, BAD_KIND, "...").

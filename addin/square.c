@@ -13,6 +13,21 @@ static status cells_of(const char *name, const value *v, const table **t, report
     return table_of(name, v, "a square range", t, r);
 }
 
+/* A frame may hold names and blanks only: a number in it would be dropped unseen. */
+static status check_frame(const square *s, report *r)
+{
+    const table *t = s->cells;
+    for (size_t i = 0; i < t->rows; i++)
+        for (size_t j = 0; j < t->cols; j++) {
+            if (i >= s->row && j >= s->column) continue;
+            if (word_at(t, i, j) || empty_at(t, i, j)) continue;
+            return refuse(r, BAD_KIND, "%s is %zu x %zu cells, of which that in row %zu, column "
+                          "%zu must be a name or empty", s->name, t->rows, t->cols, i + 1,
+                          j + 1);
+        }
+    return OK;
+}
+
 status square_of_size(const char *name, const value *v, size_t d, square *found, report *r)
 {
     const table *t;
@@ -22,7 +37,7 @@ status square_of_size(const char *name, const value *v, size_t d, square *found,
         return refuse(r, BAD_KIND, "%s is %zu x %zu cells, but must be %zu x %zu like the matrix",
                       name, t->rows, t->cols, d, d);
     *found = (square){ name, t, t->rows - d, t->cols - d, d };
-    return OK;
+    return check_frame(found, r);
 }
 
 static bool number_in_row(const table *t, size_t row)
@@ -59,7 +74,7 @@ status square_of_any_size(const char *name, const value *v, square *found, repor
         return refuse(r, BAD_KIND, "%s is %zu x %zu cells, but must be square", name, t->rows,
                       t->cols);
     *found = (square){ name, t, header, names, t->rows - header };
-    return OK;
+    return check_frame(found, r);
 }
 
 static value cell_at(const square *s, size_t i, size_t j)

@@ -92,6 +92,8 @@ rtl_uString *office_text(const char *utf8)
     size_t bytes = strlen(utf8);
     if (bytes > INT32_MAX / 4) return NULL;
     rtl_uString *text = NULL;
+    rtl_uString_new(&text);                     /* the office's one empty text, not to be written */
+    if (!bytes) return text;
     rtl_uString_new_WithLength(&text, (sal_Int32)bytes);        /* never more units than bytes */
     if (!text) return NULL;
     sal_Int32 n = 0;

@@ -81,6 +81,20 @@ bool reads_as_number(const char *text)
     return digits;
 }
 
+/* Letters of other scripts count, signs do not: UTF-8 beginning with C2 (no-break space, currency)
+ * or E2 (dashes, minus, euro) is a sign. */
+bool reads_as_name(const char *text)
+{
+    for (const char *s = text; *s; s++) {
+        unsigned char byte = (unsigned char)*s;
+        if (byte == 0xc2 && s[1]) s++;
+        else if (byte == 0xe2 && s[1] && s[2]) s += 2;
+        else if (byte >= 0x80 || (lower(*s) >= 'a' && lower(*s) <= 'z'))
+            return !reads_as_number(text);
+    }
+    return false;
+}
+
 char *tidy_words(pool *p, const char *text)
 {
     char *tidy = pool_text(p, text), *to = tidy;

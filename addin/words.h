@@ -23,6 +23,9 @@ int word_in(const char *list, const char *word);
 /* "12", "3,5", "1.234,5", "-2e3", "7 %": what a person would take for a number */
 bool reads_as_number(const char *text);
 
+/* "motor", "Q1", "5 EUR", but no number, date, sum of money or lone sign: a text with a letter */
+bool reads_as_name(const char *text);
+
 /* lower case, single blanks, none around; NULL when there is no memory */
 char *tidy_words(pool *p, const char *text);
 

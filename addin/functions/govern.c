@@ -1,6 +1,8 @@
 /* govern.c - functions that say what the others did. */
 #include "../function.h"
+#include "../read.h"
 #include "../version.h"
+#include "../words.h"
 
 #include <gsl/gsl_version.h>
 
@@ -17,47 +19,64 @@ static status cell_about(const argument *in, value *out, report *r)
     return out->text ? OK : NO_MEMORY;
 }
 
-static status say(const char *sentence, const char *more, value *out, report *r)
+static status say(const char *text, value *out)
 {
-    *out = (value){ .is = IS_TEXT,
-                    .text = text_from(r->pool, *more ? "%s: %s" : "%s", sentence, more) };
-    return out->text ? OK : NO_MEMORY;
+    *out = (value){ .is = IS_TEXT, .text = text };
+    return text ? OK : NO_MEMORY;
 }
 
-/* The named function's own report, in this call's pool. Its errors are this function's result. */
+/* "fine", with the facts. The size is told since one cell shows only the first of a result. */
+static status say_fine(const value *result, report *inner, value *out)
+{
+    const table *t = &result->table;
+    if (result->is == IS_TABLE && (t->rows > 1 || t->cols > 1))
+        remark(inner, "the result is %zu x %zu cells", t->rows, t->cols);
+    return say(text_from(inner->pool, *inner->facts ? "fine: %s" : "fine", inner->facts), out);
+}
+
+/* The named function's own report, in this call's pool. Whatever is wrong, WHY itself says it. */
 static status cell_why(const argument *in, value *out, report *r)
 {
     const value *given = r->given;
-    size_t n = r->n_given;
-    const function *f = function_named(in[0].text);
-    if (!f || f->rest)
-        return refuse(r, BAD_KIND,
-                      "function is \"%s\", but must name a function that can be asked about",
-                      in[0].text);
+    value name = single_of(in[0].raw), result;
+    const char *asked = name.is == IS_TEXT ? name.text : "";
+    const function *f = function_named(without_prefix(asked, "="));
+    if (!f)
+        return say(text_from(r->pool, "there is no function \"%s\": WHY takes a name in quotes and "
+                             "then the arguments, as in WHY(\"TAU\";A1:A9;B1:B9)", asked), out);
+    if (f->rest) return say("WHY cannot be asked about itself", out);
     report inner = { .pool = r->pool };
-    value ignored;
-    if (call_function(f, given + 1, n ? n - 1 : 0, &ignored, &inner) != OK)
-        return say(inner.why, "", out, r);
-    return say("fine", inner.facts, out, r);
+    size_t n = r->n_given ? r->n_given - 1 : 0;
+    status s = call_function(f, given + 1, n, &result, &inner);
+    return s == OK ? say_fine(&result, &inner, out) : say(text_from(r->pool, "%s", inner.why), out);
 }
 
 const function govern_functions[] = {
     {
         .name = "why",
         .group = "Govern",
-        .help = "Runs a function and says in one sentence what is wrong with its arguments, or that all is fine.",
-        .detail = "The sentence names argument, row and column, counted from the first row of the range. When all "
-                  "is fine it tells rows used and dropped, headers skipped and repairs made. "
-                  "`=IFERROR(JOINT.TAU(A2:A41;B2:B41);JOINT.WHY(\"TAU\";A2:A41;B2:B41))` shows the sentence in "
-                  "place of an error. A range with an error in one of its cells never reaches a function: the "
-                  "office answers Err:504, here too, and `=SUMPRODUCT(ISERROR(A2:A41))` counts such cells.",
+        .help = "Runs a function and says in one sentence what is wrong with its arguments, or "
+                "that all is fine.",
+        .detail =
+            "The sentence names argument, row and column, counted from the first row of the range. "
+            "When all is fine it tells rows used and dropped, headers skipped, repairs made and "
+            "the size of the result. "
+            "`=IFERROR(JOINT.TAU(A2:A41;B2:B41);JOINT.WHY(\"TAU\";A2:A41;B2:B41))` shows the "
+            "sentence in place of an error. An error in a cell of a range never reaches a "
+            "function: the office answers Err:504, here too, and "
+            "`=SUMPRODUCT(ISERROR(A2:A41))` counts such cells. Of a nested formula ask the inner "
+            "function first, since its error is all that the outer one gets.",
         .examples = {
             { "WHY(\"TAU\";{1;2;3};{1;2})", "y is 2 long, but x is 3 long" },
             { "WHY(\"THETA\";\"gumbel\";0.5)", "fine" },
+            { "WHY(\"EIGEN\";{1;0.5|0.5;1})", "fine: the result is 2 x 1 cells" },
+            { "LEFT(WHY(\"TUA\";1);26)", "there is no function \"TUA\"" },
         },
         .params = {
-            { .name = "function", .help = "The function's name in quotes, with or without JOINT.", .kind = WORDS },
-            { .name = "arguments", .help = "The arguments it was given.", .kind = RAW, .optional = true },
+            { .name = "function", .help = "The function's name in quotes, with or without JOINT.",
+              .kind = RAW },
+            { .name = "arguments", .help = "The arguments it was given.", .kind = RAW,
+              .optional = true },
         },
         .rest = true,
         .call = cell_why,

@@ -202,8 +202,8 @@ const function measure_functions[] = {
         .detail =
             "n is the number of observations in the column; gaps stay empty and are not ranked. "
             "A header row stays. Scaled ranks with average ties are the pseudo-observations from "
-            "which copulas are fitted (Genest, Ghoudi & Rivest 1995). Ties get the average of the ranks they share, the lowest, the highest, "
-            "or these ranks in an order that the seed draws, for each column anew.",
+            "which copulas are fitted (Genest, Ghoudi & Rivest 1995). Ties get the average "
+            "of the ranks they share, the lowest, the highest, or these ranks in an order that the seed draws, for each column anew.",
         .examples = {
             { "RANKS({30|10|20})", "0.75" },
             { "RANKS({5|5|9})", "0.375" },

@@ -221,13 +221,15 @@ static status scheme_setting(const setting *s, scheme *to, report *r)
 {
     *to = SCHEME_PLAIN;
     if (!s->given) return OK;
-    int place = s->text ? word_in(scheme_words, s->text) : -1;
-    if (place < 0) {
-        const char *known = listed(r->pool, scheme_words);
-        if (!known) return NO_MEMORY;
-        return refuse(r, BAD_KIND, "settings has the scheme \"%s\", but it must be %s",
-                      s->text ? s->text : "a number", known);
-    }
+    const char *known = listed(r->pool, scheme_words);
+    if (!known) return NO_MEMORY;
+    if (!s->text)
+        return refuse(r, BAD_KIND, "settings has the number %g for scheme, which must be %s",
+                      s->number, known);
+    int place = word_in(scheme_words, s->text);
+    if (place < 0)
+        return refuse(r, BAD_KIND, "settings has the scheme \"%s\", but it must be %s", s->text,
+                      known);
     *to = (scheme)place;
     return OK;
 }
@@ -262,18 +264,6 @@ static status check_samples(const struct margins *m, const argument *given, repo
     return OK;
 }
 
-static status names_agree(const char **model, const argument *terms, report *r)
-{
-    if (!model || !terms->given || !terms->terms.names) return OK;
-    for (size_t j = 0; j < terms->terms.lines; j++) {
-        const char *name = terms->terms.names[j];
-        if (*name && *model[j] && !same_word(name, model[j]))
-            return refuse(r, BAD_KIND, "terms names line %zu \"%s\", but model names it \"%s\"",
-                          j + 1, name, model[j]);
-    }
-    return OK;
-}
-
 /* Margins whose mean or sd is infinite: the figures of such a line do not settle. */
 static const char *heavy_lines(const struct margins *m, const char **names, pool *p)
 {
@@ -292,8 +282,8 @@ static const char *heavy_lines(const struct margins *m, const char **names, pool
 static status refuse_price(const pricing *price, const char **names, status s, report *r)
 {
     if (s == OUT_OF_DOMAIN && price->overflowed && names)
-        return refuse(r, s, "a simulated loss of %s is beyond the range of numbers",
-                      names[price->overflowed - 1]);
+        return refuse(r, s, "a simulated loss of %s is beyond the range of numbers: are a, b, c "
+                      "parameters, and not mean and sd? See MOMENTS", names[price->overflowed - 1]);
     return s;
 }
 
@@ -305,8 +295,7 @@ static status cell_price(const argument *in, value *out, report *r)
     struct simulation sim = { .model = in[PRICE_MODEL].model, .margins = margins, .cover = &c,
                               .given = given->given ? &given->data : NULL };
     pricing price;
-    status s = names_agree(sim.model->lines, terms, r);
-    if (s == OK) s = check_samples(margins, given, r);
+    status s = check_samples(margins, given, r);
     if (s == OK) s = read_simulation(in[PRICE_SETTINGS].settings, &sim, r);
     if (s == OK) s = cover_from(terms, in + PRICE_AGGREGATE, margins->lines, &c, r);
     if (s != OK) return s;
@@ -327,12 +316,12 @@ static status cell_price(const argument *in, value *out, report *r)
     "One row a line: excess limit share, optionally name and with; an empty limit is unlimited."
 #define AGGREGATE_PARAMETER \
     { .name = "aggregate", .kind = AGGREGATE, .optional = true, \
-      .help = "One row, excess limit share, on each row's sum of ceded amounts." }
+      .help = "One row, excess limit share (1 if left out), on each row's sum of ceded amounts." }
 #define BLOCK_DETAIL \
     "Columns: figure, gross, error, ceded, error, retained, error. Rows: mean, sd, " \
     "attaching, exhausting, VaR, TVaR; the mean of each line, labelled mean and its name; " \
     "its part of each TVaR, labelled TVaR and its name; rows, seed, scheme, level, version, " \
-    "inputs, notes. Labels are unique, so that JOINT.READ and VLOOKUP find them. The parts " \
+    "inputs, notes. Labels are unique, so that JOINT.READ finds them. The parts " \
     "of a TVaR add up to it; rows equal to the VaR share their weight equally. Attaching: " \
     "with an aggregate, the share of rows in which the ceded sum before it is larger than " \
     "its excess; else that in which anything is ceded. Exhausting: with an aggregate, the " \

@@ -1,5 +1,6 @@
 /* risk.c - measures of losses that stand in the sheet. */
 #include "../function.h"
+#include "../words.h"
 #include "../../src/allocate.h"
 
 #include <math.h>
@@ -14,7 +15,11 @@ static void put_known(value *out, size_t row, size_t col, double x)
 
 static status sums_of(const argument *losses, const double **sums, report *r)
 {
-    if (losses->data.rows == 0) return refuse(r, TOO_FEW, "losses has no rows");
+    if (losses->data.cols > 1)
+        remark(r, "%zu columns added across each of %zu row%s", losses->data.cols,
+               losses->data.rows, plural(losses->data.rows));
+    else
+        remark(r, "%zu row%s used", losses->data.rows, plural(losses->data.rows));
     return row_sums(&losses->data, r->pool, sums);
 }
 
@@ -83,7 +88,7 @@ static status measure_levels(const argument *in, measure *of, value *out, report
         put_number(out, place[i], 0, found[i].value);
         put_known(out, place[i], 1, found[i].error);
         if (isnan(found[i].error))
-            remark(r, "%zu rows are too few to tell the error at level %g", n, level[i]);
+            remark(r, "too few rows (%zu) to tell the error at level %g", n, level[i]);
     }
     return s;
 }

@@ -37,13 +37,15 @@ enum { PRICE_COLUMNS = 7, TVAR_ROW = 6, GROSS_COLUMN = 1 };
 
 static const struct published checks[] = {
     { "tau of nine pairs", "Hollander & Wolfe (1973), p. 187", "tau",
-      { { .rows = 9, .cols = 1, .at = tuna_lightness }, { .rows = 9, .cols = 1, .at = tuna_score } },
+      { { .rows = 9, .cols = 1, .at = tuna_lightness },
+        { .rows = 9, .cols = 1, .at = tuna_score } },
       0, 4.0 / 9, 1e-15 },
     { "theta of frank at tau 0.5", "50-digit recomputation of Genest (1987)", "theta",
       { { .text = "frank" }, { .number = 0.5 } }, 0, 5.736282707019970917, 1e-11 },
     { "theta of joe at tau 0.5", "50-digit recomputation, Joe (1997)", "theta",
       { { .text = "joe" }, { .number = 0.5 } }, 0, 2.856257211950806517, 1e-11 },
-    { "correlation at tau 1/3", "Greiner (1909)", "greiner", { { .number = 1.0 / 3 } }, 0, 0.5, 1e-15 },
+    { "correlation at tau 1/3", "Greiner (1909)", "greiner",
+      { { .number = 1.0 / 3 } }, 0, 0.5, 1e-15 },
     { "lowest eigenvalue of tridiagonal (-1, 2, -1)", "closed form, 2 - sqrt 2", "eigen",
       { { .rows = 3, .cols = 3, .at = tridiagonal } }, 2, 0.585786437626904951, 1e-14 },
     { "nearest correlation matrix, entry 1, 2", "Higham (2002), p. 334", "repair",
@@ -58,8 +60,8 @@ static const struct published checks[] = {
       66.383520679938122694, 1e-9 },
     { "expected shortfall of five losses at 0.5", "Acerbi & Tasche (2002), by hand: 143.5 / 2.5",
       "tvar", { { .rows = 5, .cols = 1, .at = losses }, { .number = 0.5 } }, 0, 57.4, 1e-12 },
-    { "TVaR 0.99 of gamma (2, 10) + gamma (3, 10), simulated", "closed form: the sum is gamma (5, 10)",
-      "price",
+    { "TVaR 0.99 of gamma (2, 10) + gamma (3, 10), simulated",
+      "closed form: the sum is gamma (5, 10)", "price",
       { { .rows = 2, .cols = 2, .at = two, .words = independent },
         { .rows = 2, .cols = 3, .at = gammas, .words = gamma_words } },
       TVAR_ROW * PRICE_COLUMNS + GROSS_COLUMN, 130.00544913678995897, 2.4 },
@@ -128,11 +130,12 @@ const function selfcheck_functions[] = {
         .group = "Govern",
         .help = "Computes published values again inside this office: one row each, pass or fail.",
         .detail = "Columns: check, computed, published, allowed difference, source, result. "
-                  "`=SUMPRODUCT(JOINT.SELFCHECK()=\"fail\")` must be 0. The last row is simulated "
-                  "and may differ by about six standard errors.",
+                  "`=SUMPRODUCT(JOINT.SELFCHECK()&\"\"=\"fail\")` must be 0. The last row is "
+                  "simulated and may differ by about six standard errors.",
         .examples = {
             { "INDEX(SELFCHECK();2;6)", "pass" },
-            { "SUMPRODUCT(SELFCHECK()=\"fail\")", "0" },
+            { "SUMPRODUCT(SELFCHECK()&\"\"=\"pass\")", "11" },
+            { "SUMPRODUCT(SELFCHECK()&\"\"=\"fail\")", "0" },
         },
         .costly = true,
         .call = cell_selfcheck,

@@ -26,7 +26,7 @@ static void the_nearest_matrix(void **unused)
     assert_string_equal(r.facts, "repaired, changing entries by up to 0.23931 (row 1, column 2)");
     assert_int_equal(ask("repair", "a,b;1,0.3;0.3,1", 0, NULL, &out, &r), OK);
     assert_same(out.table.at[1], 0.3);
-    assert_string_equal(r.facts, "header of matrix skipped; no repair needed");
+    assert_string_equal(r.facts, "header of matrix skipped (\"a\", ...); no repair needed");
     pool_empty(&p);
 }
 
@@ -152,7 +152,11 @@ static void a_triangle_becomes_a_square(void **unused)
     mirrored("7", "7");
     pool p = { .last = NULL };
     report r = { .pool = &p };
-    value in = cells(&p, "1,0.3;0.2,1"), out;
+    value in = cells(&p, "9,1,0.5; 7,0.5,1"), out;
+    assert_int_equal(call_function(function_named("mirror"), &in, 1, &out, &r), BAD_KIND);
+    assert_non_null(strstr(r.why, "row 1, column 1 must be a name or empty"));
+    r = (report){ .pool = &p };
+    in = cells(&p, "1,0.3;0.2,1");
     assert_int_equal(call_function(function_named("mirror"), &in, 1, &out, &r), BAD_KIND);
     assert_string_equal(r.why, "triangle has different entries in row 1, column 2 and in the "
                                "opposite cell");

@@ -78,6 +78,8 @@ static void columns_refused(void **state)
     refused(x, text("a"), BAD_KIND, "x is the text \"a\"");
     refused(x, nothing(), BAD_KIND, "x is missing");
     refused(x, cells(&p, "1,2;3,4"), BAD_KIND, "x is 2 x 2 cells");
+    refused(x, cells(&p, ";;"), TOO_FEW, "x has no observations");
+    refused(x, cells(&p, "$5;1;2"), BAD_KIND, "\"$5\" in row 1");
     refused(x, cells(&p, "1;a;2"), BAD_KIND, "x has the text \"a\" in row 2, column 1");
     refused(x, cells(&p, "\"12\";1;2"), BAD_KIND, "\"12\" in row 1");
     refused(x, cells(&p, "\"3.5\";1;2"), BAD_KIND, "\"3.5\" in row 1");
@@ -140,6 +142,8 @@ static void matrices(void **state)
             assert_null(a.data.names);
     }
     assert_int_equal(read_as(matrix, number(1), BAD_KIND).data.rows, 0);
+    refused(matrix, cells(&p, "q,a,b; b,1,0.5; a,0.5,1"), BAD_KIND,
+            "headed \"a\" in column 2, but \"b\" stands beside row 2");
     refused(matrix, cells(&p, "1,2,3;4,5,6"), BAD_KIND, "must be square");
     refused(matrix, cells(&p, "1,0.5; ,1"), BAD_KIND, "an empty cell in row 2, column 1");
     refused(matrix, cells(&p, ",a,b; a,1,; b,0.25,1"), BAD_KIND, "row 2, column 3");
@@ -206,8 +210,8 @@ static void lengths_and_names_must_fit(void **state)
     value v = cells(&p, "1;2;3;4");
     assert_int_equal(read_argument(&y, &v, &a, &b, &r), BAD_KIND);
     assert_string_equal(r.why,
-                        "y is 4 long, but x is 3 long (only one of them has a header, which is "
-                        "not counted)");
+                        "y is 4 long, but x is 3 long (x has a header, which is not counted, "
+                        "and y has none)");
 }
 
 int main(void)

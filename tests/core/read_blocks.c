@@ -113,9 +113,16 @@ static void lines_that_follow(void **state)
     t = terms("excess,limit,share,with; 10,50,1,; ,,1,1", OK);
     assert_int_equal(t.of[1].with, 1);
     static const char *names[] = { "claim", "expense" };
+    static const struct line_names known = { 2, names };
     value v = cells(&p, "excess,limit,share,with; 10,50,1,; ,,,claim");
-    assert_int_equal(read_terms("terms", &v, names, &t, &r), OK);
+    assert_int_equal(read_terms("terms", &v, &known, &t, &r), OK);
     assert_int_equal(t.of[1].with, 1);
+    assert_string_equal(t.names[1], "expense");
+    v = cells(&p, "excess,limit,share,with; 10,50,1,; 1,2,1,; ,,,claim");      /* too many lines */
+    assert_int_equal(read_terms("terms", &v, &known, &t, &r), BAD_KIND);
+    said("no line of that name");
+    terms("name,excess,limit,share,with; a,0,5,1,; a,0,5,1,; b,,,,a", BAD_KIND);
+    said("lines 1 and 2 have that name");
     terms("excess,limit,share,with; 10,50,1,; ,,1,claim", BAD_KIND);
     said("no line of that name");
     terms("excess,limit,share,with; 10,50,1,; ,,1,3", OUT_OF_DOMAIN);
@@ -156,6 +163,16 @@ static void aggregates(void **state)
     v = cells(&p, "limit,excess,share; 200,100,0.9");
     assert_int_equal(read_aggregate("aggregate", &v, &t, &r), OK);
     assert_same(t.of[0].excess, 100);
+    v = cells(&p, ",excess,limit,share; annual,5,10,0.5");
+    assert_int_equal(read_aggregate("aggregate", &v, &t, &r), OK);
+    assert_same(t.of[0].excess, 5);
+    assert_same(t.of[0].share, 0.5);
+    v = cells(&p, "annual,5,10");
+    assert_int_equal(read_aggregate("aggregate", &v, &t, &r), OK);
+    assert_same(t.of[0].limit, 10);
+    v = cells(&p, "excess,limit,name,with; 5,10,a,b");
+    assert_int_equal(read_aggregate("aggregate", &v, &t, &r), BAD_KIND);
+    said("heading \"with\" in column 4");
     v = cells(&p, "1,2,1; 1,2,1");
     assert_int_equal(read_aggregate("aggregate", &v, &t, &r), BAD_KIND);
     said("2 rows, but must be one row");

@@ -40,6 +40,20 @@ static void texts_that_read_as_numbers(void **state)
         assert_false(reads_as_number(others[i]));
 }
 
+/* A header is text with a letter: a sum of money, a date or a dash above numbers is no name. */
+static void texts_that_read_as_names(void **state)
+{
+    (void)state;
+    static const char *const names[] = { "motor", "Q1", "5 EUR", "2018 motor", "\xc3\xa9t\xc3\xa9",
+                                         "\xe6\x90\x8d" };
+    static const char *const others[] = { "", " ", "(7)", "$5", "\xe2\x82\xac 5", "\xe2\x88\x92" "5",
+                                          "12-", "1/2", "2020-01-01", "1\xc2\xa0" "234,5", "5\xc2\xa0%",
+                                          "-", "1e5" };
+    for (size_t i = 0; i < sizeof names / sizeof *names; i++) assert_true(reads_as_name(names[i]));
+    for (size_t i = 0; i < sizeof others / sizeof *others; i++)
+        assert_false(reads_as_name(others[i]));
+}
+
 static void lists_and_tidy_words(void **state)
 {
     (void)state;
@@ -83,6 +97,7 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(words_are_the_same_whatever_case_and_blanks),
         cmocka_unit_test(texts_that_read_as_numbers),
+        cmocka_unit_test(texts_that_read_as_names),
         cmocka_unit_test(lists_and_tidy_words),
         cmocka_unit_test(numbers_have_a_point_and_are_not_rounded_to_whole_ones),
         cmocka_unit_test(cut_off_between_letters),

@@ -37,8 +37,7 @@ def main(what, *package):
         office.add_extension(profile, *package)
         print('installed; start LibreOffice Calc and type =JOINT. in a cell')
     else:
-        office.remove_extension(profile)
-        print('removed')
+        print('removed' if office.remove_extension(profile) else 'it was not installed')
     return 0
 
 

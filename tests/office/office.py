@@ -83,22 +83,25 @@ def add_extension(profile, package, *more):
 
 
 def remove_extension(profile):
-    """Takes the extension out of a profile, if it is there."""
+    """Takes the extension out of a profile; False when it is not there."""
     if not os.path.isdir(profile):
-        return
+        return False
     if os.geteuid() != 0:
-        if IDENTIFIER in unopkg(profile, 'list'):
+        there = IDENTIFIER in unopkg(profile, 'list')
+        if there:
             unopkg(profile, 'remove', IDENTIFIER)
-        return
+        return there
     place = tempfile.mkdtemp(prefix='jointsheet-')
     try:
         os.chmod(place, 0o755)
         inner = os.path.join(place, 'profile')
         shutil.copytree(profile, inner, symlinks=True)
         give_to_nobody(place)
-        if IDENTIFIER in unopkg(inner, 'list', user=as_nobody(place)):
+        there = IDENTIFIER in unopkg(inner, 'list', user=as_nobody(place))
+        if there:
             unopkg(inner, 'remove', IDENTIFIER, user=as_nobody(place))
             bring_back(inner, profile)
+        return there
     finally:
         shutil.rmtree(place, ignore_errors=True)
 
