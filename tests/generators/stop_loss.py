@@ -10,9 +10,12 @@ import sys
 from flat_chart import Chart
 from flat_sheet import Book
 from stop_loss_account import COLOURS, COPULAS, INVENTED, opened, quoted_link, section
+from stop_loss_check import check
 from stop_loss_evidence import evidence
-from stop_loss_inputs import dependence, loss_ratios, margins, models
-from stop_loss_price import as_if, blocks, check, exceedance, price, terms
+from stop_loss_inputs import dependence, loss_ratios, models
+from stop_loss_margins import margins
+from stop_loss_price import blocks, exceedance, price
+from stop_loss_terms import as_if, terms
 
 
 def summary(book):
