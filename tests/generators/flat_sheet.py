@@ -36,6 +36,10 @@ NAMESPACES = {
 REFERENCE = re.compile(r"(\"[^\"]*\")|((?:\$?'[^']+'\.|\$?[A-Za-z_]+\.)?)"
                        r"(\$?[A-Z]{1,2}\$?[0-9]+)(?::(\$?[A-Z]{1,2}\$?[0-9]+))?(?![A-Za-z0-9_(])")
 
+# How functions are typed, and the prefix that files keep instead.
+PREFIXES = [(r"JOINT\.(?=[A-Z])", "ORG.JOINTSHEET.FUNCTIONS."),
+            (r"(?=RANK\.AVG\()", "COM.MICROSOFT.")]
+
 
 def letters(column):
     """0 -> A, 26 -> AA."""
@@ -66,8 +70,11 @@ def stored(formula):
             return match.group()
         sheet = ("" if sheet.startswith("$") or not sheet else "$") + sheet[:-1]
         return "[%s.%s%s]" % (sheet, first, ":." + last if last else "")
-    formula = REFERENCE.sub(bracket, formula)
-    return "of:" + re.sub(r"\bJOINT\.(?=[A-Z])", "ORG.JOINTSHEET.FUNCTIONS.", formula)
+    parts = REFERENCE.sub(bracket, formula).split('"')        # every other one is text in quotes
+    for i in range(0, len(parts), 2):
+        for typed, kept in PREFIXES:
+            parts[i] = re.sub(r"\b%s" % typed, kept, parts[i])
+    return "of:" + '"'.join(parts)
 
 
 class Sheet:
