@@ -30,13 +30,14 @@ def answer(sheet):
     chosen = "=INDEX(PRICE_TABLE;CHOSEN_NUMBER;%d)"
     rows = [("Copula of the price", "=CHOSEN_COPULA", "right key", ""),
             ("Subject premium", "=SUBJECT_PREMIUM", "whole cell", ""),
-            ("Excess", "=Terms.H17", "whole cell", "=Terms.B17"),
-            ("Limit", "=Terms.I17", "whole cell", "=Terms.C17"),
-            ("Share ceded", "=Terms.D17", "percent cell", ""),
+            ("Excess", "=N(Terms.H17)", "whole cell", "=N(Terms.B17)"),
+            ("Limit", "=IF(ISNUMBER(Terms.I17);Terms.I17;\"unlimited\")", "whole right cell",
+             "=IF(ISNUMBER(Terms.C17);Terms.C17;\"\")"),
+            ("Share ceded", "=Terms.J17", "percent cell", ""),
             ("Expected ceded loss", chosen % 2, "whole key", "=B11/SUBJECT_PREMIUM"),
             ("simulation error of it", chosen % 3, "whole cell", ""),
             ("Probability of attaching", chosen % 4, "percent cell", ""),
-            ("Probability of exhausting", chosen % 5, "percent2 cell", ""),
+            ("Probability of exhausting", chosen % 5, "percent2 right cell", ""),
             ("=\"TVaR ceded, level \"&INDEX(SETTINGS;4;2)", chosen % 8, "whole cell",
              "=B15/SUBJECT_PREMIUM"),
             ("Price", chosen % 10, "whole key", "=B16/SUBJECT_PREMIUM"),
@@ -58,7 +59,7 @@ def answer(sheet):
     for i in range(len(COPULAS)):
         sheet.row("A%d" % (22 + i), ["=INDEX(PRICE_TABLE;%d;%d)" % (i + 1, k)
                                      for k in (1, 2, 3, 4, 5, 10)],
-                  ["cell", "whole cell", "whole cell", "percent cell", "percent2 cell",
+                  ["cell", "whole cell", "whole cell", "percent cell", "percent2 right cell",
                    "whole key"])
     sheet.put("A26", "=\"Taken as independent, the lines would seem to make the price \"&ROUND(100*"
               "(1-F%d/B16);0)&\" %% lower than under the chosen copula.\"" % (

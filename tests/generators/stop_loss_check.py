@@ -7,6 +7,7 @@ from stop_loss_price import block_names
 
 
 CEDED_YEAR = 2005
+MOST = "IF(ISNUMBER(MOST_CEDED);MOST_CEDED;1E+300)"     # without a limit, any amount
 
 
 def check(book):
@@ -80,12 +81,12 @@ def price_checks():
         ("The lines' parts of the gross TVaR add up", lines(8 + N, 2),
          "=" + figure(block, "TVaR", "gross"), 1e-6, "whole"),
         ("1 if exhausting is no more frequent than attaching",
-         "=IF(%s<=%s;1;0)" % (chosen % 5, chosen % 4), 1, 0, "whole"),
+         "=IF(ISNUMBER({0});IF({0}<={1};1;0);1)".format(chosen % 5, chosen % 4), 1, 0, "whole"),
         ("1 if TVaR ceded is at least VaR and at most what can be ceded",
-         "=IF(AND(%s>=%s;%s<=MOST_CEDED*(1+1E-12));1;0)" % (chosen % 8, chosen % 7, chosen % 8),
+         "=IF(AND(%s>=%s;%s<=%s*(1+1E-12));1;0)" % (chosen % 8, chosen % 7, chosen % 8, MOST),
          1, 0, "whole"),
         ("1 if expected ceded is at most P(attach) times the most that can be ceded",
-         "=IF(%s<=%s*MOST_CEDED;1;0)" % (chosen % 2, chosen % 4), 1, 0, "whole"),
+         "=IF(%s<=%s*%s;1;0)" % (chosen % 2, chosen % 4, MOST), 1, 0, "whole"),
     ]
 
 

@@ -106,13 +106,14 @@ def price_row(sheet, row, word):
     independent = "J$%d" % (15 + COPULAS.index("independent"))
     sheet.row("A%d" % row, [
         word, "=" + figure(block, "mean"), "=" + figure(block, "mean", error=True),
-        "=" + figure(block, "attaching"), "=" + figure(block, "exhausting"),
+        "=" + figure(block, "attaching"),
+        "=IF(ISTEXT({0});\"n/a\";{0})".format(figure(block, "exhausting")),
         "=" + figure(block, "sd"), "=" + figure(block, "VaR"), "=" + figure(block, "TVaR"),
         "=LOADING*F%d" % row,
         "=(B%d+I%d)/(1-BROKERAGE-EXPENSES)" % (row, row), "=J%d/SUBJECT_PREMIUM" % row,
-        "=J%d/MOST_CEDED" % row, "=J%d/%s-1" % (row, independent)],
-        ["key", "whole key", "whole cell", "percent cell", "percent2 cell"] + ["whole cell"] * 4
-        + ["whole key", "percent2 cell", "percent2 cell", "percent cell"])
+        "=IF(ISNUMBER(MOST_CEDED);J%d/MOST_CEDED;\"n/a\")" % row, "=J%d/%s-1" % (row, independent)],
+        ["key", "whole key", "whole cell", "percent cell", "percent2 right cell"] + ["whole cell"] * 4
+        + ["whole key", "percent2 cell", "percent2 right cell", "percent cell"])
 
 
 def block_style(i, j):
@@ -157,7 +158,7 @@ def exceedance(book):
                     ["whole cell", "four cell"])
     sheet.row("J7", ["attaching", "exhausting", ""], "head")
     sheet.row("J8", ["loss", "loss", "P"], "head")
-    sheet.row("J9", ["=Terms.H17", "=Terms.H17+Terms.I17", 1],
+    sheet.row("J9", ["=N(Terms.H17)", "=IF(ISNUMBER(Terms.I17);N(Terms.H17)+Terms.I17;\"\")", 1],
               ["whole cell", "whole cell", "four cell"])
     sheet.row("J10", ["=J9", "=K9", 0.001], ["whole cell", "whole cell", "four cell"])
     chart = Chart("scatter", "Exceedance of the subject loss, one year", "Subject loss, thousands",

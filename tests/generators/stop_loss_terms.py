@@ -21,8 +21,8 @@ def terms(book):
         sheet.row("A%d" % row, ["=Margins.A%d" % row, "=Margins.B%d" % row, None, LIMITS[i],
                                 SHARES[i], "=B%d*E%d" % (row, row)],
                   ["cell", "whole cell"] + ["percent input"] * 3 + ["whole cell"])
-        sheet.row("H%d" % row, ["=A%d" % row, "=IF(ISNUMBER(C%d);C%d*B%d;\"\")" % (row, row, row),
-                                "=IF(ISNUMBER(D%d);D%d*B%d;\"\")" % (row, row, row), "=E%d" % row],
+        sheet.row("H%d" % row, ["=A%d" % row, in_money("C%d" % row, "B%d" % row),
+                                in_money("D%d" % row, "B%d" % row), in_money("E%d" % row)],
                   ["cell", "whole cell", "whole cell", "percent cell"])
     book.name("TERMS", sheet, "H6:K%d" % (6 + N))
     sheet.row("A%d" % (7 + N), ["Total", "=SUM(B7:B%d)" % (6 + N)], ["key", "whole key"])
@@ -34,35 +34,47 @@ def terms(book):
     stop_loss(sheet)
 
 
+def in_money(share, of="1"):
+    """A term as the functions read it: an empty cell stays empty, and wrong text stays as it is,
+    so that the function refuses it by name."""
+    return "=IF(ISNUMBER(%s);%s*%s;%s&\"\")" % (share, share, of, share)
+
+
+def ceded(subject):
+    """What the stop-loss pays of a subject loss, in plain arithmetic."""
+    above = "MAX(%s-N(Terms.$H$17);0)" % subject
+    return "Terms.$J$17*IF(ISNUMBER(Terms.$I$17);MIN(%s;Terms.$I$17);%s)" % (above, above)
+
+
 def stop_loss(sheet):
     section(sheet, "A15", "Stop-loss on the sum, of subject premium (input)")
     sheet.row("A16", ["", "Excess", "Limit", "Share"], ["lefthead"] + ["head"] * 3)
     sheet.row("A17", ["Cover", 0.78, 0.25, 0.9], ["cell"] + ["percent input"] * 3)
     section(sheet, "H15", "In money")
     sheet.row("H16", ["excess", "limit", "share"], "head")
-    sheet.row("H17", ["=B17*SUBJECT_PREMIUM", "=C17*SUBJECT_PREMIUM", "=D17"],
-              ["whole cell", "whole cell", "percent cell"])
+    sheet.row("H17", [in_money("B17", "SUBJECT_PREMIUM"), in_money("C17", "SUBJECT_PREMIUM"),
+                      "=IF(ISBLANK(D17);1;D17)"],
+              ["whole right cell", "whole right cell", "percent right cell"])
     sheet.book.name("STOP_LOSS", sheet, "H16:J17")
-    sheet.put("A18", "Ceded = share x min(max(sum of the lines' parts - excess; 0); limit). Most "
-              "that can be ceded:", "note")
-    sheet.put("H18", "=I17*J17", "whole key")
+    sheet.put("A18", "Ceded = share x min(max(sum of the lines' parts - excess; 0); limit). No "
+              "entry under limit: unlimited.", "note")
+    sheet.put("H18", "=IF(ISNUMBER(I17);I17*J17;\"unlimited\")", "whole right key")
     sheet.book.name("MOST_CEDED", sheet, "H18")
-    sheet.put("I18", "limit x share", "aside")
+    sheet.put("I18", "the most that can be ceded", "aside")
     payoff(sheet)
 
 
 def payoff(sheet):
     section(sheet, "H20", "What the cover pays")
-    sheet.row("H21", ["Subject loss", "of premium", "Ceded"], ["lefthead", "head", "head"])
-    for i, share in enumerate((0.6, "=B17", "=B17+C17", 1.2)):
+    sheet.row("H21", ["Subject loss", "of premium", "Ceded"], "head")
+    for i, share in enumerate(("=MIN(0.6;N(B17))", "=N(B17)", "=N(B17)+N(C17)",
+                               "=MAX(1.2;I24+0.1)")):
         row = 22 + i
-        sheet.row("H%d" % row, ["=I%d*SUBJECT_PREMIUM" % row, share,
-                                "=J$17*MIN(MAX(H%d-H$17;0);I$17)" % row],
-                  ["whole left cell", "percent cell", "whole cell"])
+        sheet.row("H%d" % row, ["=I%d*SUBJECT_PREMIUM" % row, share, "=" + ceded("H%d" % row)],
+                  ["whole cell", "percent cell", "whole cell"])
     chart = Chart("scatter", "Ceded loss against the subject loss",
                   "Subject loss, of subject premium", "Ceded, thousands", legend=False,
-                  x={"minimum": 0.6, "maximum": 1.2, "interval-major": 0.1, "format": "percent"},
-                  y={"minimum": 0, "format": "grouped"})
+                  x={"format": "percent"}, y={"minimum": 0, "format": "grouped"})
     chart.add("Terms.J21", "Terms.I22:Terms.I25", "Terms.J22:Terms.J25",
               COLOURS["gaussian"], "solid")
     sheet.place(chart, "A20", 15.0, 7.5)
@@ -102,28 +114,28 @@ def as_if_year(sheet, row):
     known = "=IF(ISNUMBER(H%d);%%s;\"\")" % row
     sheet.put("H%d" % row, "=IF(%s;%s;\"\")" % (enough, "+".join(parts)), "whole cell")
     sheet.put("I%d" % row, known % ("H%d/SUBJECT_PREMIUM" % row), "percent cell")
-    sheet.put("J%d" % row, known % ("Terms.$J$17*MIN(MAX(H%d-Terms.$H$17;0);Terms.$I$17)" % row),
-              "whole cell")
-    sheet.put("K%d" % row, "=Terms.$B$17", "percent cell")
-    sheet.put("L%d" % row, "=Terms.$B$17+Terms.$C$17", "percent cell")
+    sheet.put("J%d" % row, known % ceded("H%d" % row), "whole cell")
+    sheet.put("K%d" % row, "=N(Terms.$B$17)", "percent cell")
+    sheet.put("L%d" % row, "=IF(ISNUMBER(Terms.$C$17);N(Terms.$B$17)+Terms.$C$17;\"\")",
+              "percent cell")
 
 
 def burning_cost(sheet):
-    ceded = "J%d:J%d" % (FIRST, LAST)
+    each = "J%d:J%d" % (FIRST, LAST)
     sheet.put("N5", "Burning cost and model", "section")
     sheet.row("N7", ["", "As if", "Model"], ["lefthead", "head", "head"])
-    chosen = "INDEX(PRICE_TABLE;MATCH(CHOSEN_COPULA;INDEX(PRICE_TABLE;0;1);0);%d)"
-    rows = [("Years", "=COUNT(%s)" % ceded, "=INDEX(SETTINGS;1;2)", "whole"),
-            ("Ceded, mean", "=AVERAGE(%s)" % ceded, "=" + chosen % 2, "whole"),
-            ("Standard error of the mean", "=STDEV(%s)/SQRT(O8)" % ceded, "=" + chosen % 3,
+    chosen = "INDEX(PRICE_TABLE;CHOSEN_NUMBER;%d)"
+    rows = [("Years", "=COUNT(%s)" % each, "=INDEX(SETTINGS;1;2)", "whole"),
+            ("Ceded, mean", "=AVERAGE(%s)" % each, "=" + chosen % 2, "whole"),
+            ("Standard error of the mean", "=STDEV(%s)/SQRT(O8)" % each, "=" + chosen % 3,
              "whole"),
-            ("Years attaching", "=COUNTIF(%s;\">0\")/O8" % ceded, "=" + chosen % 4, "percent"),
-            ("Ceded, highest year", "=MAX(%s)" % ceded, "=MOST_CEDED", "whole")]
+            ("Years attaching", "=COUNTIF(%s;\">0\")/O8" % each, "=" + chosen % 4, "percent"),
+            ("Ceded, highest year", "=MAX(%s)" % each, "=MOST_CEDED", "whole")]
     for i, (label, past, model, style) in enumerate(rows):
-        sheet.row("N%d" % (8 + i), [label, past, model], ["cell"] + [style + " cell"] * 2)
+        sheet.row("N%d" % (8 + i), [label, past, model], ["cell"] + [style + " right cell"] * 2)
     sheet.row("N14", ["Lines a year may lack", 1], ["cell", "whole input"])
     sheet.book.name("LINES_UNKNOWN", sheet, "O14")
-    sheet.put("N13", "The model's highest year is the most that can be ceded.", "note")
+    sheet.put("N13", "The highest year of the model is the most that can be ceded.", "note")
     sheet.put("N15", "At 0 the bad year 1997 drops out, for which marine is not known; years "
               "before 1989 lack two lines.", "note")
     chart = Chart("scatter", "Subject loss of past years", "Year", "Subject loss ratio",
