@@ -20,7 +20,7 @@ from stop_loss_terms import as_if, terms
 
 def summary(book):
     sheet = opened(book, "Summary", book.title, book.subject,
-                   [5.6] + [2.7] * 5 + [0.8, 3.0, 11.0])
+                   [5.6] + [2.7] * 5 + [0.8, 3.0, 11.0], reason=True)
     answer(sheet)
     guide(sheet)
 
@@ -61,8 +61,9 @@ def answer(sheet):
                                      for k in (1, 2, 3, 4, 5, 10)],
                   ["cell", "whole cell", "whole cell", "percent cell", "percent2 right cell",
                    "whole key"])
-    sheet.put("A26", "=\"Taken as independent, the lines would seem to make the price \"&ROUND(100*"
-              "(1-F%d/B16);0)&\" %% lower than under the chosen copula.\"" % (
+    sheet.put("A27", "=IFERROR(Price.A20;\"\")", "note")
+    sheet.put("A26", "=IFERROR(\"Taken as independent, the lines would seem to make the price "
+              "\"&ROUND(100*(1-F%d/B16);0)&\" %% lower than under the chosen copula.\";\"\")" % (
                   22 + COPULAS.index("independent")), "note")
 
 
@@ -78,7 +79,7 @@ def guide(sheet):
             ("As if", "past years under this cover"),
             ("Price", "settings, loadings and the price under each copula"),
             ("Blocks", "the four price blocks in full"),
-            ("Exceedance", "how often the subject loss exceeds an amount"),
+            ("Exceedance", "how often the subject loss reaches an amount"),
             ("Check", "two ways of working out the same thing")]):
         sheet.put("H%d" % (6 + i), (quoted_link(name), name), "link")
         sheet.put("I%d" % (6 + i), text)
@@ -93,6 +94,7 @@ def guide(sheet):
 
 def caution(sheet):
     section(sheet, "A28", "Caution")
+    sheet.heights[28] = 1.0
     for i, text in enumerate((
             "Model risk. A copula is a choice, not a finding: forty years cannot tell a gaussian "
             "tail from a t or gumbel tail. Read the table by copula as the range of one uncertain "

@@ -1,8 +1,8 @@
 """The sheet of stop_loss.py that works out the same thing in two ways."""
 
 from stop_loss_account import (
-    BLOCK, COPULAS, FIRST, LAST, N, POINTS, figure, opened, section)
-from stop_loss_evidence import AREA, LAST_POINT, YEARS
+    BLOCK, COPULAS, FIRST, LAST, LINES, N, POINTS, figure, opened, section)
+from stop_loss_evidence import AREA, FIRST_PAIR, LAST_PAIR, LAST_POINT, YEARS, years_of
 from stop_loss_price import block_names
 
 
@@ -12,7 +12,7 @@ MOST = "IF(ISNUMBER(MOST_CEDED);MOST_CEDED;1E+300)"     # without a limit, any a
 
 def check(book):
     sheet = opened(book, "Check", "Checks", "Each compares two ways of working out one thing",
-                   [1.0, 12.5] + [2.9] * 3 + [2.0], 5)
+                   [1.0, 12.5] + [2.9] * 3 + [2.0, 0.6, 4.6, 10.0], 5)
     sheet.row("A5", ["No.", "Check", "value", "expected", "tolerance", "verdict"],
               ["lefthead", "lefthead", "head", "head", "head", "center head"])
     every = dependence_checks() + price_checks() + function_checks()
@@ -20,7 +20,7 @@ def check(book):
         row = 6 + i
         sheet.row("A%d" % row, [i + 1, text, value, expected, tolerance],
                   ["whole left cell", "cell", style + " cell", style + " cell",
-                   "small cell" if tolerance else "whole cell"])
+                   "whole cell" if tolerance == 0 or isinstance(tolerance, str) else "small cell"])
         sheet.put("F%d" % row, "=IFERROR(IF(ABS(C%d-D%d)<=E%d;\"pass\";\"fail\");\"fail\")"
                   % ((row,) * 3), "verdict")
     last = 5 + len(every)
@@ -29,12 +29,19 @@ def check(book):
     book.name("CHECKS_FAILED", sheet, "C%d" % (last + 2))
     sheet.put("B%d" % (last + 3), "=JOINT.ABOUT()", "note")
     small_run(sheet, last + 5)
+    reasons(sheet)
 
 
 def dependence_checks():
     on_diagonal = ("(ROW(TAU_COUNTS)-MIN(ROW(TAU_COUNTS))=COLUMN(TAU_COUNTS)"
                    "-MIN(COLUMN(TAU_COUNTS)))")
+    ranks = "$'Loss ratios'.H%d:L%d" % (FIRST, LAST)
+    first, top = "$'Loss ratios'.B%d:B%d" % (FIRST, LAST), "$'Loss ratios'.%%s%d" % FIRST
     return [
+        ("Every observation has a rank", "=COUNT(%s)" % ranks, "=COUNT(LOSS_RATIOS)", 0, "whole"),
+        ("Rank of the first year's first line: JOINT.RANKS and RANK.AVG", "=N(%s)" % top % "H",
+         "=IF(ISNUMBER(%s);RANK.AVG(%s;%s;1)/(COUNT(%s)+1);0)" % (
+             top % "B", top % "B", first, first), 1e-12, "four"),
         ("Pair counts: the diagonal holds every observation",
          "=SUMPRODUCT(TAU_COUNTS*%s)" % on_diagonal, "=COUNT(LOSS_RATIOS)", 0, "whole"),
         ("Tau of property and crop hail: JOINT.TAU and JOINT.TAUGRID",
@@ -92,7 +99,8 @@ def price_checks():
 
 def function_checks():
     ceded = FIRST + CEDED_YEAR - 1986
-    areas = ["Dependence.A5:M49", "Evidence." + AREA, "Models.A4:M40", "Margins.A6:L42",
+    areas = ["$'Loss ratios'.A5:S%d" % LAST, "Dependence.A5:M49", "Evidence." + AREA,
+             "Models.A4:M40", "Margins.A6:L43",
              "Terms.A6:K25", "$'As if'.A8:P%d" % LAST, "Price.A6:M52", "Blocks.A7:O58",
              "Exceedance.A9:L%d" % (8 + POINTS)]
     return [
@@ -113,6 +121,57 @@ def closed_mean(row):
     return ("IF(%s=\"gamma\";%s*%s;IF(%s=\"lognormal\";EXP(%s+N(%s)^2/2);IF(%s=\"weibull\";"
             "%s*GAMMA(1+1/%s);IF(%s=\"lomax\";%s/(%s-1);IF(%s=\"pareto\";%s*%s/(%s-1);%s)))))" % (
                 b, c, d, b, c, d, b, d, c, b, d, c, b, c, d, c, c))
+
+
+def suspects():
+    """What can go wrong, from the data on: a name, whether it did, and the sentence for it."""
+    def failed(name):
+        return "SUMPRODUCT(ISERROR(%s))>0" % name
+
+    def why(*arguments):
+        return "JOINT.WHY(%s)" % ";".join(arguments)
+
+    chosen = "CHOOSE(CHOSEN_NUMBER;%s)" % ";".join("MODEL_" + word.upper() for word in COPULAS)
+    yield "Copula of the price", "NOT(ISNUMBER(CHOSEN_NUMBER))", (
+        "CHOSEN_COPULA&\" is none of: %s\"" % ", ".join(COPULAS))
+    yield "Loss ratios", failed("TAU"), why("\"TAUGRID\"", "LOSS_RATIOS")
+    yield "Map of the taus", failed("GREINER_MAP"), why("\"GREINER\"", "Dependence.B10:F14")
+    yield "Repair", failed("CORRELATION"), why("\"REPAIR\"", "GREINER_MAP", "EIGENVALUE_FLOOR")
+    yield "Model t", failed("MODEL_T"), why("\"MODEL\"", "\"t\"", "CORRELATION", "T_DF")
+    yield "Theta of gumbel", "ISERROR(GUMBEL_THETA)", why("\"THETA\"", "\"gumbel\"", "MEAN_TAU")
+    yield "Earned premiums", "COUNT(Margins.B7:B%d)<%d" % (6 + N, N), "\"one is not a number\""
+    for i, line in enumerate(LINES):
+        yield "Margin, " + line, failed("Margins.C%d:E%d" % (18 + i, 18 + i)), (
+            "IF(COUNT(Margins.J{0}:K{0})<2;\"the mean or standard deviation is not a number\";{1})"
+            .format(7 + i, why("\"MOMENTS\"", *("Margins.%s%d" % (c, 7 + i) for c in "IJK"))))
+    yield "Chosen price", "ISERROR(INDEX(PRICE_TABLE;CHOSEN_NUMBER;2))", why(
+        "\"PRICE\"", chosen, "MARGINS", "TERMS", "STOP_LOSS", "SETTINGS")
+    yield "Loadings", "ISERROR(INDEX(PRICE_TABLE;CHOSEN_NUMBER;10))", (
+        "\"loading, brokerage and expenses must be numbers, the last two below 100 % together\"")
+    yield "Bands of the taus", failed("Evidence.B%d:F%d" % (FIRST_PAIR, LAST_PAIR)), why(
+        "\"TAUBAND\"", *(years_of(line) for line in (1, 2)), "BAND_COVERAGE", "BAND_METHOD")
+    yield "Lines of the tail", failed("Evidence.L5:L6"), "\"not numbers from 1 to %d\"" % N
+
+
+def reasons(sheet):
+    """The first bad input on the way from the data to the price, in REASON."""
+    every = list(suspects())
+    sheet.row("H5", ["Where an error can begin", "Finding"], "lefthead")
+    for i, (name, failed, sentence) in enumerate(every):
+        sheet.row("H%d" % (6 + i), [name, "=IF(%s;IFERROR(%s;\"it reads cells with errors\");"
+                                    "\"fine\")" % (failed, sentence)])
+    last = 5 + len(every)
+    first = "\"\""
+    for i in reversed(range(6, last + 1)):
+        first = "IF(I%d<>\"fine\";H%d&\": \"&I%d;%s)" % (i, i, i, first)
+    sheet.row("H%d" % (last + 2), ["The first of them", "=" + first], "key")
+    sheet.row("H%d" % (last + 3), ["Row of the chosen copula",
+                                   "=MATCH(CHOSEN_COPULA;INDEX(PRICE_TABLE;0;1);0)"],
+              ["cell", "whole left cell"])
+    sheet.put("H%d" % (last + 4), "Rows and columns in a sentence are counted within the range "
+              "that the function reads, with its head.", "note")
+    sheet.book.name("REASON", sheet, "I%d" % (last + 2))
+    sheet.book.name("CHOSEN_NUMBER", sheet, "I%d" % (last + 3))
 
 
 def small_run(sheet, row):

@@ -61,7 +61,7 @@ def statistics(sheet):
 def dependence(book):
     sheet = opened(book, "Dependence", "Dependence between the lines",
                    "From pairwise Kendall's tau to a correlation matrix that can be drawn from",
-                   [3.9] + [1.9] * N + [0.8] + [3.9] + [1.9] * N)
+                   [3.9] + [2.2] * N + [0.8] + [3.9] + [2.2] * N)
     sheet.put("A5", "Floor for eigenvalues", "cell")
     sheet.put("B5", 0.01, "three input")
     book.name("EIGENVALUE_FLOOR", sheet, "B5")
@@ -84,6 +84,8 @@ def dependence(book):
     sheet.array("H36", *REPAIR_NOTE, "=JOINT.REPAIRNOTE(GREINER_MAP;EIGENVALUE_FLOOR)",
                 lambda i, j: "cell" if not j else
                 "four cell" if i not in (4, 5, 6) and j == 1 else "whole cell")
+    sheet.put("L39", "=IF(N(J39)=0;\"\";%s&\", \"&%s)" % tuple(
+        "INDEX($'Loss ratios'.B7:F7;%s39)" % column for column in "JK"), "aside")
     worst_triple(sheet)
 
 
@@ -102,17 +104,18 @@ def eigenvalues(sheet):
 
 def worst_triple(sheet):
     section(sheet, "A44", "Worst triple that cannot stand together",
-            "JOINT.CLASHES(GREINER_MAP;1), lines by number")
-    sheet.row("A46", ["First", "Second", "Third", "lowest eigenv.", "last from", "last to"],
+            "JOINT.CLASHES(GREINER_MAP;1), by name")
+    sheet.row("A46", ["First", "Second", "Third", "lowest eigenvalue", "last from", "last to"],
               ["lefthead"] + ["head"] * 5)
     sheet.heights[46] = 0.9
-    sheet.array("A47", 1, 6, "=JOINT.CLASHES(GREINER_MAP;1)",
-                ["whole left cell", "whole cell", "whole cell"] + ["three cell"] * 3)
-    first, second, third = ("INDEX($'Loss ratios'.B7:F7;%s47)" % c for c in "ABC")
-    sheet.put("A48", "=IF(A47=0;\"No triple clashes.\";\"With those of \"&%s&\" held, the "
-              "correlation of \"&%s&\" and \"&%s&\" can lie\")" % (first, second, third), "note")
-    sheet.put("A49", "=IF(A47=0;\"\";\"only from \"&ROUND(E47;2)&\" to \"&ROUND(F47;2)&\"; the map "
-              "has \"&ROUND(INDEX(I10:M14;B47;C47);2)&\".\")", "note")
+    each = ["INDEX(JOINT.CLASHES(GREINER_MAP;1);1;%d)" % k for k in range(1, 7)]
+    sheet.row("A47", ["=IF(%s=0;\"none\";INDEX($'Loss ratios'.B7:F7;%s))" % (number, number)
+                      for number in each[:3]] + ["=" + number for number in each[3:]],
+              ["cell", "right cell", "right cell"] + ["three cell"] * 3)
+    sheet.put("A48", "=IF(%s=0;\"No triple clashes.\";\"With those of \"&A47&\" held, the "
+              "correlation of \"&B47&\" and \"&C47&\" can lie\")" % each[0], "note")
+    sheet.put("A49", "=IF(%s=0;\"\";\"only from \"&ROUND(E47;2)&\" to \"&ROUND(F47;2)&\"; the map "
+              "has \"&ROUND(INDEX(I10:M14;%s;%s);2)&\".\")" % tuple(each[:3]), "note")
 
 
 def models(book):

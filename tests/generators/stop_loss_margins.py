@@ -2,8 +2,8 @@
 
 from flat_sheet import letters
 from stop_loss_account import (
-    CHOSEN_DEVIATIONS, CHOSEN_MEANS, DISTRIBUTIONS, FIRST, LAST, LINES, N, PREMIUMS, opened,
-    section)
+    CHOSEN_DEVIATIONS, CHOSEN_MEANS, DISTRIBUTIONS, FIRST, LAST, LINES, N, PREMIUMS, REASONS,
+    opened, section)
 
 
 def margins(book):
@@ -13,7 +13,7 @@ def margins(book):
     section(sheet, "A5", "Moments")
     sheet.row("A6", ["Line", "Earned premium", "Mean, data", "Mean, choice", "Mean, used",
                      "Std dev., data", "Std dev., choice", "Std dev., used", "Distribution",
-                     "Mean loss", "Std dev. of the loss", "Variation"],
+                     "Mean loss", "Std dev. of the loss", "Coefficient of variation"],
               ["lefthead"] + ["head"] * 11)
     sheet.heights[6] = 0.95
     for i, line in enumerate(LINES):
@@ -21,9 +21,9 @@ def margins(book):
         sheet.row("A%d" % row, [
             "=$'Loss ratios'.%s7" % letters(i + 1), PREMIUMS[i],
             "=$'Loss ratios'.%s11" % statistic, CHOSEN_MEANS[i],
-            "=IF(ISNUMBER(D%d);D%d;C%d)" % (row, row, row),
+            "=IF(LEN(D%d)>0;D%d;C%d)" % (row, row, row),
             "=$'Loss ratios'.%s12" % statistic, CHOSEN_DEVIATIONS[i],
-            "=IF(ISNUMBER(G%d);G%d;F%d)" % (row, row, row), DISTRIBUTIONS[i],
+            "=IF(LEN(G%d)>0;G%d;F%d)" % (row, row, row), DISTRIBUTIONS[i],
             "=B%d*E%d" % (row, row), "=B%d*H%d" % (row, row), "=K%d/J%d" % (row, row)],
             ["cell", "whole input", "percent cell", "percent input", "percent cell",
              "percent cell", "percent input", "percent cell", "right input", "whole cell",
@@ -67,8 +67,9 @@ CANDIDATES = ["gamma", "lognormal", "weibull", "lomax"]
 def distances(sheet):
     section(sheet, "A25", "How far from the years are the distributions?",
             "largest difference between JOINT.PROBABILITY, fitted by JOINT.MOMENTS to the data, "
-            "and JOINT.RANKS; below about 0.2 it is within chance at forty years")
-    sheet.row("A27", ["Line"] + CANDIDATES + ["nearest", "used"], ["lefthead"] + ["head"] * 6)
+            "and JOINT.RANKS; the limit is indicative, see below")
+    sheet.row("A27", ["Line"] + CANDIDATES + ["nearest", "used", "5 % limit"],
+              ["lefthead"] + ["head"] * 7)
     for i in range(N):
         row, column = 28 + i, letters(i + 1)
         data = "$'Loss ratios'.%s%d:%s%d" % (column, FIRST, column, LAST)
@@ -79,8 +80,11 @@ def distances(sheet):
         sheet.put("F%d" % row, "=INDEX(B$27:E$27;MATCH(MIN(B%d:E%d);B%d:E%d;0))" % ((row,) * 4),
                   "right cell")
         sheet.put("G%d" % row, "=I%d" % (7 + i), "right cell")
-    sheet.put("A%d" % (28 + N), "Property: the lognormal is as near as the gamma and has the "
-              "heavier tail. None: a lomax has a coefficient of variation above 1.", "note")
+        sheet.put("H%d" % row, "=0.886/SQRT(COUNT(%s))" % data, "three cell")
+    sheet.put("A%d" % (28 + N), "Limit: 0.886/sqrt(n), of a normal distribution fitted to the same "
+              "n years (Lilliefors 1967); other families have others near it. A distance below it "
+              "does not prove the family. None: a lomax has a coefficient of variation above 1.",
+              "note")
 
 
 def distance(word, data, row):
@@ -97,7 +101,9 @@ def likelihoods(sheet):
     section(sheet, "A35", "And by likelihood",
             "AIC of the maximum likelihood fit to the loss ratios, JOINT.MARGINFIT; lower is "
             "better, a difference below about 2 says little")
-    sheet.row("A37", ["Line"] + CANDIDATES + ["lowest"], ["lefthead"] + ["head"] * 5)
+    sheet.row("A37", ["Line"] + CANDIDATES + ["lowest", "used", "above lowest"],
+              ["lefthead"] + ["head"] * 7)
+    sheet.put("I37", "Reason where they differ (input)", "center head", span=4)
     for i in range(N):
         row, column = 38 + i, letters(i + 1)
         sheet.put("A%d" % row, "=A%d" % (7 + i))
@@ -109,3 +115,10 @@ def likelihoods(sheet):
                       else "=" + fit, "two right cell")
         sheet.put("F%d" % row, "=INDEX(B$37:E$37;MATCH(MIN(B%d:E%d);B%d:E%d;0))" % ((row,) * 4),
                   "right cell")
+        sheet.put("G%d" % row, "=I%d" % (7 + i), "right cell")
+        sheet.put("H%d" % row, "=IFERROR(INDEX(B%d:E%d;MATCH(G%d;B$37:E$37;0))-MIN(B%d:E%d);"
+                  "\"not tried\")" % ((row,) * 5), "two right cell")
+        sheet.put("I%d" % row, REASONS[i], "remark", span=4)
+    wanting = "(F38:F%d<>G38:G%d)*(LEN(I38:I%d)=0)" % ((37 + N,) * 3)
+    sheet.put("A%d" % (38 + N), "=IF(SUMPRODUCT(%s)=0;\"\";\"Choices that differ from the "
+              "lowest and have no reason yet: \"&SUMPRODUCT(%s))" % (wanting, wanting), "alarm")

@@ -9,7 +9,7 @@ from stop_loss_account import (
 def terms(book):
     sheet = opened(book, "Terms", "Terms of the cover", "Per line what it brings into the cover, "
                    "then the stop-loss on their sum; amounts in thousands",
-                   [3.2] + [2.5] * 5 + [0.8, 3.2] + [2.5] * 3)
+                   [3.2] + [2.5] * 5 + [0.8, 3.2] + [2.5] * 3, reason=True)
     section(sheet, "A5", "Per line, of premium (input)")
     sheet.row("A6", ["Line", "Earned premium", "Excess", "Limit", "Share", "Subject premium"],
               ["lefthead"] + ["head"] * 5)
@@ -24,6 +24,7 @@ def terms(book):
         sheet.row("H%d" % row, ["=A%d" % row, in_money("C%d" % row, "B%d" % row),
                                 in_money("D%d" % row, "B%d" % row), in_money("E%d" % row)],
                   ["cell", "whole cell", "whole cell", "percent cell"])
+        book.between(sheet, "E%d" % row, 0, 1, "A share, from 0 % to 100 %.", empty=False)
     book.name("TERMS", sheet, "H6:K%d" % (6 + N))
     sheet.row("A%d" % (7 + N), ["Total", "=SUM(B7:B%d)" % (6 + N)], ["key", "whole key"])
     sheet.put("F%d" % (7 + N), "=SUM(F7:F%d)" % (6 + N), "whole key")
@@ -49,6 +50,7 @@ def ceded(subject):
 def stop_loss(sheet):
     section(sheet, "A15", "Stop-loss on the sum, of subject premium (input)")
     sheet.row("A16", ["", "Excess", "Limit", "Share"], ["lefthead"] + ["head"] * 3)
+    sheet.book.between(sheet, "D17", 0, 1, "A share, from 0 % to 100 %.")
     sheet.row("A17", ["Cover", 0.78, 0.25, 0.9], ["cell"] + ["percent input"] * 3)
     section(sheet, "H15", "In money")
     sheet.row("H16", ["excess", "limit", "share"], "head")
@@ -57,7 +59,7 @@ def stop_loss(sheet):
               ["whole right cell", "whole right cell", "percent right cell"])
     sheet.book.name("STOP_LOSS", sheet, "H16:J17")
     sheet.put("A18", "Ceded = share x min(max(sum of the lines' parts - excess; 0); limit). No "
-              "entry under limit: unlimited.", "note")
+              "entry under limit: unlimited; under share: 100 %.", "note")
     sheet.put("H18", "=IF(ISNUMBER(I17);I17*J17;\"unlimited\")", "whole right key")
     sheet.book.name("MOST_CEDED", sheet, "H18")
     sheet.put("I18", "the most that can be ceded", "aside")
