@@ -80,7 +80,7 @@ def guide(sheet):
             ("Price", "settings, loadings and the price under each copula"),
             ("Blocks", "the four price blocks in full"),
             ("Exceedance", "how often the subject loss reaches an amount"),
-            ("Check", "two ways of working out the same thing")]):
+            ("Check", "the same thing worked out in two ways; where an error began")]):
         sheet.put("H%d" % (6 + i), (quoted_link(name), name), "link")
         sheet.put("I%d" % (6 + i), text)
     section(sheet, "H20", "Cells")
