@@ -36,6 +36,10 @@ NAMESPACES = {
 REFERENCE = re.compile(r"(\"[^\"]*\")|((?:\$?'[^']+'\.|\$?[A-Za-z_]+\.)?)"
                        r"(\$?[A-Z]{1,2}\$?[0-9]+)(?::(\$?[A-Z]{1,2}\$?[0-9]+))?(?![A-Za-z0-9_(])")
 
+# How functions are typed, and the prefix that files keep instead.
+PREFIXES = [(r"JOINT\.(?=[A-Z])", "ORG.JOINTSHEET.FUNCTIONS."),
+            (r"(?=RANK\.AVG\()", "COM.MICROSOFT.")]
+
 
 def letters(column):
     """0 -> A, 26 -> AA."""
@@ -66,8 +70,11 @@ def stored(formula):
             return match.group()
         sheet = ("" if sheet.startswith("$") or not sheet else "$") + sheet[:-1]
         return "[%s.%s%s]" % (sheet, first, ":." + last if last else "")
-    formula = REFERENCE.sub(bracket, formula)
-    return "of:" + re.sub(r"\bJOINT\.(?=[A-Z])", "ORG.JOINTSHEET.FUNCTIONS.", formula)
+    parts = REFERENCE.sub(bracket, formula).split('"')        # every other one is text in quotes
+    for i in range(0, len(parts), 2):
+        for typed, kept in PREFIXES:
+            parts[i] = re.sub(r"\b%s" % typed, kept, parts[i])
+    return "of:" + '"'.join(parts)
 
 
 class Sheet:
@@ -112,7 +119,7 @@ class Sheet:
         self.last = max(self.last[0], row), max(self.last[1], column)
 
     def height(self, row):
-        return self.heights.get(row + 1, 0.48)
+        return self.heights.get(row + 1, 0.53)
 
     def place(self, chart, where, width, height):
         """Puts a chart with its upper left corner on a cell."""
@@ -201,7 +208,7 @@ class Book:
 
     def __init__(self, title, subject, footer):
         self.title, self.subject, self.footer = title, subject, footer
-        self.sheets, self.names, self.styles, self.lists = [], [], {}, []
+        self.sheets, self.names, self.styles, self.rules = [], [], {}, []
         self.columns, self.rows = {}, {}
 
     def sheet(self, name, widths, frozen=0):
@@ -214,10 +221,20 @@ class Book:
 
     def choice(self, sheet, where, words):
         """Lets a cell hold only one of these words."""
-        condition = "of:cell-content-is-in-list(%s)" % ";".join('"%s"' % w for w in words)
-        if condition not in self.lists:
-            self.lists.append(condition)
-        sheet.validations[position(where)] = "list%d" % (self.lists.index(condition) + 1)
+        listed = ";".join('"%s"' % word for word in words)
+        self.rule(sheet, where, "cell-content-is-in-list(%s)" % listed,
+                  "One of: %s." % ", ".join(words), False)
+
+    def between(self, sheet, where, low, high, says, empty=True):
+        """Lets a cell hold only a number in these bounds; what a refusal says."""
+        self.rule(sheet, where, "cell-content-is-decimal-number() and "
+                  "cell-content-is-between(%s,%s)" % (low, high), says, empty)
+
+    def rule(self, sheet, where, condition, says, empty):
+        rule = ("of:" + condition, says, "true" if empty else "false")
+        if rule not in self.rules:
+            self.rules.append(rule)
+        sheet.validations[position(where)] = "rule%d" % (self.rules.index(rule) + 1)
 
     def style(self, words, sheet, where):
         """Remembers a style by its words and gives its name in the file."""
@@ -257,12 +274,15 @@ class Book:
         yield "<office:body><office:spreadsheet>"
         yield ("<table:calculation-settings table:automatic-find-labels='false'"
                " table:use-regular-expressions='false' table:use-wildcards='true'/>")
-        if self.lists:
+        if self.rules:
             yield "<table:content-validations>"
-            for i, condition in enumerate(self.lists, 1):
-                yield ("<table:content-validation table:name='list%d' table:condition=%s"
-                       " table:allow-empty-cell='false' table:display-list='unsorted'/>"
-                       % (i, quoteattr(condition)))
+            for i, (condition, says, empty) in enumerate(self.rules, 1):
+                yield ("<table:content-validation table:name='rule%d' table:condition=%s"
+                       " table:allow-empty-cell='%s' table:display-list='unsorted'>"
+                       "<table:error-message table:display='true' table:message-type='stop'"
+                       " table:title='Not possible here'><text:p>%s</text:p></table:error-message>"
+                       "</table:content-validation>" % (i, quoteattr(condition), empty,
+                                                        escape(says)))
             yield "</table:content-validations>"
         yield from body
         yield "<table:named-expressions>"

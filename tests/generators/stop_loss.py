@@ -10,14 +10,17 @@ import sys
 from flat_chart import Chart
 from flat_sheet import Book
 from stop_loss_account import COLOURS, COPULAS, INVENTED, opened, quoted_link, section
+from stop_loss_check import check
 from stop_loss_evidence import evidence
-from stop_loss_inputs import dependence, loss_ratios, margins, models
-from stop_loss_price import as_if, blocks, check, exceedance, price, terms
+from stop_loss_inputs import dependence, loss_ratios, models
+from stop_loss_margins import margins
+from stop_loss_price import blocks, exceedance, price
+from stop_loss_terms import as_if, terms
 
 
 def summary(book):
     sheet = opened(book, "Summary", book.title, book.subject,
-                   [5.6] + [2.7] * 5 + [0.8, 3.0, 11.0])
+                   [5.6] + [2.7] * 5 + [0.8, 3.0, 11.0], reason=True)
     answer(sheet)
     guide(sheet)
 
@@ -27,13 +30,14 @@ def answer(sheet):
     chosen = "=INDEX(PRICE_TABLE;CHOSEN_NUMBER;%d)"
     rows = [("Copula of the price", "=CHOSEN_COPULA", "right key", ""),
             ("Subject premium", "=SUBJECT_PREMIUM", "whole cell", ""),
-            ("Excess", "=Terms.H17", "whole cell", "=Terms.B17"),
-            ("Limit", "=Terms.I17", "whole cell", "=Terms.C17"),
-            ("Share ceded", "=Terms.D17", "percent cell", ""),
+            ("Excess", "=N(Terms.H17)", "whole cell", "=N(Terms.B17)"),
+            ("Limit", "=IF(ISNUMBER(Terms.I17);Terms.I17;\"unlimited\")", "whole right cell",
+             "=IF(ISNUMBER(Terms.C17);Terms.C17;\"\")"),
+            ("Share ceded", "=Terms.J17", "percent cell", ""),
             ("Expected ceded loss", chosen % 2, "whole key", "=B11/SUBJECT_PREMIUM"),
             ("simulation error of it", chosen % 3, "whole cell", ""),
             ("Probability of attaching", chosen % 4, "percent cell", ""),
-            ("Probability of exhausting", chosen % 5, "percent2 cell", ""),
+            ("Probability of exhausting", chosen % 5, "percent2 right cell", ""),
             ("=\"TVaR ceded, level \"&INDEX(SETTINGS;4;2)", chosen % 8, "whole cell",
              "=B15/SUBJECT_PREMIUM"),
             ("Price", chosen % 10, "whole key", "=B16/SUBJECT_PREMIUM"),
@@ -55,10 +59,11 @@ def answer(sheet):
     for i in range(len(COPULAS)):
         sheet.row("A%d" % (22 + i), ["=INDEX(PRICE_TABLE;%d;%d)" % (i + 1, k)
                                      for k in (1, 2, 3, 4, 5, 10)],
-                  ["cell", "whole cell", "whole cell", "percent cell", "percent2 cell",
+                  ["cell", "whole cell", "whole cell", "percent cell", "percent2 right cell",
                    "whole key"])
-    sheet.put("A26", "=\"Taken as independent, the lines would seem to make the price \"&ROUND(100*"
-              "(1-F%d/B16);0)&\" %% lower than under the chosen copula.\"" % (
+    sheet.put("A27", "=IFERROR(Price.A20;\"\")", "note")
+    sheet.put("A26", "=IFERROR(\"Taken as independent, the lines would seem to make the price "
+              "\"&ROUND(100*(1-F%d/B16);0)&\" %% lower than under the chosen copula.\";\"\")" % (
                   22 + COPULAS.index("independent")), "note")
 
 
@@ -74,8 +79,8 @@ def guide(sheet):
             ("As if", "past years under this cover"),
             ("Price", "settings, loadings and the price under each copula"),
             ("Blocks", "the four price blocks in full"),
-            ("Exceedance", "how often the subject loss exceeds an amount"),
-            ("Check", "two ways of working out the same thing")]):
+            ("Exceedance", "how often the subject loss reaches an amount"),
+            ("Check", "the same thing worked out in two ways; where an error began")]):
         sheet.put("H%d" % (6 + i), (quoted_link(name), name), "link")
         sheet.put("I%d" % (6 + i), text)
     section(sheet, "H20", "Cells")
@@ -89,6 +94,7 @@ def guide(sheet):
 
 def caution(sheet):
     section(sheet, "A28", "Caution")
+    sheet.heights[28] = 1.0
     for i, text in enumerate((
             "Model risk. A copula is a choice, not a finding: forty years cannot tell a gaussian "
             "tail from a t or gumbel tail. Read the table by copula as the range of one uncertain "

@@ -54,6 +54,9 @@ LOSS_RATIOS = [
 
 PREMIUMS = [118000, 74000, 42000, 21000, 25000]
 DISTRIBUTIONS = ["lognormal", "lognormal", "gamma", "weibull", "lomax"]
+REASONS = [None, "the heavier upper tail, on the side of caution",
+           "as in earlier years' reviews; the two hardly differ", None,
+           "a power tail: the worst year on record need not be the worst"]
 CHOSEN_MEANS = [None, None, 0.77, None, None]
 CHOSEN_DEVIATIONS = [None] * N
 SHARES = [1, 1, 1, 0.6, 1]
@@ -78,12 +81,14 @@ def figure(block, label, side="ceded", error=False):
     return "JOINT.READ(%s;\"%s\";%s)" % (block, label, column if error else "\"%s\"" % side)
 
 
-def opened(book, name, title, subtitle, widths, frozen=0):
+def opened(book, name, title, subtitle, widths, frozen=0, reason=False):
     sheet = book.sheet(name, widths, frozen)
     sheet.heights.update({1: 0.85, 2: 0.55, 3: 0.5})
     sheet.put("A1", title, "title")
     sheet.put("A2", subtitle, "subtitle")
     sheet.put("A3", INVENTED, "invented")
+    if reason:
+        sheet.put("A4", "=IF(LEN(REASON)=0;\"\";\"Reason: \"&REASON&\" (sheet Check)\")", "alarm")
     return sheet
 
 

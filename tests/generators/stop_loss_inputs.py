@@ -1,12 +1,10 @@
-"""The sheets of stop_loss.py that lead from data to models: loss ratios, dependence, models,
-margins.
-"""
+"""The sheets of stop_loss.py that lead from data to models: loss ratios, dependence, models."""
 
 from flat_chart import Chart
 from flat_sheet import letters
 from stop_loss_account import (
-    CHOSEN_DEVIATIONS, CHOSEN_MEANS, COLOURS, COPULAS, DISTRIBUTIONS, FIRST, LAST, LINES,
-    LOSS_RATIOS, N, PREMIUMS, REPAIR_NOTE, grid, opened, section, shifted, span)
+    COLOURS, COPULAS, FIRST, LAST, LINES, LOSS_RATIOS, N, REPAIR_NOTE, grid, opened, section,
+    shifted, span)
 
 
 def loss_ratios(book):
@@ -63,7 +61,7 @@ def statistics(sheet):
 def dependence(book):
     sheet = opened(book, "Dependence", "Dependence between the lines",
                    "From pairwise Kendall's tau to a correlation matrix that can be drawn from",
-                   [3.9] + [1.9] * N + [0.8] + [3.9] + [1.9] * N)
+                   [3.9] + [2.2] * N + [0.8] + [3.9] + [2.2] * N)
     sheet.put("A5", "Floor for eigenvalues", "cell")
     sheet.put("B5", 0.01, "three input")
     book.name("EIGENVALUE_FLOOR", sheet, "B5")
@@ -86,6 +84,8 @@ def dependence(book):
     sheet.array("H36", *REPAIR_NOTE, "=JOINT.REPAIRNOTE(GREINER_MAP;EIGENVALUE_FLOOR)",
                 lambda i, j: "cell" if not j else
                 "four cell" if i not in (4, 5, 6) and j == 1 else "whole cell")
+    sheet.put("L39", "=IF(N(J39)=0;\"\";%s&\", \"&%s)" % tuple(
+        "INDEX($'Loss ratios'.B7:F7;%s39)" % column for column in "JK"), "aside")
     worst_triple(sheet)
 
 
@@ -104,17 +104,18 @@ def eigenvalues(sheet):
 
 def worst_triple(sheet):
     section(sheet, "A44", "Worst triple that cannot stand together",
-            "JOINT.CLASHES(GREINER_MAP;1), lines by number")
-    sheet.row("A46", ["First", "Second", "Third", "lowest eigenv.", "last from", "last to"],
+            "JOINT.CLASHES(GREINER_MAP;1), by name")
+    sheet.row("A46", ["First", "Second", "Third", "lowest eigenvalue", "last from", "last to"],
               ["lefthead"] + ["head"] * 5)
     sheet.heights[46] = 0.9
-    sheet.array("A47", 1, 6, "=JOINT.CLASHES(GREINER_MAP;1)",
-                ["whole left cell", "whole cell", "whole cell"] + ["three cell"] * 3)
-    first, second, third = ("INDEX($'Loss ratios'.B7:F7;%s47)" % c for c in "ABC")
-    sheet.put("A48", "=IF(A47=0;\"No triple clashes.\";\"With those of \"&%s&\" held, the "
-              "correlation of \"&%s&\" and \"&%s&\" can lie\")" % (first, second, third), "note")
-    sheet.put("A49", "=IF(A47=0;\"\";\"only from \"&ROUND(E47;2)&\" to \"&ROUND(F47;2)&\"; the map "
-              "has \"&ROUND(INDEX(I10:M14;B47;C47);2)&\".\")", "note")
+    each = ["INDEX(JOINT.CLASHES(GREINER_MAP;1);1;%d)" % k for k in range(1, 7)]
+    sheet.row("A47", ["=IF(%s=0;\"none\";INDEX($'Loss ratios'.B7:F7;%s))" % (number, number)
+                      for number in each[:3]] + ["=" + number for number in each[3:]],
+              ["cell", "right cell", "right cell"] + ["three cell"] * 3)
+    sheet.put("A48", "=IF(%s=0;\"No triple clashes.\";\"With those of \"&A47&\" held, the "
+              "correlation of \"&B47&\" and \"&C47&\" can lie\")" % each[0], "note")
+    sheet.put("A49", "=IF(%s=0;\"\";\"only from \"&ROUND(E47;2)&\" to \"&ROUND(F47;2)&\"; the map "
+              "has \"&ROUND(INDEX(I10:M14;%s;%s);2)&\".\")" % tuple(each[:3]), "note")
 
 
 def models(book):
@@ -180,108 +181,3 @@ def implied(sheet):
               "aside")
     sheet.put("D33", "the other is, in the limit. A gaussian copula has none, whatever its tau.",
               "aside")
-
-
-def margins(book):
-    sheet = opened(book, "Margins", "Margins: one cover year, line by line",
-                   "Means and standard deviations from the data unless a choice is entered; "
-                   "amounts in thousands", [3.2] + [2.7] * 11)
-    section(sheet, "A5", "Moments")
-    sheet.row("A6", ["Line", "Earned premium", "Mean, data", "Mean, choice", "Mean, used",
-                     "Std dev., data", "Std dev., choice", "Std dev., used", "Distribution",
-                     "Mean loss", "Std dev. of the loss", "Variation"],
-              ["lefthead"] + ["head"] * 11)
-    sheet.heights[6] = 0.95
-    for i, line in enumerate(LINES):
-        row, statistic = 7 + i, letters(14 + i)
-        sheet.row("A%d" % row, [
-            "=$'Loss ratios'.%s7" % letters(i + 1), PREMIUMS[i],
-            "=$'Loss ratios'.%s11" % statistic, CHOSEN_MEANS[i],
-            "=IF(ISNUMBER(D%d);D%d;C%d)" % (row, row, row),
-            "=$'Loss ratios'.%s12" % statistic, CHOSEN_DEVIATIONS[i],
-            "=IF(ISNUMBER(G%d);G%d;F%d)" % (row, row, row), DISTRIBUTIONS[i],
-            "=B%d*E%d" % (row, row), "=B%d*H%d" % (row, row), "=K%d/J%d" % (row, row)],
-            ["cell", "whole input", "percent cell", "percent input", "percent cell",
-             "percent cell", "percent input", "percent cell", "right input", "whole cell",
-             "whole cell", "two cell"])
-        book.choice(sheet, "I%d" % row, ["gamma", "lognormal", "weibull", "lomax", "pareto",
-                                         "normal"])
-    last = 6 + N
-    sheet.row("A%d" % (last + 1), ["Total", "=SUM(B7:B%d)" % last], ["key", "whole key"])
-    sheet.put("E%d" % (last + 1), "=J%d/B%d" % (last + 1, last + 1), "percent key")
-    sheet.put("J%d" % (last + 1), "=SUM(J7:J%d)" % last, "whole key")
-    sheet.put("A%d" % (last + 2), "Liability: the mean is chosen above the data, as claims "
-              "inflation in the line has run ahead of the index used to bring old years to "
-              "today's level.", "note")
-    margin_block(sheet)
-    distances(sheet)
-    likelihoods(sheet)
-
-
-def margin_block(sheet):
-    section(sheet, "A15", "As the functions read them",
-            "a, b, c: JOINT.MOMENTS(distribution;mean;sd), the method of moments")
-    sheet.row("A17", ["name", "distribution", "a", "b", "c"],
-              ["lefthead", "lefthead"] + ["head"] * 3)
-    section(sheet, "G15", "What they imply", "JOINT.QUANTILE and JOINT.PROBABILITY, over premium")
-    sheet.row("G17", ["1 in 10", "1 in 100", "1 in 200", "P(loss above premium)"], "head")
-    sheet.heights[17] = 0.95
-    for i in range(N):
-        row = 18 + i
-        sheet.row("A%d" % row, ["=A%d" % (7 + i), "=I%d" % (7 + i)])
-        sheet.array("C%d" % row, 1, 3, "=JOINT.MOMENTS(I%d;J%d;K%d)" % ((7 + i,) * 3), "four cell")
-        given = "$B%d;$C%d;$D%d" % (row, row, row)
-        sheet.row("G%d" % row, ["=JOINT.QUANTILE(%g;%s)/$B%d" % (p, given, 7 + i)
-                                for p in (0.9, 0.99, 0.995)], "percent cell")
-        sheet.put("J%d" % row, "=1-JOINT.PROBABILITY($B%d;%s)" % (7 + i, given), "percent2 cell")
-    sheet.book.name("MARGINS", sheet, "A17:E%d" % (17 + N))
-
-
-CANDIDATES = ["gamma", "lognormal", "weibull", "lomax"]
-
-
-def distances(sheet):
-    section(sheet, "A25", "How far from the years are the distributions?",
-            "largest difference between JOINT.PROBABILITY, fitted by JOINT.MOMENTS to the data, "
-            "and JOINT.RANKS; below about 0.2 it is within chance at forty years")
-    sheet.row("A27", ["Line"] + CANDIDATES + ["nearest", "used"], ["lefthead"] + ["head"] * 6)
-    for i in range(N):
-        row, column = 28 + i, letters(i + 1)
-        data = "$'Loss ratios'.%s%d:%s%d" % (column, FIRST, column, LAST)
-        sheet.put("A%d" % row, "=A%d" % (7 + i))
-        for j, word in enumerate(CANDIDATES):
-            sheet.array("%s%d" % (letters(j + 1), row), 1, 1, distance(word, data, 7 + i),
-                        "three right cell")
-        sheet.put("F%d" % row, "=INDEX(B$27:E$27;MATCH(MIN(B%d:E%d);B%d:E%d;0))" % ((row,) * 4),
-                  "right cell")
-        sheet.put("G%d" % row, "=I%d" % (7 + i), "right cell")
-    sheet.put("A%d" % (28 + N), "Property: the lognormal is as near as the gamma and has the "
-              "heavier tail. None: a lomax has a coefficient of variation above 1.", "note")
-
-
-def distance(word, data, row):
-    """Of a distribution fitted by moments from the empirical one, as an array formula."""
-    moments = "JOINT.MOMENTS(\"%s\";$C%d;$F%d)" % (word, row, row)
-    fitted = "JOINT.PROBABILITY(%s;\"%s\";INDEX(%s;1;1);INDEX(%s;1;2))" % (
-        data, word, moments, moments)
-    furthest = "MAX(IF(ISNUMBER(%s);ABS(%s-JOINT.RANKS(%s));0))" % (data, fitted, data)
-    return "=IF($F%d>$C%d;%s;\"none\")" % (row, row, furthest) if word == "lomax" \
-        else "=" + furthest
-
-
-def likelihoods(sheet):
-    section(sheet, "A35", "And by likelihood",
-            "AIC of the maximum likelihood fit to the loss ratios, JOINT.MARGINFIT; lower is "
-            "better, a difference below about 2 says little")
-    sheet.row("A37", ["Line"] + CANDIDATES + ["lowest"], ["lefthead"] + ["head"] * 5)
-    for i in range(N):
-        row, column = 38 + i, letters(i + 1)
-        sheet.put("A%d" % row, "=A%d" % (7 + i))
-        for j, word in enumerate(CANDIDATES):
-            fit = "INDEX(JOINT.MARGINFIT(\"%s\";$'Loss ratios'.%s%d:%s%d);1;8)" % (
-                word, column, FIRST, column, LAST)
-            sheet.put("%s%d" % (letters(j + 1), row),
-                      "=IF($F%d>$C%d;%s;\"none\")" % (7 + i, 7 + i, fit) if word == "lomax"
-                      else "=" + fit, "two right cell")
-        sheet.put("F%d" % row, "=INDEX(B$37:E$37;MATCH(MIN(B%d:E%d);B%d:E%d;0))" % ((row,) * 4),
-                  "right cell")
