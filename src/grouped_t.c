@@ -10,7 +10,11 @@
  *   over independent z, z', z'' by the trapezoid rule with normal weights.
  *   Tail: with m_i = E max(Z_i, 0)^df_i it is E min(Z_1^df_1 / m_1, Z_2^df_2 / m_2) over the
  *   quadrant where both are positive. In polar coordinates the radius gives incomplete gamma
- *   functions; the angle is integrated by the double exponential rule (Takahasi & Mori 1974).
+ *   functions; the angle is integrated by the double exponential rule (Takahasi & Mori 1974), in
+ *   panels as wide as the peak of the integrand is for the larger df.
+ *
+ * Special cases
+ *   A correlation of 1 leaves only the radius, of -1 nothing.
  */
 #include "grouped_t.h"
 #include "root.h"
@@ -116,13 +120,13 @@ status rho_of_grouped(double correlation, double df1, double df2, double *rho, p
 /* log of 2 sqrt(pi) Gamma(df/2 + 1) / Gamma((df + 1)/2) */
 static double log_scale(double df)
 {
-    return log(2 * sqrt(PI)) + gsl_sf_lngamma(df / 2 + 1) - gsl_sf_lngamma((df + 1) / 2);
+    return log(2 * sqrt(PI)) + gsl_sf_lnpoch((df + 1) / 2, 0.5);
 }
 
-/* log of m = E max(Z, 0)^df */
-static double log_moment(double df)
+/* log of m_high / m_low, where m = E max(Z, 0)^df */
+static double log_moments(double low, double high)
 {
-    return (df / 2 - 1) * log(2) + gsl_sf_lngamma((df + 1) / 2) - log(PI) / 2;
+    return (high - low) / 2 * log(2) + gsl_sf_lnpoch((low + 1) / 2, (high - low) / 2);
 }
 
 /* The lower (below) or upper incomplete gamma function, regularised. */
@@ -138,27 +142,35 @@ static double gamma_part(double shape, double log_x, bool below)
 
 /* A pair in polar coordinates: Z_1 = R cos(angle), Z_2 = R cos(angle - turn). */
 struct corner_pair {
-    double turn, low, high;
+    double turn, low, high, moments;
 };
 
 /* How much the first column is ahead of the second at radius 1, in logarithms. */
 static double ahead(double cos1, double cos2, const struct corner_pair *c)
 {
-    return c->low * log(cos1) - log_moment(c->low) - c->high * log(cos2) + log_moment(c->high);
+    return c->low * log(cos1) - c->high * log(cos2) + c->moments;
 }
 
+/* At the radius where most of the mass is. */
 static double ahead_at(double angle, const void *with)
 {
     const struct corner_pair *c = with;
     double cos1 = fmax(cos(angle), 1e-300), cos2 = fmax(cos(angle - c->turn), 1e-300);
-    return fmax(-1e6, fmin(1e6, ahead(cos1, cos2, c)));
+    double there = ahead(cos1, cos2, c) - (c->high - c->low) / 2 * log(c->high + 2);
+    return fmax(-1e6, fmin(1e6, there));
+}
+
+/* The logarithm of R^2/2 at which both are level. */
+static double log_meet(double ahead, const struct corner_pair *c)
+{
+    return 2 / (c->high - c->low) * ahead - log(2);
 }
 
 static double tail_at(double angle, const struct corner_pair *c)
 {
     double cos1 = cos(angle), cos2 = cos(angle - c->turn);
     if (!(cos1 > 0 && cos2 > 0)) return 0;
-    double meet = 2 / (c->high - c->low) * ahead(cos1, cos2, c) - log(2);
+    double meet = log_meet(ahead(cos1, cos2, c), c);
     return exp(log_scale(c->high) + c->high * log(cos2)) * gamma_part(c->high / 2 + 1, meet, true)
          + exp(log_scale(c->low) + c->low * log(cos1)) * gamma_part(c->low / 2 + 1, meet, false);
 }
@@ -177,11 +189,59 @@ static double tail_between(double from, double to, const struct corner_pair *c)
 
 /* Where the df are close the integrand all but breaks where both columns are level: split there,
  * unless they are level only within rounding of an end. */
+static double tail_of_panel(double from, double to, const struct corner_pair *c)
+{
+    double level;
+    if (!(from < to)) return 0;
+    if (root_between(ahead_at, c, from, to, &level) != OK) return tail_between(from, to, c);
+    return tail_between(from, level, c) + tail_between(level, to, c);
+}
+
+/* Puts an angle in its place among those given before. */
+static void insert(double angle, double *angles, int *n)
+{
+    int k = (*n)++;
+    for (; k > 0 && angles[k - 1] > angle; k--) angles[k] = angles[k - 1];
+    angles[k] = angle;
+}
+
+/* How far the first is ahead turns where tan(angle - turn) = ratio tan(angle), which is a quadratic
+ * in the tangent: between those angles the columns are level at most once. */
+static void insert_turning_points(const struct corner_pair *c, double *angles, int *n)
+{
+    double ratio = c->low / c->high, rest = (c->high - c->low) / c->high, slant = tan(c->turn);
+    double inside = rest * rest - 4 * ratio * slant * slant;
+    if (!(inside >= 0 && slant > 0)) return;
+    double larger = rest + sqrt(inside);
+    insert(atan(2 * slant / larger), angles, n);
+    insert(atan(larger / (2 * ratio * slant)), angles, n);
+}
+
+/* The integrand is at most either term without its gamma function, and so nothing beyond REACH
+ * standard deviations 1/sqrt(df) of either peak, at 0 and at `turn`. */
+static double tail_over_angles(const struct corner_pair *c)
+{
+    enum { REACH = 9, PANELS = 2 * REACH };
+    double width = 1 / sqrt(c->high), wide = REACH / sqrt(c->low), angles[PANELS + 3], sum = 0;
+    double from = fmax(c->turn - PI / 2, -wide), to = fmin(PI / 2, wide);
+    int n = 0;
+    for (int k = 0; k <= PANELS; k++) insert(c->turn + (k - REACH) * width, angles, &n);
+    insert_turning_points(c, angles, &n);
+    for (int k = 0; k + 1 < n; k++)
+        sum += tail_of_panel(fmax(from, angles[k]), fmin(to, angles[k + 1]), c);
+    return sum / (2 * PI);
+}
+
+/* Z_1 = Z_2: the first is the smaller one beyond the point where they are level. */
+static double tail_of_one(const struct corner_pair *c)
+{
+    double meet = log_meet(c->moments, c);
+    return gamma_part((c->high + 1) / 2, meet, true) + gamma_part((c->low + 1) / 2, meet, false);
+}
+
 double tail_of_grouped(double correlation, double df1, double df2)
 {
-    struct corner_pair c = { acos(correlation), fmin(df1, df2), fmax(df1, df2) };
-    double from = c.turn - PI / 2, to = PI / 2, level;
-    if (!(from < to)) return 0;
-    if (root_between(ahead_at, &c, from, to, &level) != OK) level = to;
-    return (tail_between(from, level, &c) + tail_between(level, to, &c)) / (2 * PI);
+    double low = fmin(df1, df2), high = fmax(df1, df2);
+    struct corner_pair c = { acos(correlation), low, high, log_moments(low, high) };
+    return c.turn > 0 ? fmin(1, tail_over_angles(&c)) : tail_of_one(&c);
 }
