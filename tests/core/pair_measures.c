@@ -109,10 +109,10 @@ static void grouped_tail(void **state)
     assert_true(tail_of(&turned, UPPER) > 0 && tail_of(&turned, UPPER) < 1e-12);
 }
 
-/* With many degrees of freedom the integrand is a narrow peak. At correlation 1 mpmath, by regularised
- * incomplete gammas of h + 1 and l + 1 halves where z^l / m_l = z^h / m_h; below it SciPy, Gauss and
- * Legendre's rule over the bivariate normal density of E min(Z_1^l / m_1, Z_2^h / m_2), split where
- * the two are level. */
+/* With many degrees of freedom the integrand is a narrow peak. At correlation 1 mpmath, by
+ * regularised incomplete gammas of h + 1 and l + 1 halves where z^l / m_l = z^h / m_h; below it
+ * SciPy, Gauss and Legendre's rule over the bivariate normal density of
+ * E min(Z_1^l / m_1, Z_2^h / m_2), split where the two are level. */
 static void grouped_tail_of_many_df(void **state)
 {
     (void)state;
