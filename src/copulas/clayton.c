@@ -10,6 +10,8 @@
  *
  * Special cases
  *   theta = 0: independence. theta = -1, tau = -1: v = 1 - u. tau = 1 is not reached.
+ *   Beyond theta = 1e17 tau is 1 to rounding; far beyond, the frailty would leave the range of
+ *   doubles.
  *
  * Accuracy
  *   tau and theta to 2 units in the last place; rho to 2e-14, from theta 10 its distance
@@ -117,7 +119,7 @@ static status draw_clayton(const copula *c, const struct draw_rows *where, pool 
 const family clayton_family = {
     .word = "clayton",
     .has_theta = true,
-    .theta_low = -1, .theta_high = HUGE_VAL, .theta_low_beyond_pairs = 0, .theta_open = 2,
+    .theta_low = -1, .theta_high = 1e17, .theta_low_beyond_pairs = 0,
     .tau_low = -1, .tau_high = 1, .tau_open = 2,
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,

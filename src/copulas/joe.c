@@ -13,6 +13,8 @@
  *
  * Special cases
  *   theta = 1, tau = 0: independence. tau = 1 is not reached.
+ *   Beyond theta = 1e17 tau is 1 to rounding; far beyond, the frailty would leave the range of
+ *   doubles.
  *
  * Accuracy
  *   tau and theta to 1e-14 relative, tau also near 0; rho to 2e-14,
@@ -159,7 +161,7 @@ static double psi(double log_t, double theta)
 const family joe_family = {
     .word = "joe",
     .has_theta = true,
-    .theta_low = 1, .theta_high = HUGE_VAL, .theta_low_beyond_pairs = 1, .theta_open = 2,
+    .theta_low = 1, .theta_high = 1e17, .theta_low_beyond_pairs = 1,
     .tau_low = 0, .tau_high = 1, .tau_open = 2,
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
