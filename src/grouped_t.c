@@ -7,7 +7,9 @@
  *     tau = (2/pi) E asin(correlation c), c = (sqrt(w_1 w_2) + sqrt(w_1' w_2'))
  *                                            / sqrt((w_1 + w_1')(w_2 + w_2')),
  *     rho = (6/pi) E asin(correlation sqrt(w_1/(w_1 + w_1') w_2/(w_2 + w_2''))),
- *   over independent z, z', z'' by the trapezoid rule with normal weights.
+ *   over independent z, z', z'' by the trapezoid rule with normal weights. Where scores are level w
+ *   all but jumps when the df are few, over a width of about df: there the rule runs over the
+ *   logarithm of their distance (Trefethen & Weideman 2014).
  *   Tail: with m_i = E max(Z_i, 0)^df_i it is E min(Z_1^df_1 / m_1, Z_2^df_2 / m_2) over the
  *   quadrant where both are positive. In polar coordinates the radius gives incomplete gamma
  *   functions; the angle is integrated by the double exponential rule (Takahasi & Mori 1974), in
@@ -27,35 +29,28 @@
 
 static const double PI = 3.14159265358979323846;
 
-/* Normal weights, and log w of either column, at normal scores from -8 to 8. */
-struct scores {
-    int n;
-    double *weight, *log_w1, *log_w2;
+/* The tables of log chi-square for either column; log w is their negative but for a constant. */
+struct columns {
+    struct student first, second;
 };
 
-static status log_mixing(double df, struct scores *s, double *log_w, pool *p)
+/* Below the smallest distance that counts (FIRST_LOG) all df are alike. */
+static status take_columns(double df1, double df2, struct columns *c, pool *p)
 {
-    struct student table;
-    status made = student_tables(&table, df, p);
-    for (int k = 0; made == OK && k < s->n; k++)
-        log_w[k] = -log_chi_square(&table, 16.0 * k / (s->n - 1) - 8);
-    return made;
+    const double LEAST = 1e-20;
+    if (!(df1 > 0 && df2 > 0)) return OUT_OF_DOMAIN;
+    status made = chi_square_table(&c->first, fmax(df1, LEAST), p);
+    return made == OK ? chi_square_table(&c->second, fmax(df2, LEAST), p) : made;
 }
 
-static status take_scores(double df1, double df2, int n, struct scores *s, pool *p)
-{
-    double *room = pool_take(p, (size_t)(3 * n), sizeof *room);
-    if (!room) return NO_MEMORY;
-    *s = (struct scores){ n, room, room + n, room + 2 * n };
-    double sum = 0;
-    for (int k = 0; k < n; k++) {
-        double z = 16.0 * k / (n - 1) - 8;
-        sum += s->weight[k] = exp(-z * z / 2);
-    }
-    for (int k = 0; k < n; k++) s->weight[k] /= sum;
-    status made = log_mixing(df1, s, s->log_w1, p);
-    return made == OK ? log_mixing(df2, s, s->log_w2, p) : made;
-}
+/* Scores beyond it are too rare to matter. The tables reach a little further. */
+static const double LAST_SCORE = 8;
+
+/* Distances from a score, equally spaced in their logarithm, where a column with few df all but
+ * jumps: the jump is about df wide. */
+enum { DISTANCES = 134 };
+
+static const double LOG_STEP = 0.2, FIRST_LOG = -24;
 
 /* log(2 cosh x) */
 static double log_cosh(double x)
@@ -63,57 +58,116 @@ static double log_cosh(double x)
     return fabs(x) + log1p(exp(-2 * fabs(x)));
 }
 
-static double tau_between(const struct scores *s, double correlation, int k, int l)
+/* Half of log w at z less that at z', as far as c can tell. */
+static double half_ratio(const struct student *column, double z, double other)
 {
-    double d1 = (s->log_w1[k] - s->log_w1[l]) / 2, d2 = (s->log_w2[k] - s->log_w2[l]) / 2;
+    double half = (log_chi_square(column, other) - log_chi_square(column, z)) / 2;
+    return fmax(-60, fmin(60, half));
+}
+
+static double tau_between(const struct columns *columns, double correlation, double z, double other)
+{
+    double d1 = half_ratio(&columns->first, z, other), d2 = half_ratio(&columns->second, z, other);
     double c = exp(log_cosh((d1 + d2) / 2) - (log_cosh(d1) + log_cosh(d2)) / 2);
     return asin(correlation * fmin(1, c));
+}
+
+/* The mean over z > z', in the independent normal variables (z + z')/sqrt 2, their middle, and
+ * (z - z')/sqrt 2, their distance. */
+static double mean_for_tau(const struct columns *c, double correlation)
+{
+    enum { MIDDLES = 161 };
+    double weights = 0, sum = 0;
+    for (int l = 0; l < DISTANCES; l++) {
+        double distance = exp(FIRST_LOG + LOG_STEP * l);
+        for (int k = 0; k < MIDDLES; k++) {
+            double middle = LAST_SCORE * (2.0 * k / (MIDDLES - 1) - 1);
+            double z = (middle + distance) / sqrt(2), other = (middle - distance) / sqrt(2);
+            if (fabs(z) > LAST_SCORE || fabs(other) > LAST_SCORE) continue;
+            double weight = distance * exp(-(middle * middle + distance * distance) / 2);
+            weights += weight;
+            sum += weight * tau_between(c, correlation, z, other);
+        }
+    }
+    return sum / weights;
 }
 
 status tau_of_grouped(double correlation, double df1, double df2, double *tau, pool *p)
 {
     struct block *mark = p->last;
-    struct scores s;
-    status made = take_scores(df1, df2, 161, &s, p);
-    double sum = 0;
-    for (int k = 0; made == OK && k < s.n; k++)
-        for (int l = 0; l <= k; l++)
-            sum += (l < k ? 2 : 1) * s.weight[k] * s.weight[l] * tau_between(&s, correlation, k, l);
+    struct columns c;
+    status made = take_columns(df1, df2, &c, p);
+    if (made == OK) *tau = mean_for_tau(&c, correlation) / (PI / 2);
     pool_back_to(p, mark);
-    *tau = sum / (PI / 2);
     return made;
 }
 
-/* sqrt(w_k / (w_k + w_l)) */
-static double part(const double *log_w, int k, int l)
+/* sqrt(w/(w + w')) of one column at the scores z' of a row that is compared with a row at z. */
+struct parts {
+    int n;
+    double weight[2 * DISTANCES], part[2 * DISTANCES];
+};
+
+static void add_part(const struct student *column, double z, double other, double weight,
+                     struct parts *s)
 {
-    return 1 / sqrt(1 + exp(log_w[l] - log_w[k]));
+    if (fabs(other) > LAST_SCORE) return;
+    double chi = log_chi_square(column, z) - log_chi_square(column, other);
+    s->weight[s->n] = weight * exp(-other * other / 2);
+    s->part[s->n++] = 1 / sqrt(1 + exp(chi));
+}
+
+/* From df 1 equal steps resolve the jump at z. */
+static void take_parts(const struct student *column, double z, struct parts *s)
+{
+    enum { SCORES = 101 };
+    s->n = 0;
+    for (int k = 0; column->df >= 1 && k < SCORES; k++)
+        add_part(column, z, LAST_SCORE * (2.0 * k / (SCORES - 1) - 1), 1, s);
+    for (int k = 0; column->df < 1 && k < DISTANCES; k++) {
+        double distance = exp(FIRST_LOG + LOG_STEP * k);
+        add_part(column, z, z - distance, distance, s);
+        add_part(column, z, z + distance, distance, s);
+    }
+    double sum = 0;
+    for (int k = 0; k < s->n; k++) sum += s->weight[k];
+    for (int k = 0; k < s->n; k++) s->weight[k] /= sum;
 }
 
 /* The sum over z' and z'' for one z. */
-static double rho_at(const struct scores *s, double correlation, int k, double *parts)
+static double rho_at(const struct columns *c, double correlation, double z)
 {
     double sum = 0;
-    for (int m = 0; m < s->n; m++) parts[m] = part(s->log_w2, k, m);
-    for (int l = 0; l < s->n; l++) {
-        double with = correlation * part(s->log_w1, k, l), inner = 0;
-        for (int m = 0; m < s->n; m++) inner += s->weight[m] * asin(with * parts[m]);
-        sum += s->weight[l] * inner;
+    struct parts first, second;
+    take_parts(&c->first, z, &first);
+    take_parts(&c->second, z, &second);
+    for (int k = 0; k < first.n; k++) {
+        double with = correlation * first.part[k], inner = 0;
+        for (int l = 0; l < second.n; l++) inner += second.weight[l] * asin(with * second.part[l]);
+        sum += first.weight[k] * inner;
     }
     return sum;
 }
 
-status rho_of_grouped(double correlation, double df1, double df2, double *rho, pool *p)
+static double mean_for_rho(const struct columns *c, double correlation)
 {
     enum { SCORES = 101 };
+    double weights = 0, sum = 0;
+    for (int k = 0; k < SCORES; k++) {
+        double z = LAST_SCORE * (2.0 * k / (SCORES - 1) - 1), weight = exp(-z * z / 2);
+        weights += weight;
+        sum += weight * rho_at(c, correlation, z);
+    }
+    return sum / weights;
+}
+
+status rho_of_grouped(double correlation, double df1, double df2, double *rho, pool *p)
+{
     struct block *mark = p->last;
-    struct scores s;
-    double parts[SCORES], sum = 0;
-    status made = take_scores(df1, df2, SCORES, &s, p);
-    for (int k = 0; made == OK && k < s.n; k++)
-        sum += s.weight[k] * rho_at(&s, correlation, k, parts);
+    struct columns c;
+    status made = take_columns(df1, df2, &c, p);
+    if (made == OK) *rho = mean_for_rho(&c, correlation) / (PI / 6);
     pool_back_to(p, mark);
-    *rho = sum / (PI / 6);
     return made;
 }
 
