@@ -10,9 +10,9 @@
  *   A pivot of the factorisation that is zero to rounding gives a zero column: the matrix is
  *   singular and the copula lives on fewer dimensions. Its row is scaled back to length one, so
  *   that the margin stays uniform. A pivot far below zero can still be rounding, enlarged by small
- *   pivots before it, in a matrix that is feasible to -1e-12 d (correlation.h). Then the factor is
- *   that of (M + e I) / (1 + e), e = 2e-12 d, which has pivots of 1e-12 d at least; OUT_OF_DOMAIN if
- *   that fails too: no correlation matrix.
+ *   pivots before it, in a matrix that is feasible to -1e-12 d (correlation.h). The factor then is
+ *   that of (M + e I) / (1 + e), e = 2e-12 d, which has pivots of 1e-12 d at least.
+ *   Where it has no factor either: OUT_OF_DOMAIN, no correlation matrix.
  *
  * Accuracy
  *   Sums run in a fixed order, without contraction: the bits do not depend on the machine.
