@@ -35,7 +35,7 @@ status check_dimension(const copula *c, report *r);
 /* The block of a copula. */
 status write_copula(const copula *c, value *out, report *r);
 
-/* "[1;inf)": the theta of a family in this dimension; NULL when there is no memory. */
+/* "[1;1e+17]": the theta of a family in this dimension; NULL when there is no memory. */
 const char *theta_range(const family *f, size_t dimension, pool *p);
 
 /* "[0;1)": the tau that a pair of the family can have. */

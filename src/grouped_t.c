@@ -7,10 +7,16 @@
  *     tau = (2/pi) E asin(correlation c), c = (sqrt(w_1 w_2) + sqrt(w_1' w_2'))
  *                                            / sqrt((w_1 + w_1')(w_2 + w_2')),
  *     rho = (6/pi) E asin(correlation sqrt(w_1/(w_1 + w_1') w_2/(w_2 + w_2''))),
- *   over independent z, z', z'' by the trapezoid rule with normal weights.
+ *   over independent z, z', z'' by the trapezoid rule with normal weights. Where scores are level w
+ *   all but jumps when the df are few, over a width of about df: there the rule runs over the
+ *   logarithm of their distance (Trefethen & Weideman 2014).
  *   Tail: with m_i = E max(Z_i, 0)^df_i it is E min(Z_1^df_1 / m_1, Z_2^df_2 / m_2) over the
  *   quadrant where both are positive. In polar coordinates the radius gives incomplete gamma
- *   functions; the angle is integrated by the double exponential rule (Takahasi & Mori 1974).
+ *   functions; the angle is integrated by the double exponential rule (Takahasi & Mori 1974), in
+ *   panels as wide as the peak of the integrand is for the larger df.
+ *
+ * Special cases
+ *   A correlation of 1 leaves only the radius, of -1 nothing.
  */
 #include "grouped_t.h"
 #include "root.h"
@@ -23,35 +29,28 @@
 
 static const double PI = 3.14159265358979323846;
 
-/* Normal weights, and log w of either column, at normal scores from -8 to 8. */
-struct scores {
-    int n;
-    double *weight, *log_w1, *log_w2;
+/* The tables of log chi-square for either column; log w is their negative but for a constant. */
+struct columns {
+    struct student first, second;
 };
 
-static status log_mixing(double df, struct scores *s, double *log_w, pool *p)
+/* Below the smallest distance that counts (FIRST_LOG) all df are alike. */
+static status take_columns(double df1, double df2, struct columns *c, pool *p)
 {
-    struct student table;
-    status made = student_tables(&table, df, p);
-    for (int k = 0; made == OK && k < s->n; k++)
-        log_w[k] = -log_chi_square(&table, 16.0 * k / (s->n - 1) - 8);
-    return made;
+    const double LEAST = 1e-20;
+    if (!(df1 > 0 && df2 > 0)) return OUT_OF_DOMAIN;
+    status made = chi_square_table(&c->first, fmax(df1, LEAST), p);
+    return made == OK ? chi_square_table(&c->second, fmax(df2, LEAST), p) : made;
 }
 
-static status take_scores(double df1, double df2, int n, struct scores *s, pool *p)
-{
-    double *room = pool_take(p, (size_t)(3 * n), sizeof *room);
-    if (!room) return NO_MEMORY;
-    *s = (struct scores){ n, room, room + n, room + 2 * n };
-    double sum = 0;
-    for (int k = 0; k < n; k++) {
-        double z = 16.0 * k / (n - 1) - 8;
-        sum += s->weight[k] = exp(-z * z / 2);
-    }
-    for (int k = 0; k < n; k++) s->weight[k] /= sum;
-    status made = log_mixing(df1, s, s->log_w1, p);
-    return made == OK ? log_mixing(df2, s, s->log_w2, p) : made;
-}
+/* Scores beyond it are too rare to matter. The tables reach a little further. */
+static const double LAST_SCORE = 8;
+
+/* Distances from a score, equally spaced in their logarithm, where a column with few df all but
+ * jumps: the jump is about df wide. */
+enum { DISTANCES = 134 };
+
+static const double LOG_STEP = 0.2, FIRST_LOG = -24;
 
 /* log(2 cosh x) */
 static double log_cosh(double x)
@@ -59,70 +58,129 @@ static double log_cosh(double x)
     return fabs(x) + log1p(exp(-2 * fabs(x)));
 }
 
-static double tau_between(const struct scores *s, double correlation, int k, int l)
+/* Half of log w at z less that at z', as far as c can tell. */
+static double half_ratio(const struct student *column, double z, double other)
 {
-    double d1 = (s->log_w1[k] - s->log_w1[l]) / 2, d2 = (s->log_w2[k] - s->log_w2[l]) / 2;
+    double half = (log_chi_square(column, other) - log_chi_square(column, z)) / 2;
+    return fmax(-60, fmin(60, half));
+}
+
+static double tau_between(const struct columns *columns, double correlation, double z, double other)
+{
+    double d1 = half_ratio(&columns->first, z, other), d2 = half_ratio(&columns->second, z, other);
     double c = exp(log_cosh((d1 + d2) / 2) - (log_cosh(d1) + log_cosh(d2)) / 2);
     return asin(correlation * fmin(1, c));
+}
+
+/* The mean over z > z', in the independent normal variables (z + z')/sqrt 2, their middle, and
+ * (z - z')/sqrt 2, their distance. */
+static double mean_for_tau(const struct columns *c, double correlation)
+{
+    enum { MIDDLES = 161 };
+    double weights = 0, sum = 0;
+    for (int l = 0; l < DISTANCES; l++) {
+        double distance = exp(FIRST_LOG + LOG_STEP * l);
+        for (int k = 0; k < MIDDLES; k++) {
+            double middle = LAST_SCORE * (2.0 * k / (MIDDLES - 1) - 1);
+            double z = (middle + distance) / sqrt(2), other = (middle - distance) / sqrt(2);
+            if (fabs(z) > LAST_SCORE || fabs(other) > LAST_SCORE) continue;
+            double weight = distance * exp(-(middle * middle + distance * distance) / 2);
+            weights += weight;
+            sum += weight * tau_between(c, correlation, z, other);
+        }
+    }
+    return sum / weights;
 }
 
 status tau_of_grouped(double correlation, double df1, double df2, double *tau, pool *p)
 {
     struct block *mark = p->last;
-    struct scores s;
-    status made = take_scores(df1, df2, 161, &s, p);
-    double sum = 0;
-    for (int k = 0; made == OK && k < s.n; k++)
-        for (int l = 0; l <= k; l++)
-            sum += (l < k ? 2 : 1) * s.weight[k] * s.weight[l] * tau_between(&s, correlation, k, l);
+    struct columns c;
+    status made = take_columns(df1, df2, &c, p);
+    if (made == OK) *tau = mean_for_tau(&c, correlation) / (PI / 2);
     pool_back_to(p, mark);
-    *tau = sum / (PI / 2);
     return made;
 }
 
-/* sqrt(w_k / (w_k + w_l)) */
-static double part(const double *log_w, int k, int l)
+/* sqrt(w/(w + w')) of one column at the scores z' of a row that is compared with a row at z. */
+struct parts {
+    int n;
+    double weight[2 * DISTANCES], part[2 * DISTANCES];
+};
+
+static void add_part(const struct student *column, double z, double other, double weight,
+                     struct parts *s)
 {
-    return 1 / sqrt(1 + exp(log_w[l] - log_w[k]));
+    if (fabs(other) > LAST_SCORE) return;
+    double chi = log_chi_square(column, z) - log_chi_square(column, other);
+    s->weight[s->n] = weight * exp(-other * other / 2);
+    s->part[s->n++] = 1 / sqrt(1 + exp(chi));
+}
+
+/* From df 1 equal steps resolve the jump at z. */
+static void take_parts(const struct student *column, double z, struct parts *s)
+{
+    enum { SCORES = 101 };
+    s->n = 0;
+    for (int k = 0; column->df >= 1 && k < SCORES; k++)
+        add_part(column, z, LAST_SCORE * (2.0 * k / (SCORES - 1) - 1), 1, s);
+    for (int k = 0; column->df < 1 && k < DISTANCES; k++) {
+        double distance = exp(FIRST_LOG + LOG_STEP * k);
+        add_part(column, z, z - distance, distance, s);
+        add_part(column, z, z + distance, distance, s);
+    }
+    double sum = 0;
+    for (int k = 0; k < s->n; k++) sum += s->weight[k];
+    for (int k = 0; k < s->n; k++) s->weight[k] /= sum;
 }
 
 /* The sum over z' and z'' for one z. */
-static double rho_at(const struct scores *s, double correlation, int k, double *parts)
+static double rho_at(const struct columns *c, double correlation, double z)
 {
     double sum = 0;
-    for (int m = 0; m < s->n; m++) parts[m] = part(s->log_w2, k, m);
-    for (int l = 0; l < s->n; l++) {
-        double with = correlation * part(s->log_w1, k, l), inner = 0;
-        for (int m = 0; m < s->n; m++) inner += s->weight[m] * asin(with * parts[m]);
-        sum += s->weight[l] * inner;
+    struct parts first, second;
+    take_parts(&c->first, z, &first);
+    take_parts(&c->second, z, &second);
+    for (int k = 0; k < first.n; k++) {
+        double with = correlation * first.part[k], inner = 0;
+        for (int l = 0; l < second.n; l++) inner += second.weight[l] * asin(with * second.part[l]);
+        sum += first.weight[k] * inner;
     }
     return sum;
 }
 
-status rho_of_grouped(double correlation, double df1, double df2, double *rho, pool *p)
+static double mean_for_rho(const struct columns *c, double correlation)
 {
     enum { SCORES = 101 };
+    double weights = 0, sum = 0;
+    for (int k = 0; k < SCORES; k++) {
+        double z = LAST_SCORE * (2.0 * k / (SCORES - 1) - 1), weight = exp(-z * z / 2);
+        weights += weight;
+        sum += weight * rho_at(c, correlation, z);
+    }
+    return sum / weights;
+}
+
+status rho_of_grouped(double correlation, double df1, double df2, double *rho, pool *p)
+{
     struct block *mark = p->last;
-    struct scores s;
-    double parts[SCORES], sum = 0;
-    status made = take_scores(df1, df2, SCORES, &s, p);
-    for (int k = 0; made == OK && k < s.n; k++)
-        sum += s.weight[k] * rho_at(&s, correlation, k, parts);
+    struct columns c;
+    status made = take_columns(df1, df2, &c, p);
+    if (made == OK) *rho = mean_for_rho(&c, correlation) / (PI / 6);
     pool_back_to(p, mark);
-    *rho = sum / (PI / 6);
     return made;
 }
 
 /* log of 2 sqrt(pi) Gamma(df/2 + 1) / Gamma((df + 1)/2) */
 static double log_scale(double df)
 {
-    return log(2 * sqrt(PI)) + gsl_sf_lngamma(df / 2 + 1) - gsl_sf_lngamma((df + 1) / 2);
+    return log(2 * sqrt(PI)) + gsl_sf_lnpoch((df + 1) / 2, 0.5);
 }
 
-/* log of m = E max(Z, 0)^df */
-static double log_moment(double df)
+/* log of m_high / m_low, where m = E max(Z, 0)^df */
+static double log_moments(double low, double high)
 {
-    return (df / 2 - 1) * log(2) + gsl_sf_lngamma((df + 1) / 2) - log(PI) / 2;
+    return (high - low) / 2 * log(2) + gsl_sf_lnpoch((low + 1) / 2, (high - low) / 2);
 }
 
 /* The lower (below) or upper incomplete gamma function, regularised. */
@@ -138,27 +196,35 @@ static double gamma_part(double shape, double log_x, bool below)
 
 /* A pair in polar coordinates: Z_1 = R cos(angle), Z_2 = R cos(angle - turn). */
 struct corner_pair {
-    double turn, low, high;
+    double turn, low, high, moments;
 };
 
 /* How much the first column is ahead of the second at radius 1, in logarithms. */
 static double ahead(double cos1, double cos2, const struct corner_pair *c)
 {
-    return c->low * log(cos1) - log_moment(c->low) - c->high * log(cos2) + log_moment(c->high);
+    return c->low * log(cos1) - c->high * log(cos2) + c->moments;
 }
 
+/* At the radius where most of the mass is. */
 static double ahead_at(double angle, const void *with)
 {
     const struct corner_pair *c = with;
     double cos1 = fmax(cos(angle), 1e-300), cos2 = fmax(cos(angle - c->turn), 1e-300);
-    return fmax(-1e6, fmin(1e6, ahead(cos1, cos2, c)));
+    double there = ahead(cos1, cos2, c) - (c->high - c->low) / 2 * log(c->high + 2);
+    return fmax(-1e6, fmin(1e6, there));
+}
+
+/* The logarithm of R^2/2 at which both are level. */
+static double log_meet(double ahead, const struct corner_pair *c)
+{
+    return 2 / (c->high - c->low) * ahead - log(2);
 }
 
 static double tail_at(double angle, const struct corner_pair *c)
 {
     double cos1 = cos(angle), cos2 = cos(angle - c->turn);
     if (!(cos1 > 0 && cos2 > 0)) return 0;
-    double meet = 2 / (c->high - c->low) * ahead(cos1, cos2, c) - log(2);
+    double meet = log_meet(ahead(cos1, cos2, c), c);
     return exp(log_scale(c->high) + c->high * log(cos2)) * gamma_part(c->high / 2 + 1, meet, true)
          + exp(log_scale(c->low) + c->low * log(cos1)) * gamma_part(c->low / 2 + 1, meet, false);
 }
@@ -177,11 +243,59 @@ static double tail_between(double from, double to, const struct corner_pair *c)
 
 /* Where the df are close the integrand all but breaks where both columns are level: split there,
  * unless they are level only within rounding of an end. */
+static double tail_of_panel(double from, double to, const struct corner_pair *c)
+{
+    double level;
+    if (!(from < to)) return 0;
+    if (root_between(ahead_at, c, from, to, &level) != OK) return tail_between(from, to, c);
+    return tail_between(from, level, c) + tail_between(level, to, c);
+}
+
+/* Puts an angle in its place among those given before. */
+static void insert(double angle, double *angles, int *n)
+{
+    int k = (*n)++;
+    for (; k > 0 && angles[k - 1] > angle; k--) angles[k] = angles[k - 1];
+    angles[k] = angle;
+}
+
+/* How far the first is ahead turns where tan(angle - turn) = ratio tan(angle), which is a quadratic
+ * in the tangent: between those angles the columns are level at most once. */
+static void insert_turning_points(const struct corner_pair *c, double *angles, int *n)
+{
+    double ratio = c->low / c->high, rest = (c->high - c->low) / c->high, slant = tan(c->turn);
+    double inside = rest * rest - 4 * ratio * slant * slant;
+    if (!(inside >= 0 && slant > 0)) return;
+    double larger = rest + sqrt(inside);
+    insert(atan(2 * slant / larger), angles, n);
+    insert(atan(larger / (2 * ratio * slant)), angles, n);
+}
+
+/* The integrand is at most either term without its gamma function, and so nothing beyond REACH
+ * standard deviations 1/sqrt(df) of either peak, at 0 and at `turn`. */
+static double tail_over_angles(const struct corner_pair *c)
+{
+    enum { REACH = 9, PANELS = 2 * REACH };
+    double width = 1 / sqrt(c->high), wide = REACH / sqrt(c->low), angles[PANELS + 3], sum = 0;
+    double from = fmax(c->turn - PI / 2, -wide), to = fmin(PI / 2, wide);
+    int n = 0;
+    for (int k = 0; k <= PANELS; k++) insert(c->turn + (k - REACH) * width, angles, &n);
+    insert_turning_points(c, angles, &n);
+    for (int k = 0; k + 1 < n; k++)
+        sum += tail_of_panel(fmax(from, angles[k]), fmin(to, angles[k + 1]), c);
+    return sum / (2 * PI);
+}
+
+/* Z_1 = Z_2: the first is the smaller one beyond the point where they are level. */
+static double tail_of_one(const struct corner_pair *c)
+{
+    double meet = log_meet(c->moments, c);
+    return gamma_part((c->high + 1) / 2, meet, true) + gamma_part((c->low + 1) / 2, meet, false);
+}
+
 double tail_of_grouped(double correlation, double df1, double df2)
 {
-    struct corner_pair c = { acos(correlation), fmin(df1, df2), fmax(df1, df2) };
-    double from = c.turn - PI / 2, to = PI / 2, level;
-    if (!(from < to)) return 0;
-    if (root_between(ahead_at, &c, from, to, &level) != OK) level = to;
-    return (tail_between(from, level, &c) + tail_between(level, to, &c)) / (2 * PI);
+    double low = fmin(df1, df2), high = fmax(df1, df2);
+    struct corner_pair c = { acos(correlation), low, high, log_moments(low, high) };
+    return c.turn > 0 ? fmin(1, tail_over_angles(&c)) : tail_of_one(&c);
 }

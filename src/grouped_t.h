@@ -7,8 +7,8 @@
 #include "memory.h"
 #include "status.h"
 
-/* Kendall's tau and Spearman's rho, to 1e-9 for df from 0.5. NO_MEMORY, OUT_OF_DOMAIN as
- * student_tables(). */
+/* Kendall's tau and Spearman's rho, to 1e-10, for df > 0 up to 1e300, else OUT_OF_DOMAIN;
+ * NO_MEMORY. */
 status tau_of_grouped(double correlation, double df1, double df2, double *tau, pool *p);
 status rho_of_grouped(double correlation, double df1, double df2, double *rho, pool *p);
 

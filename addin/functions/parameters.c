@@ -343,7 +343,7 @@ const function parameters_functions[] = {
             "and ) that it does not. Tails says in which corners the unrotated copula has tail "
             "dependence; rotation 180 exchanges them.",
         .examples = {
-            { "INDEX(FAMILIES();6;2)", "theta [1;inf)" },
+            { "INDEX(FAMILIES();6;2)", "theta [1;1e+17]" },
             { "INDEX(FAMILIES();5;3)", "[-1;1)" },
         },
         .call = cell_families,

@@ -6,6 +6,8 @@
  *
  * Special cases
  *   theta = 1, tau = 0: independence. tau = 1 is not reached.
+ *   Beyond theta = 1e17 tau is 1 to rounding; far beyond, the frailty would leave the range of
+ *   doubles.
  *
  * Accuracy
  *   tau and theta to 2 units in the last place, tau and rho relative also near 0.
@@ -73,7 +75,7 @@ static double psi(double log_t, double theta)
 const family gumbel_family = {
     .word = "gumbel",
     .has_theta = true,
-    .theta_low = 1, .theta_high = HUGE_VAL, .theta_low_beyond_pairs = 1, .theta_open = 2,
+    .theta_low = 1, .theta_high = 1e17, .theta_low_beyond_pairs = 1,
     .tau_low = 0, .tau_high = 1, .tau_open = 2,
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,

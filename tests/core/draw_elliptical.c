@@ -1,6 +1,7 @@
 /* Draws of the normal and the t copula against published probabilities, and what is special to
  * matrices. */
 #include "draws.h"
+#include "matrices.h"
 
 #include "../../src/normal.h"
 #include "../../src/tau.h"
@@ -163,6 +164,51 @@ static void singular_matrices(void **state)
     free(u);
 }
 
+/* What is feasible by its eigenvalues can be drawn from, however many of them are zero to
+ * rounding. */
+static void feasible_is_drawable(void **state)
+{
+    (void)state;
+    uint64_t s = 5;
+    size_t singular = 0;
+    for (size_t i = 0; i < effort(600); i++) {
+        pool p = { 0 };
+        size_t d = 3 + random_below(&s, 45), factors = 1 + random_below(&s, d);
+        double noise = pow(10, -10 - 6 * random_uniform(&s)), u[4 * 48];
+        bool feasible, regular;
+        double *matrix = noisy_matrix(&s, d, factors, noise, &p);
+        assert_int_equal(matrix_feasible(matrix, d, 0, &feasible, &p), OK);
+        assert_int_equal(lies_above(matrix, d, 0, &regular, &p), OK);
+        singular += feasible && !regular;
+        copula c = { .family = family_named("gaussian"), .dimension = d, .matrix = matrix };
+        if (feasible) assert_int_equal(draw(&c, 1, 0, 4, u, 4, &p), OK);
+        pool_empty(&p);
+    }
+    assert_true(singular > 100);
+}
+
+/* The correlation of normal scores drawn from each pair is the matrix's, five standard errors
+ * either way, in a matrix that has no factor of its own: 30 lines of 28 factors and some noise. */
+static void drawn_from_the_singular(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    copula c = { .family = family_named("gaussian"), .dimension = 30 };
+    uint64_t s = 23;
+    c.matrix = noisy_matrix(&s, 30, 28, 5e-13, &p);
+    size_t n = effort(20000);
+    double *u = drawn(&c, 6, 0, n);
+    for (size_t i = 0; i < 30 * n; i++) u[i] = normal_quantile(u[i]);
+    for (size_t j = 0; j < 30; j++)
+        for (size_t k = 0; k < j; k++) {
+            double sum = 0, want = c.matrix[j * 30 + k];
+            for (size_t i = 0; i < n; i++) sum += u[j * n + i] * u[k * n + i];
+            assert_within(sum / (double)n, want, 5 * sqrt((1 + want * want) / (double)n));
+        }
+    free(u);
+    pool_empty(&p);
+}
+
 static void no_correlation_matrix(void **state)
 {
     (void)state;
@@ -187,6 +233,8 @@ int main(void)
         cmocka_unit_test(one_chi_square_for_all),
         cmocka_unit_test(tau_is_greiners),
         cmocka_unit_test(singular_matrices),
+        cmocka_unit_test(feasible_is_drawable),
+        cmocka_unit_test(drawn_from_the_singular),
         cmocka_unit_test(no_correlation_matrix),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

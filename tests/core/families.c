@@ -4,6 +4,7 @@
 #include "../../src/draw.h"
 #include "../../src/family.h"
 
+#include <float.h>
 #include <gsl/gsl_errno.h>
 #include <gsl/gsl_sf_debye.h>
 #include <gsl/gsl_sf_psi.h>
@@ -386,6 +387,35 @@ static void draws_have_their_tau(void **state)
     }
 }
 
+/* Uniform to the highest theta of its row: its first two moments are 1/2 and 1/3, their standard
+ * deviations sqrt(1/12) and sqrt(4/45). Every tau below 1 has its theta within the row. */
+static void uniform_at_the_highest_theta(void **state)
+{
+    (void)state;
+    for (const family *const *f = families; *f; f++) {
+        if (!(*f)->has_theta) continue;
+        copula c = { .family = *f, .dimension = 2, .theta = fmin((*f)->theta_high, DBL_MAX) };
+        pool p = { 0 };
+        size_t n = effort(20000);
+        double *u = pool_take(&p, 2 * n, sizeof *u), theta;
+        assert_int_equal(draw(&c, 12, 0, n, u, n, &p), OK);
+        for (size_t j = 0; j < 2; j++) {
+            double sum = 0, squares = 0;
+            for (size_t i = j * n; i < (j + 1) * n; i++) {
+                sum += u[i];
+                squares += u[i] * u[i];
+            }
+            double root = sqrt((double)n);
+            close_or_fail(sum / (double)n, 0.5, 4 * sqrt(1.0 / 12) / root, (*f)->word, __FILE__,
+                          __LINE__);
+            close_or_fail(squares / (double)n, 1.0 / 3, 4 * sqrt(4.0 / 45) / root, (*f)->word,
+                          __FILE__, __LINE__);
+        }
+        if ((*f)->theta_from_tau(1 - 0x1p-53, &theta) == OK) assert_true(theta <= (*f)->theta_high);
+        pool_empty(&p);
+    }
+}
+
 /* clayton at -1 is v = 1 - u; in [-1;0) all mass is where u^a + v^a >= 1, a = -theta. */
 static void support_of_negative_clayton(void **state)
 {
@@ -432,8 +462,9 @@ int main(void)
         cmocka_unit_test(words), cmocka_unit_test(published_rho),
         cmocka_unit_test(rho_by_quadrature), cmocka_unit_test(rho_of_t),
         cmocka_unit_test(rho_of_negative_clayton), cmocka_unit_test(published_tails),
-        cmocka_unit_test(draws_have_their_tau), cmocka_unit_test(support_of_negative_clayton),
-        cmocka_unit_test(laplace_transforms),
+        cmocka_unit_test(draws_have_their_tau),
+        cmocka_unit_test(uniform_at_the_highest_theta),
+        cmocka_unit_test(support_of_negative_clayton), cmocka_unit_test(laplace_transforms),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

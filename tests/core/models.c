@@ -199,11 +199,13 @@ static void numbers_that_are_wrong(void **state)
 {
     (void)state;
     refused("copula,gumbel;dimension,2;theta,0.5", OUT_OF_DOMAIN,
-            "model, row 3: theta is 0.5, but gumbel in two dimensions takes [1;inf)");
+            "model, row 3: theta is 0.5, but gumbel in two dimensions takes [1;1e+17]");
+    refused("copula,joe;dimension,2;theta,2e17", OUT_OF_DOMAIN,
+            "model, row 3: theta is 2e+17, but joe in two dimensions takes [1;1e+17]");
     refused("copula,clayton;dimension,2;theta,-1.5", OUT_OF_DOMAIN,
-            "model, row 3: theta is -1.5, but clayton in two dimensions takes [-1;inf)");
+            "model, row 3: theta is -1.5, but clayton in two dimensions takes [-1;1e+17]");
     refused("theta,-0.5;copula,clayton;dimension,3", OUT_OF_DOMAIN,
-            "model, row 1: theta is -0.5, but clayton in more than two dimensions takes [0;inf)");
+            "model, row 1: theta is -0.5, but clayton in more than two dimensions takes [0;1e+17]");
     refused("copula,frank;dimension,3;theta,-0.5", OUT_OF_DOMAIN,
             "model, row 3: theta is -0.5, but frank in more than two dimensions takes [0;inf)");
     refused("copula,gumbel;dimension,1;theta,2", OUT_OF_DOMAIN,

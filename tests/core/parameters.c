@@ -169,10 +169,10 @@ static void list_of_families(void **state)
           "none" },
         { "gaussian", "matrix", "[-1;1]", NULL, NULL, "none" },
         { "t", "matrix, df", "[-1;1]", NULL, NULL, "both" },
-        { "clayton", "theta [-1;inf), beyond pairs [0;inf)", "[-1;1)", NULL, NULL, "lower" },
-        { "gumbel", "theta [1;inf)", "[0;1)", NULL, NULL, "upper" },
+        { "clayton", "theta [-1;1e+17], beyond pairs [0;1e+17]", "[-1;1)", NULL, NULL, "lower" },
+        { "gumbel", "theta [1;1e+17]", "[0;1)", NULL, NULL, "upper" },
         { "frank", "theta (-inf;inf), beyond pairs [0;inf)", "(-1;1)", NULL, NULL, "none" },
-        { "joe", "theta [1;inf)", "[0;1)", NULL, NULL, "upper" },
+        { "joe", "theta [1;1e+17]", "[0;1)", NULL, NULL, "upper" },
     };
     struct call c = { 0 };
     assert_int_equal(call(&c, "FAMILIES", 0, NULL)->s, OK);
@@ -256,7 +256,7 @@ static void models_refused(void **state)
     refused("MODEL", 1, &word, BAD_KIND,
             "parameter is missing: gaussian needs a matrix, or one correlation for all pairs");
     refused("MODEL", 2, (value[]){ text("gumbel"), number(0.5) }, OUT_OF_DOMAIN,
-            "theta is 0.5, but gumbel in two dimensions takes [1;inf)");
+            "theta is 0.5, but gumbel in two dimensions takes [1;1e+17]");
     refused("MODEL", 2, (value[]){ text("gumbel"), cells(&p, "1,0;0,1") }, BAD_KIND,
             "parameter must be one number");
     refused("MODEL", 2, (value[]){ text("gumbel"), text("two") }, BAD_KIND,
@@ -280,7 +280,7 @@ static void models_refused(void **state)
     refused("MODEL", 5,
             (value[]){ text("clayton"), number(-0.5), nothing(), nothing(), number(3) },
             OUT_OF_DOMAIN,
-            "theta is -0.5, but clayton in more than two dimensions takes [0;inf)");
+            "theta is -0.5, but clayton in more than two dimensions takes [0;1e+17]");
     refused("MODEL", 5,
             (value[]){ word, cells(&p, "1,0.3;0.3,1"), nothing(), nothing(), number(3) }, BAD_KIND,
             "dimension is 3, but parameter is a matrix of 2 columns");

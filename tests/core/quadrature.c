@@ -14,8 +14,22 @@ static void powers(void **state)
     assert_true(fabs(integral_over(pow, 40, -1, 1) - beyond) > 1e-13);
 }
 
+/* The same rule point by point: its weights sum to the width, and x^39 is still exact. */
+static void points(void **state)
+{
+    (void)state;
+    double x[QUADRATURE_POINTS], weights[QUADRATURE_POINTS], width = 0, sum = 0;
+    quadrature_points(0.5, 2, x, weights);
+    for (int i = 0; i < QUADRATURE_POINTS; i++) {
+        width += weights[i];
+        sum += weights[i] * pow(x[i], 39);
+    }
+    assert_close(width, 1.5, 1e-15);
+    assert_close(sum, (pow(2, 40) - pow(0.5, 40)) / 40, 4e-15);
+}
+
 int main(void)
 {
-    const struct CMUnitTest tests[] = { cmocka_unit_test(powers) };
+    const struct CMUnitTest tests[] = { cmocka_unit_test(powers), cmocka_unit_test(points) };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -136,6 +136,21 @@ static void chi_square_of_many_df(void **state)
     }
 }
 
+/* At both ends of the scores: chi-square with df 2 is exponential, its quantile at Phi(z) is
+ * -2 log Phi(-z). The scores of uniforms stay inside them. */
+static void chi_square_to_the_ends(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    struct student s;
+    assert_int_equal(student_tables(&s, 2, &p), OK);
+    double low = log_chi_square(&s, -8.24), high = log_chi_square(&s, 8.24);
+    assert_close(low, log(erfc(8.24 / sqrt(2))), 1e-12);
+    assert_close(high, log(-2 * log(0.5 * erfc(8.24 / sqrt(2)))), 1e-12);
+    assert_true(normal_quantile(0x1p-53) > -8.24 && normal_quantile(1 - 0x1p-53) < 8.24);
+    pool_empty(&p);
+}
+
 /* Both tables are continuous where their segments meet, at z = 0 where the marches meet too. */
 static void segments_meet(void **state)
 {
@@ -224,6 +239,7 @@ int main(void)
         cmocka_unit_test(chi_square_is_close),
         cmocka_unit_test(chi_square_of_few_df),
         cmocka_unit_test(chi_square_of_many_df),
+        cmocka_unit_test(chi_square_to_the_ends),
         cmocka_unit_test(segments_meet),
         cmocka_unit_test(many_at_a_time),
         cmocka_unit_test(becomes_normal),
