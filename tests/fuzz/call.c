@@ -2,12 +2,12 @@
  *
  *     call [--seconds N] [--calls N]
  *
- * Arguments are made to suit their parameter most of the time (arguments.h), and are anything at all
- * otherwise; results become arguments of later calls. In some calls memory runs out at a random
+ * Arguments are made to suit their parameter most of the time (arguments.h), and are anything at
+ * all otherwise; results become arguments of later calls. In some calls memory runs out at a random
  * place. What must hold of every call: the status is one of ours; a refusal says a sentence; a
  * result is a number, text or table whose numbers are finite, gaps or faults. Built with sanitizers
- * by `make check-all`. A failure prints the number of its call; --calls with it repeats all calls up
- * to there, the same every time.
+ * by `make check-all`. A failure prints the number of its call; --calls with it repeats all calls
+ * up to there, the same every time.
  */
 #include "arguments.h"
 
