@@ -338,6 +338,7 @@ const function parameters_functions[] = {
             { .name = "df", .help = "For t the degrees of freedom.", .kind = NUMBER,
               .low = 0.1, .high = 1e6, .optional = true },
         },
+        .costly = true,
         .call = cell_thetarho,
     },
     {
