@@ -150,7 +150,7 @@ def at_once(checks, call):
     wrong = []
 
     def caller(k):
-        for _ in range(40):
+        for _ in range(100):
             for one, expected in zip(calls[k], alone[k]):
                 result = call(*one)
                 if result != expected:
