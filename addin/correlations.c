@@ -20,26 +20,36 @@ double *own_matrix(const argument *a, report *r)
     return matrix;
 }
 
-const char *defect_text(const argument *a, const double *matrix, defect found, report *r)
+const char *defect_sentence(const char *name, const double *matrix, size_t d, defect found,
+                            size_t above, size_t before, pool *p)
 {
-    size_t d = a->data.cols, i = found.row, j = found.column;
-    size_t row = i + 1 + rows_above(a), column = j + 1 + columns_before(a);
+    size_t i = found.row, j = found.column, row = i + 1 + above, column = j + 1 + before;
     double here = matrix[i * d + j];
     if (found.what == DIAGONAL_NOT_ONE)
-        return text_from(r->pool, "matrix has %g on its diagonal, in row %zu, column %zu, where 1 "
-                         "must stand", here, row, column);
+        return text_from(p, "%s has %g on its diagonal, in row %zu, column %zu, where 1 must stand",
+                         name, here, row, column);
     if (found.what == OUTSIDE_UNIT)
-        return text_from(r->pool, "matrix has %g in row %zu, column %zu, outside [-1;1]", here,
-                         row, column);
-    return text_from(r->pool, "matrix is not symmetric: %g stands in row %zu, column %zu, but %g "
-                     "in the opposite cell", here, row, column, matrix[j * d + i]);
+        return text_from(p, "%s has %g in row %zu, column %zu, outside [-1;1]", name, here, row,
+                         column);
+    return text_from(p, "%s is not symmetric: %g stands in row %zu, column %zu, but %g in the "
+                     "opposite cell", name, here, row, column, matrix[j * d + i]);
+}
+
+status status_of_defect(defect found)
+{
+    return found.what == NO_DEFECT ? OK : found.what == NOT_SYMMETRIC ? BAD_KIND : OUT_OF_DOMAIN;
+}
+
+const char *defect_text(const argument *a, const double *matrix, defect found, report *r)
+{
+    return defect_sentence(a->param->name, matrix, a->data.cols, found, rows_above(a),
+                           columns_before(a), r->pool);
 }
 
 status refuse_defect(const argument *a, const double *matrix, defect found, report *r)
 {
     const char *sentence = defect_text(a, matrix, found, r);
-    if (!sentence) return NO_MEMORY;
-    return refuse(r, found.what == NOT_SYMMETRIC ? BAD_KIND : OUT_OF_DOMAIN, "%s", sentence);
+    return sentence ? refuse(r, status_of_defect(found), "%s", sentence) : NO_MEMORY;
 }
 
 status take_correlations(const argument *a, double **matrix, report *r)
@@ -49,6 +59,7 @@ status take_correlations(const argument *a, double **matrix, report *r)
     defect found = matrix_defect(*matrix, a->data.cols);
     if (found.what != NO_DEFECT) return refuse_defect(a, *matrix, found, r);
     if (tidy_matrix(*matrix, a->data.cols))
-        remark(r, "differences of up to 1e-9 in matrix taken as rounding and removed");
+        remark(r, "differences of up to 1e-9 in %s taken as rounding and removed",
+               a->param->name);
     return OK;
 }

@@ -35,30 +35,38 @@ const char *tau_range(const family *f, pool *p)
     return range_text(f->tau_low, f->tau_high, f->tau_open, p);
 }
 
-status check_dimension(const copula *c, report *r)
+status check_columns(const family *f, double dimension, report *r)
 {
-    const family *f = c->family;
-    if (c->dimension < 2)
-        return refuse(r, OUT_OF_DOMAIN, "dimension is %zu, but must be at least 2", c->dimension);
+    if (dimension < 2)
+        return refuse(r, OUT_OF_DOMAIN, "dimension is %g, but must be at least 2", dimension);
     size_t most = f->has_matrix ? MOST_IN_MATRIX : MOST_COLUMNS;
     if (f->most_dimensions) most = f->most_dimensions;
-    if (c->dimension > most)
-        return refuse(r, OUT_OF_DOMAIN, "dimension is %zu, but %s has at most %zu", c->dimension,
+    if (dimension > (double)most)
+        return refuse(r, OUT_OF_DOMAIN, "dimension is %g, but %s has at most %zu", dimension,
                       f->word, most);
+    return OK;
+}
+
+static status check_dimension(const copula *c, report *r)
+{
+    return check_columns(c->family, (double)c->dimension, r);
+}
+
+status check_degrees(double rotation, report *r)
+{
+    if (rotation != 0 && rotation != 90 && rotation != 180 && rotation != 270)
+        return refuse(r, OUT_OF_DOMAIN, "rotation is %g, but must be 0, 90, 180 or 270", rotation);
     return OK;
 }
 
 static status check_rotation(const copula *c, report *r)
 {
-    int turns = c->rotation / 90;
-    if (c->rotation != 90 * turns || turns < 0 || turns > 3)
-        return refuse(r, OUT_OF_DOMAIN, "rotation is %d, but must be 0, 90, 180 or 270",
-                      c->rotation);
-    if (c->dimension > 2 && turns % 2)
+    status s = check_degrees(c->rotation, r);
+    if (s == OK && c->dimension > 2 && c->rotation % 180)
         return refuse(r, OUT_OF_DOMAIN,
                       "rotation is %d, but in more than two dimensions must be 0 or 180",
                       c->rotation);
-    return OK;
+    return s;
 }
 
 static status check_theta(const copula *c, report *r)
@@ -97,23 +105,13 @@ static status refuse_infeasible(const copula *c, report *r)
                   lowest);
 }
 
+/* Where a matrix that is none came from its reader knows better, and has refused it. */
 static status check_matrix(const copula *c, report *r)
 {
     if (!c->family->has_matrix) return OK;
     size_t d = c->dimension;
-    defect found = matrix_defect(c->matrix, d);
-    size_t row = found.row, column = found.column;
-    double x = c->matrix[row * d + column];
-    if (found.what == DIAGONAL_NOT_ONE)
-        return refuse(r, OUT_OF_DOMAIN,
-                      "the matrix has %g on its diagonal, in row %zu, but must have 1", x, row + 1);
-    if (found.what == OUTSIDE_UNIT)
-        return refuse(r, OUT_OF_DOMAIN, "the matrix has %g in row %zu, column %zu, outside [-1;1]",
-                      x, row + 1, column + 1);
-    if (found.what == NOT_SYMMETRIC)
-        return refuse(r, BAD_KIND,
-                      "the matrix has %g in row %zu, column %zu, but %g in the opposite cell",
-                      x, row + 1, column + 1, c->matrix[column * d + row]);
+    if (matrix_defect(c->matrix, d).what != NO_DEFECT)
+        return refuse(r, OUT_OF_DOMAIN, "the matrix is no matrix of correlations");
     bool feasible;
     status s = matrix_feasible(c->matrix, d, 0, &feasible, r->pool);
     return s != OK || feasible ? s : refuse_infeasible(c, r);

@@ -1,8 +1,8 @@
 /* models.c - reading and writing model blocks. */
 #include "models.h"
+#include "correlations.h"
 #include "read.h"
 #include "words.h"
-#include "../src/correlation.h"
 #include "../src/family.h"
 
 #include <math.h>
@@ -34,8 +34,8 @@ static bool empty_from(const table *t, size_t row, size_t col)
     return true;
 }
 
-/* Puts a known label in its place. What FIT adds has none; *under says whether rows without a label
- * may follow. */
+/* Puts a known label in its place. What a fit adds has none; *under says whether rows without a
+ * label may follow. */
 static status place_label(struct reading *b, size_t row, const char *word, enum label *under)
 {
     report *r = b->r;
@@ -103,7 +103,8 @@ static status nothing_from(const struct reading *b, size_t row, size_t col, cons
     return OK;
 }
 
-/* Nothing but the words that FIT puts beside a parameter, each with its number or an empty cell. */
+/* Nothing but the words that a fit puts beside a parameter, each with its number or an empty
+ * cell. */
 static status only_fit_from(const struct reading *b, size_t row, size_t col, const char *label)
 {
     while (col < b->t->cols) {
@@ -118,7 +119,7 @@ static status only_fit_from(const struct reading *b, size_t row, size_t col, con
     return OK;
 }
 
-/* How many cells beside a label hold something before an empty one or a word of FIT. */
+/* How many cells beside a label hold something before an empty one or a word of a fit. */
 static size_t count_beside(const struct reading *b, size_t row)
 {
     size_t col = 1;
@@ -154,13 +155,12 @@ static status read_family(const struct reading *b, copula *c)
     return nothing_from(b, row, 2, "copula");
 }
 
-/* A whole number; numbers beyond every check are left to it as something it refuses. */
 static status read_whole(const struct reading *b, enum label k, double *x)
 {
     size_t row = b->row[k] - 1;
     status s = number_in(b, row, 1, LABEL_OF[k], x);
     if (s == OK) s = nothing_from(b, row, 2, LABEL_OF[k]);
-    if (s == OK && (*x != floor(*x) || fabs(*x) > 1e9))
+    if (s == OK && *x != floor(*x))
         return refuse(b->r, OUT_OF_DOMAIN, "%s, row %zu: %s is %g, but must be a whole number",
                       b->param, row + 1, LABEL_OF[k], *x);
     return s;
@@ -173,19 +173,20 @@ static status read_dimension(const struct reading *b, copula *c)
     if (!b->row[DIMENSION]) return missing(b, DIMENSION);
     status s = read_whole(b, DIMENSION, &d);
     if (s != OK) return s;
-    if (d < 0)
-        return refuse(b->r, OUT_OF_DOMAIN, "%s, row %zu: dimension is %g, but must be at least 2",
-                      b->param, b->row[DIMENSION], d);
-    c->dimension = (size_t)d;
-    return refuse_found(b, check_dimension(c, &found), "dimension", &found);
+    s = check_columns(c->family, d, &found);
+    c->dimension = s == OK ? (size_t)d : 0;
+    return refuse_found(b, s, "dimension", &found);
 }
 
 static status read_rotation(const struct reading *b, copula *c)
 {
+    report found = { .pool = b->r->pool };
     double rotation = 0;
     status s = b->row[ROTATION] ? read_whole(b, ROTATION, &rotation) : OK;
+    if (s != OK) return s;
+    s = check_degrees(rotation, &found);
     c->rotation = s == OK ? (int)rotation : 0;
-    return s;
+    return refuse_found(b, s, "rotation", &found);
 }
 
 static status read_lines(const struct reading *b, copula *c)
@@ -230,6 +231,16 @@ static status read_df(struct reading *b, copula *c)
     return only_fit_from(b, row, 1 + n, "df");
 }
 
+/* Places are counted in the block, not in the matrix. */
+static status refuse_correlations(const struct reading *b, const double *matrix, size_t d)
+{
+    defect found = matrix_defect(matrix, d);
+    if (found.what == NO_DEFECT) return OK;
+    const char *sentence = defect_sentence(b->param, matrix, d, found, b->row[MATRIX_LABEL] - 1, 1,
+                                           b->r->pool);
+    return sentence ? refuse(b->r, status_of_defect(found), "%s", sentence) : NO_MEMORY;
+}
+
 static status read_correlations(struct reading *b, copula *c)
 {
     if (!b->row[MATRIX_LABEL]) return missing(b, MATRIX_LABEL);
@@ -248,7 +259,7 @@ static status read_correlations(struct reading *b, copula *c)
         status s = nothing_from(b, first + i, 1 + d, "the matrix");
         if (s != OK) return s;
     }
-    return OK;
+    return refuse_correlations(b, matrix, d);
 }
 
 struct part {
@@ -276,12 +287,28 @@ static status read_parameters(struct reading *b, copula *c)
     return OK;
 }
 
+/* A matrix given as a model has all that MODEL needs, and none of the labels of a block. */
+static status refuse_matrix(const struct reading *b, const value *block)
+{
+    report unused = { .pool = b->r->pool };
+    samples m;
+    bool header;
+    for (size_t row = 0; row < b->t->rows; row++)
+        if (word_at(b->t, row, 0) && word_in(LABEL_WORDS, word_at(b->t, row, 0)) >= 0) return OK;
+    status s = read_matrix(block, b->param, &m, &header, &unused);
+    if (s == NO_MEMORY) return s;
+    if (s != OK) return OK;
+    return refuse(b->r, BAD_KIND, "%s is %zu x %zu numbers without labels; JOINT.MODEL makes a "
+                  "model of them", b->param, m.rows, m.cols);
+}
+
 status read_copula(const value *block, const char *param_name, const copula **c, report *r)
 {
     struct reading b = { .param = param_name, .r = r };
-    status s = table_of(param_name, block, "a model block, as MODEL or FIT returns it", &b.t, r);
+    status s = table_of(param_name, block, "a model block, as MODEL returns it", &b.t, r);
     copula *read = pool_take_zeroed(r->pool, 1, sizeof *read);
     if (s == OK && !read) return NO_MEMORY;
+    if (s == OK) s = refuse_matrix(&b, block);
     if (s == OK) s = find_labels(&b);
     if (s == OK) s = read_family(&b, read);
     if (s == OK) s = read_dimension(&b, read);

@@ -9,7 +9,7 @@
  *                0.2    0.1    1
  *
  * One-parameter families have theta instead of df and matrix; rotation is 0 where it is missing.
- * Beside theta and df FIT adds the words error, low, high, each with its number to its right.
+ * Beside theta and df a fit may add the words error, low, high, each with its number to its right.
  */
 #ifndef MODELS_H
 #define MODELS_H
@@ -18,9 +18,9 @@
 #include "../src/copula.h"
 
 /* Reads a block and checks everything in it, so that what comes out can be computed with. Labels
- * may stand in any order; what FIT adds is skipped; any other unknown label, a label missing or
- * twice, or an inadmissible value is refused with a sentence that names the parameter, the row and
- * the label. The copula lives in the report's pool. */
+ * may stand in any order; what a fit may add is skipped; any other unknown label, a label missing
+ * or twice, or an inadmissible value is refused with a sentence that names the parameter, the row
+ * of the block and the label. The copula lives in the report's pool. */
 status read_copula(const value *block, const char *param_name, const copula **c, report *r);
 
 /* Refuses a copula that is none: theta outside the family's range for this dimension, a dimension
@@ -29,8 +29,10 @@ status read_copula(const value *block, const char *param_name, const copula **c,
  * label of what is wrong in *label unless that is NULL. */
 status check_copula(const copula *c, const char **label, report *r);
 
-/* The first of these checks alone, before anything as long as the dimension is read. */
-status check_dimension(const copula *c, report *r);
+/* Two of these checks alone, of numbers as large as they come: of the dimension before anything as
+ * long is read, and of the rotation. */
+status check_columns(const family *f, double dimension, report *r);
+status check_degrees(double rotation, report *r);
 
 /* The block of a copula. */
 status write_copula(const copula *c, value *out, report *r);

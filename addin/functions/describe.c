@@ -9,6 +9,33 @@
 
 typedef status measure(const copula *c, size_t i, size_t j, const void *with, double *x, pool *p);
 
+enum { REMEMBERED = 16 };
+
+/* Figures of the last pairs that differ, since many pairs of a matrix are often alike and a rho of
+ * a t copula takes its time. */
+struct memo {
+    size_t kept, next;
+    struct pair {
+        double correlation, df1, df2, x;
+        status s;
+    } of[REMEMBERED];
+};
+
+static status remembered(struct memo *m, const copula *c, size_t i, size_t j, measure *of,
+                         const void *with, double *x, pool *p)
+{
+    struct pair one = { .correlation = c->matrix[i * c->dimension + j],
+                        .df1 = c->df ? c->df[i] : 0, .df2 = c->df ? c->df[j] : 0 };
+    for (const struct pair *k = m->of; k < m->of + m->kept; k++)
+        if (k->correlation == one.correlation && k->df1 == one.df1 && k->df2 == one.df2)
+            return *x = k->x, k->s;
+    one.s = of(c, i, j, with, &one.x, p);
+    m->of[m->next] = one;
+    m->next = (m->next + 1) % REMEMBERED;
+    if (m->kept < REMEMBERED) m->kept++;
+    return *x = one.x, one.s;
+}
+
 /* A number where one describes all pairs, else the matrix of them. */
 static status each_pair(const copula *c, measure *of, const void *with, value *out, report *r)
 {
@@ -18,11 +45,12 @@ static status each_pair(const copula *c, measure *of, const void *with, value *o
         status s = of(c, 0, 1, with, &x, r->pool);
         return s == OK ? answer(out, x) : s;
     }
+    struct memo m = { 0 };
     status s = new_table(r, d, d, out);
     for (size_t i = 0; s == OK && i < d; i++) {
         put_number(out, i, i, 1);
         for (size_t j = 0; j < i; j++) {
-            status one = of(c, i, j, with, &x, r->pool);
+            status one = remembered(&m, c, i, j, of, with, &x, r->pool);
             if (one == NO_MEMORY) return one;
             put_number(out, i, j, one == OK ? x : fault(one));
             put_number(out, j, i, one == OK ? x : fault(one));
@@ -66,7 +94,7 @@ static status cell_tailof(const argument *in, value *out, report *r)
     return each_pair(in[0].model, pair_tail, &corner, out, r);
 }
 
-/* Words that stand between a value and what FIT adds to it. */
+/* Words that stand between a value and what a fit adds to it. */
 static bool ends_value(const table *t, size_t row, size_t col)
 {
     const char *word = word_at(t, row, col);
@@ -112,15 +140,55 @@ static status copy_part(const table *t, const struct part *p, value *out, report
     return s;
 }
 
-/* Where a named column stands: right of the name in the label's own row, or below it in the first
- * row; 0 where there is none. */
-static size_t column_named(const table *t, size_t row, const char *name)
+static bool is_blank(char c)
 {
+    return c == ' ' || c == '\t' || c == '\n' || c == '\r';
+}
+
+static char lower(char c)
+{
+    return c >= 'A' && c <= 'Z' ? (char)(c + 32) : c;
+}
+
+/* Whether tidy_words() makes this of a text. */
+static bool tidies_to(const char *s, const char *tidy)
+{
+    while (is_blank(*s)) s++;
+    for (; *tidy; tidy++) {
+        if (*tidy != ' ' && lower(*s++) != *tidy) return false;
+        if (*tidy == ' ' && !is_blank(*s)) return false;
+        while (*tidy == ' ' && is_blank(*s)) s++;
+    }
+    while (is_blank(*s)) s++;
+    return !*s;
+}
+
+static bool holds(const table *t, size_t row, size_t col, const char *tidy)
+{
+    return word_at(t, row, col) && tidies_to(word_at(t, row, col), tidy);
+}
+
+/* How often a name stands in a row, and where first. */
+static size_t count_named(const table *t, size_t row, const char *name, size_t *first)
+{
+    size_t count = 0;
     for (size_t col = 1; col < t->cols; col++)
-        if (word_at(t, row, col) && same_word(word_at(t, row, col), name)) return col + 1;
-    for (size_t col = 1; col < t->cols; col++)
-        if (word_at(t, 0, col) && same_word(word_at(t, 0, col), name)) return col;
-    return 0;
+        if (holds(t, row, col, name) && !count++) *first = col;
+    return count;
+}
+
+/* Where a named column stands: right of the name in the label's own row, or below it in the first
+ * row. */
+static status column_named(const table *t, size_t row, const char *name, size_t *col, report *r)
+{
+    size_t beside = count_named(t, row, name, col), where = beside ? row : 0;
+    size_t count = beside ? beside : count_named(t, 0, name, col);
+    if (!count) return refuse(r, BAD_KIND, "block has no column \"%s\"", name);
+    if (count > 1)
+        return refuse(r, BAD_KIND, "block has \"%s\" %zu times in row %zu; a number as column "
+                      "picks one", name, count, where + 1);
+    *col += beside > 0;
+    return OK;
 }
 
 /* One cell beside the label, by its number counted from the label or by its name. */
@@ -129,8 +197,9 @@ static status read_cell(const table *t, size_t row, const argument *column, valu
     value one = single_of(column->raw);
     size_t col = 0;
     if (one.is == IS_TEXT) {
-        col = column_named(t, row, one.text);
-        if (!col) return refuse(r, BAD_KIND, "block has no column \"%s\"", one.text);
+        const char *name = tidy_words(r->pool, one.text);
+        status s = name ? column_named(t, row, name, &col, r) : NO_MEMORY;
+        if (s != OK) return s;
     } else if (one.is == IS_NUMBER && fault_in(one.number) == OK) {
         double most = (double)t->cols - 1;
         if (!(one.number >= 1 && one.number <= most && one.number == floor(one.number)))
@@ -150,8 +219,7 @@ static status cell_read(const argument *in, value *out, report *r)
     status s = table_of("block", in[0].raw, "a block with labels in its first column", &t, r);
     if (s != OK) return s;
     size_t row = 0;
-    while (row < t->rows && !(word_at(t, row, 0) && same_word(word_at(t, row, 0), in[1].text)))
-        row++;
+    while (row < t->rows && !holds(t, row, 0, in[1].text)) row++;
     if (row == t->rows) return refuse(r, BAD_KIND, "block has no label \"%s\"", in[1].text);
     if (in[2].given) return read_cell(t, row, &in[2], out, r);
     struct part p = part_beside(t, row);
@@ -177,9 +245,10 @@ const function describe_functions[] = {
             { "TAUOF(MODEL(\"t\";0.5;4;0;3))", "1" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
         },
+        .costly = true,
         .call = cell_tauof,
     },
     {
@@ -194,11 +263,11 @@ const function describe_functions[] = {
             { "RHOOF(MODEL(\"clayton\";-0.5))", "-0.466666666666667" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
         },
-        .call = cell_rhoof,
         .costly = true,
+        .call = cell_rhoof,
     },
     {
         .name = "tailOf",
@@ -213,7 +282,7 @@ const function describe_functions[] = {
             { "TAILOF(MODEL(\"gaussian\";0.9);\"upper\")", "0" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
             { .name = "corner", .help = "lower or upper.", .kind = WORD, .words = "lower upper" },
         },
@@ -225,11 +294,12 @@ const function describe_functions[] = {
         .help = "The value, row or matrix beside a label of a block.",
         .detail =
             "Works for every block with labels in its first column. Without a column the result is "
-            "all that stands beside the label, down to the next label; what FIT adds beside a "
-            "parameter is left out. A column is a number, counted from the label, or a name: the "
-            "cell to the right of that name in the label's row, or else the cell of the label's "
-            "row below that name in the first row. Of two rows with the same label the first is "
-            "taken.",
+            "all that stands beside the label, down to the next label; the words error, low and "
+            "high behind a value and what follows them are left out. A column is a number, counted "
+            "from the label, or a name: the cell to the right of that name in the label's row, or "
+            "else the cell of the label's row below that name in the first row. A name that stands "
+            "there more than once is #VALUE!; a number picks one. Of two rows with the same label "
+            "the first is taken. Case and blanks around and between words do not matter.",
         .examples = {
             { "READ(MODEL(\"gumbel\";2);\"theta\")", "2" },
             { "READ(MODEL(\"t\";0.3;4);\"matrix\";2)", "0.3" },

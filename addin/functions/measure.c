@@ -2,6 +2,7 @@
 #include "../function.h"
 #include "../measures.h"
 #include "../shape.h"
+#include "../words.h"
 #include "../../src/ranks.h"
 #include "../../src/tau.h"
 #include "../../src/tau_grid.h"
@@ -179,6 +180,24 @@ static status cell_taugrid(const argument *in, value *out, report *r)
 
 enum { RANKED, TIES, SEED };
 
+static size_t observed(const samples *s)
+{
+    size_t n = 0;
+    for (size_t i = 0; i < s->rows * s->cols; i++) n += !is_gap(s->at[i]);
+    return n;
+}
+
+/* Every column has its own rows; where no cell is empty they are the same. */
+static void remark_ranked(const argument *a, report *r)
+{
+    size_t n = observed(&a->data), all = a->filled * a->data.cols;
+    if (a->data.cols == 1 || n == all)
+        remark_rows(n / a->data.cols, a->filled, "gaps", r);
+    else
+        remark(r, "%zu row%s of data, each column with those that it has; %zu gap%s not ranked",
+               a->filled, plural(a->filled), all - n, plural(all - n));
+}
+
 static status cell_ranks(const argument *in, value *out, report *r)
 {
     const samples *s = &in[RANKED].data;
@@ -187,9 +206,11 @@ static status cell_ranks(const argument *in, value *out, report *r)
     samples ranks = *s;
     ranks.at = pool_take(r->pool, s->rows * s->cols, sizeof *ranks.at);
     if (!ranks.at) return NO_MEMORY;
-    status made = scaled_ranks(s, (tie_rule)in[TIES].word, (uint64_t)in[SEED].number, ranks.at,
-                               r->pool);
-    return made == OK ? table_like(&in[RANKED], &ranks, out, r) : made;
+    uint64_t seed = in[SEED].given ? (uint64_t)in[SEED].number : 0;
+    status made = scaled_ranks(s, (tie_rule)in[TIES].word, seed, ranks.at, r->pool);
+    if (made != OK) return made;
+    remark_ranked(&in[RANKED], r);
+    return table_like(&in[RANKED], &ranks, out, r);
 }
 
 static const char GROUP[] = "Measure dependence in data";
@@ -202,8 +223,9 @@ const function measure_functions[] = {
         .detail =
             "n is the number of observations in the column; gaps stay empty and are not ranked. "
             "A header row stays. Scaled ranks with average ties are the pseudo-observations from "
-            "which copulas are fitted (Genest, Ghoudi & Rivest 1995). Ties get the average "
-            "of the ranks they share, the lowest, the highest, or these ranks in an order that the seed draws, for each column anew.",
+            "which copulas are fitted (Genest, Ghoudi & Rivest 1995). Ties get the average of the "
+            "ranks they share, the lowest, the highest, or these ranks in an order that the seed "
+            "draws, for each column anew.",
         .examples = {
             { "RANKS({30|10|20})", "0.75" },
             { "RANKS({5|5|9})", "0.375" },
@@ -215,7 +237,8 @@ const function measure_functions[] = {
             { .name = "ties", .help = "What tied observations get: average, low, high or random.",
               .kind = WORD, .words = "average low high random", .optional = true },
             { .name = "seed", .help = "For random ties: a whole number from 0.",
-              .kind = WHOLE, .low = 0, .high = 9007199254740992, .optional = true },
+              .kind = WHOLE, .low = 0, .high = 9007199254740992, .optional = true,
+              .otherwise = NAN },
         },
         .call = cell_ranks,
     },

@@ -1,14 +1,15 @@
 /* parameters.c - from measured dependence to the parameters of a model. */
 #include "../function.h"
+#include "../correlations.h"
 #include "../models.h"
 #include "../read.h"
 #include "../../src/copulas/elliptical.h"
-#include "../../src/correlation.h"
 #include "../../src/family.h"
 #include "../../src/pair_measures.h"
 #include "../../src/spearman_inverse.h"
 
 #include <math.h>
+#include <string.h>
 
 static status theta_of_tau(double tau, const void *family_of, double *theta)
 {
@@ -177,8 +178,13 @@ static status single_number(const value *one, double *x, report *r)
 /* One correlation for all pairs. */
 static status spread_correlation(const value *one, double *matrix, size_t d, report *r)
 {
+    const double ROUNDING = 1e-9;        /* as matrix_defect() has it */
     double correlation = 0;
     status s = single_number(one, &correlation, r);
+    if (s == OK && fabs(correlation) > 1 + ROUNDING)
+        return refuse(r, OUT_OF_DOMAIN, "parameter is %g, but a correlation is from -1 to 1",
+                      correlation);
+    correlation = fmax(-1, fmin(1, correlation));
     for (size_t i = 0; i < d; i++)
         for (size_t j = 0; j < d; j++) matrix[i * d + j] = i == j ? 1 : correlation;
     return s;
@@ -187,19 +193,17 @@ static status spread_correlation(const value *one, double *matrix, size_t d, rep
 /* A matrix with its names. It says the dimension; where that is given as well, it must agree. */
 static status take_matrix(const argument *in, copula *c, double **matrix, report *r)
 {
-    samples m;
-    bool header;
-    status s = read_matrix(in[PARAMETER].raw, "parameter", &m, &header, r);
+    argument a = in[PARAMETER];
+    status s = read_matrix(a.raw, "parameter", &a.data, &a.header, r);
+    samples m = a.data;
     if (s != OK) return s;
     if (in[DIMENSION].given && c->dimension != m.cols)
         return refuse(r, BAD_KIND, "dimension is %zu, but parameter is a matrix of %zu columns",
                       c->dimension, m.cols);
-    if (header) remark(r, "header of parameter skipped");
+    if (a.header) remark(r, "header of parameter skipped");
     c->dimension = m.cols;
     c->lines = m.names;
-    if (matrix_defect(m.at, m.cols).what == NO_DEFECT) tidy_matrix(m.at, m.cols);
-    *matrix = m.at;
-    return OK;
+    return take_correlations(&a, matrix, r);
 }
 
 static status take_parameter(const argument *in, copula *c, report *r)
@@ -218,7 +222,7 @@ static status take_parameter(const argument *in, copula *c, report *r)
     status s = OK;
     if (one.is == IS_TABLE) {
         s = take_matrix(in, c, &matrix, r);
-    } else if ((s = check_dimension(c, r)) == OK) {
+    } else if ((s = check_columns(f, (double)c->dimension, r)) == OK) {
         matrix = pool_take(r->pool, c->dimension, c->dimension * sizeof *matrix);
         s = matrix ? spread_correlation(&one, matrix, c->dimension, r) : NO_MEMORY;
     }
@@ -226,14 +230,22 @@ static status take_parameter(const argument *in, copula *c, report *r)
     return s;
 }
 
+/* Zero degrees of freedom, as a blank cell gives them, are none. */
+static bool no_df(const argument *a)
+{
+    return !a->given || (single_of(a->raw).is == IS_NUMBER && a->number == 0);
+}
+
 /* One number of degrees of freedom for all columns, or one for each. */
 static status take_df(const argument *a, copula *c, report *r)
 {
     const family *f = c->family;
-    if (!f->has_df && a->given)
+    if (!f->has_df && !no_df(a))
         return refuse(r, BAD_KIND, "df is given, but %s has no degrees of freedom", f->word);
     if (!f->has_df) return OK;
     if (!a->given) return refuse(r, BAD_KIND, "df is missing: %s needs it", f->word);
+    if (no_df(a))
+        return refuse(r, OUT_OF_DOMAIN, "df is 0, but must be above 0 (a blank cell counts as 0)");
     size_t n = a->data.rows * a->data.cols;
     if (n != 1 && n != c->dimension)
         return refuse(r, BAD_KIND, "df has %zu values, but must have 1 or %zu, one a column", n,
@@ -248,6 +260,18 @@ static status take_df(const argument *a, copula *c, report *r)
     return OK;
 }
 
+/* What a check found, in words of the arguments where it is about the matrix. */
+static status refuse_model(const argument *in, const copula *c, status s, const char *label,
+                           const report *found, report *r)
+{
+    if (s == OK || s == NO_MEMORY || !*found->why) return s;
+    if (strcmp(label, "matrix")) return refuse(r, s, "%s", found->why);
+    value one = single_of(in[PARAMETER].raw);
+    if (one.is != IS_NUMBER) return refuse(r, s, "parameter: %s", found->why);
+    return refuse(r, s, "parameter is %g, but one correlation for %zu lines must be at least %g "
+                  "(-1/(d - 1))", one.number, c->dimension, -1 / ((double)c->dimension - 1));
+}
+
 static status cell_model(const argument *in, value *out, report *r)
 {
     copula c = { .family = families[in[FAMILY].word],
@@ -255,8 +279,11 @@ static status cell_model(const argument *in, value *out, report *r)
                  .rotation = (int)in[ROTATION].number };
     status s = take_parameter(in, &c, r);
     if (s == OK) s = take_df(&in[FREEDOM], &c, r);
-    if (s == OK) s = check_copula(&c, NULL, r);
-    return s == OK ? write_copula(&c, out, r) : s;
+    if (s != OK) return s;
+    const char *label = "";
+    report found = { .pool = r->pool };
+    s = check_copula(&c, &label, &found);
+    return s == OK ? write_copula(&c, out, r) : refuse_model(in, &c, s, label, &found, r);
 }
 
 static const char GROUP[] = "Turn it into parameters";
@@ -311,6 +338,7 @@ const function parameters_functions[] = {
             { .name = "df", .help = "For t the degrees of freedom.", .kind = NUMBER,
               .low = 0.1, .high = 1e6, .optional = true },
         },
+        .costly = true,
         .call = cell_thetarho,
     },
     {
@@ -410,8 +438,9 @@ const function parameters_functions[] = {
               .help = "theta; for gaussian and t a matrix, or one correlation for all pairs.",
               .kind = RAW, .optional = true },
             { .name = "df",
-              .help = "For t the degrees of freedom, one number or one for each column.",
-              .kind = NUMBERS, .low = 0, .high = 1e9, .open = LOW_OPEN, .optional = true },
+              .help = "For t the degrees of freedom above 0, one number or one for each column; "
+                      "for other families 0 counts as left out.",
+              .kind = NUMBERS, .low = 0, .high = 1e9, .optional = true },
             { .name = "rotation", .help = "0, 90, 180 or 270 degrees.", .kind = WHOLE,
               .low = 0, .high = 270, .optional = true, .otherwise = 0 },
             { .name = "dimension",

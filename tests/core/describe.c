@@ -105,6 +105,87 @@ static void reading(void **state)
     call(&c, "READ", 2, (value[]){ priced, text("mean") });
     assert_int_equal(c.out.table.cols, 4);
     assert_same(c.out.table.at[3], 0.5);
+    value named = cells(&c.pool, "figure,motor  own,error,all,error; Mean motor   own ,10,1,4,0.5");
+    assert_same(number_of(&c, "READ", 3, (value[]){ named, text("mean motor  own"), number(1) }),
+                10);
+    assert_same(number_of(&c, "READ", 3, (value[]){ named, text(" mean  Motor own"),
+                                                    text("Motor own ") }), 10);
+    pool_empty(&c.pool);
+}
+
+/* PRICE has an error beside each of its figures. */
+static void ambiguous_columns(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    value priced = cells(&c.pool, "figure,gross,error,ceded,error;mean,10,1,4,0.5;sd,7,2,3,0.2");
+    call(&c, "READ", 3, (value[]){ priced, text("mean"), text("error") });
+    assert_int_equal(c.s, BAD_KIND);
+    assert_string_equal(c.report.why,
+                        "block has \"error\" 2 times in row 1; a number as column picks one");
+    value fitted = cells(&c.pool, "theta,2,error,0.1,error,0.2");
+    call(&c, "READ", 3, (value[]){ fitted, text("theta"), text("error") });
+    assert_int_equal(c.s, BAD_KIND);
+    call(&c, "READ", 3, (value[]){ priced, text("mean"), text("mea n") });
+    assert_string_equal(c.report.why, "block has no column \"mea n\"");
+    call(&c, "READ", 2, (value[]){ priced, text("me") });
+    assert_string_equal(c.report.why, "block has no label \"me\"");
+    pool_empty(&c.pool);
+}
+
+/* Equal pairs are computed once: 600 lines with one correlation or a few are 179,700 pairs, and a
+ * rho of t takes long enough for them to take minutes. */
+static void equal_pairs(void **state)
+{
+    (void)state;
+    enum { LINES = 600 };
+    static const double of_blocks[] = { 0.1, 0.2, 0.3 };
+    struct call c = { 0 };
+    report r = { .pool = &c.pool };
+    value matrix;
+    assert_int_equal(new_table(&r, LINES, LINES, &matrix), OK);
+    for (size_t i = 0; i < LINES; i++)
+        for (size_t j = 0; j < LINES; j++)
+            put_number(&matrix, i, j, i == j ? 1 : i % 3 == j % 3 ? 0.5 : of_blocks[(i + j) % 3]);
+    value t = model(&c, 3, (value[]){ text("t"), matrix, number(4) });
+    assert_int_equal(call(&c, "RHOOF", 1, &t)->s, OK);
+    value all = c.out;
+    for (size_t i = 1; i < 7; i++) {
+        double correlation = matrix.table.at[i * LINES];
+        value pair = model(&c, 3, (value[]){ text("t"), number(correlation), number(4) });
+        assert_same(number_of(&c, "RHOOF", 1, &pair), all.table.at[i * LINES]);
+        assert_same(all.table.at[i], all.table.at[i * LINES]);
+    }
+    pool_empty(&c.pool);
+}
+
+/* More different pairs than are remembered: each equals its own pair's, grouped df in order. */
+static void different_pairs(void **state)
+{
+    (void)state;
+    enum { LINES = 9 };
+    struct call c = { 0 };
+    report r = { .pool = &c.pool };
+    value matrix, df;
+    assert_int_equal(new_table(&r, LINES, LINES, &matrix), OK);
+    assert_int_equal(new_table(&r, LINES, 1, &df), OK);
+    for (size_t i = 0; i < LINES; i++) {
+        put_number(&df, i, 0, 3 + (double)(i % 2));
+        for (size_t j = 0; j < LINES; j++)
+            put_number(&matrix, i, j, i == j ? 1 : 0.01 * (double)((i + j) % 12));
+    }
+    value t = model(&c, 3, (value[]){ text("t"), matrix, df });
+    assert_int_equal(call(&c, "TAUOF", 1, &t)->s, OK);
+    value all = c.out;
+    for (size_t i = 0; i < LINES; i++)
+        for (size_t j = 0; j < i; j++) {
+            value two = cells(&c.pool, "1,0;0,1"), both = cells(&c.pool, "1;1");
+            two.table.at[1] = two.table.at[2] = matrix.table.at[i * LINES + j];
+            both.table.at[0] = df.table.at[i];
+            both.table.at[1] = df.table.at[j];
+            value pair = model(&c, 3, (value[]){ text("t"), two, both });
+            assert_same(number_of(&c, "TAUOF", 1, &pair), all.table.at[i * LINES + j]);
+        }
     pool_empty(&c.pool);
 }
 
@@ -130,7 +211,8 @@ int main(void)
     gsl_set_error_handler_off();                             /* as the add-in does at load */
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(numbers), cmocka_unit_test(matrices), cmocka_unit_test(reading),
-        cmocka_unit_test(reading_refused),
+        cmocka_unit_test(reading_refused), cmocka_unit_test(ambiguous_columns),
+        cmocka_unit_test(equal_pairs), cmocka_unit_test(different_pairs),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

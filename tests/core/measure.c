@@ -126,6 +126,12 @@ static void ranks(void **state)
     assert_same(at(&u, 2, 0), 0.25);
     assert_true(marks_gap(at(&u, 4, 0)));
     assert_same(at(&u, 1, 1), 0.625);
+    assert_non_null(strstr(r.facts, "4 rows of data, each column with those that it has; "
+                                    "2 gaps not ranked"));
+    CALL("ranks", OK, cells(&p, "motor; 30; ; 20; "));
+    assert_non_null(strstr(r.facts, "2 rows used, 1 dropped for gaps"));
+    CALL("ranks", OK, cells(&p, "3, 1; 4, 2; , "));
+    assert_string_equal(r.facts, "2 rows used, none dropped");
     u = CALL("ranks", OK, data, text("High"));
     assert_same(at(&u, 3, 1), 0.75);
     u = CALL("ranks", OK, data, text("random"), number(5));
@@ -136,6 +142,24 @@ static void ranks(void **state)
     assert_int_equal(u.table.cols, 3);
     assert_same(at(&u, 0, 0), 0.5);
     pool_empty(&p);
+}
+
+/* The reference calls a seed what it is if left out, unless the default is no number. */
+static void random_ties_have_no_seed(void **state)
+{
+    (void)state;
+    const param *seed = &function_named("ranks")->params[2];
+    assert_string_equal(seed->name, "seed");
+    assert_true(isnan(seed->otherwise));
+}
+
+/* Functions that take seconds over a range are kept in the cache. */
+static void costly_functions(void **state)
+{
+    (void)state;
+    const char *const names[] = { "thetaRho", "tauOf", "rhoOf", "tauGrid" };
+    for (size_t i = 0; i < sizeof names / sizeof *names; i++)
+        assert_true(function_named(names[i])->costly);
 }
 
 static void memory(void **state)
@@ -158,6 +182,7 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(tau), cmocka_unit_test(grid), cmocka_unit_test(errors_and_limits),
         cmocka_unit_test(ranks), cmocka_unit_test(memory),
+        cmocka_unit_test(random_ties_have_no_seed), cmocka_unit_test(costly_functions),
     };
     return cmocka_run_group_tests_name("measure", tests, NULL, NULL);
 }

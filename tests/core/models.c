@@ -216,6 +216,16 @@ static void numbers_that_are_wrong(void **state)
             "model, row 2: dimension is 2.5, but must be a whole number");
     refused("copula,gumbel;dimension,20000;theta,2", OUT_OF_DOMAIN,
             "model, row 2: dimension is 20000, but gumbel has at most 16384");
+    refused("copula,gumbel;dimension,2000000000;theta,2", OUT_OF_DOMAIN,
+            "model, row 2: dimension is 2000000000, but gumbel has at most 16384");
+    refused("copula,gumbel;dimension,-1e300;theta,2", OUT_OF_DOMAIN,
+            "model, row 2: dimension is -1e+300, but must be at least 2");
+    refused("copula,gumbel;dimension,2;theta,2;rotation,2000000000", OUT_OF_DOMAIN,
+            "model, row 4: rotation is 2000000000, but must be 0, 90, 180 or 270");
+    refused("copula,gumbel;dimension,2;theta,2;rotation,-90", OUT_OF_DOMAIN,
+            "model, row 4: rotation is -90, but must be 0, 90, 180 or 270");
+    refused("copula,gumbel;dimension,2;theta,2;rotation,0.5", OUT_OF_DOMAIN,
+            "model, row 4: rotation is 0.5, but must be a whole number");
     refused("copula,gumbel;dimension,2;theta,2;rotation,45", OUT_OF_DOMAIN,
             "model, row 4: rotation is 45, but must be 0, 90, 180 or 270");
     refused("copula,gumbel;dimension,2;theta,2;rotation,360", OUT_OF_DOMAIN,
@@ -232,11 +242,11 @@ static void matrices_that_are_wrong(void **state)
 {
     (void)state;
     refused("copula,gaussian,;dimension,2,;matrix,1,1.2;,1.2,1", OUT_OF_DOMAIN,
-            "model, row 3: the matrix has 1.2 in row 1, column 2, outside [-1;1]");
+            "model has 1.2 in row 3, column 3, outside [-1;1]");
     refused("copula,gaussian,;dimension,2,;matrix,1,0.2;,0.3,1", BAD_KIND,
-            "model, row 3: the matrix has 0.2 in row 1, column 2, but 0.3 in the opposite cell");
+            "model is not symmetric: 0.2 stands in row 3, column 3, but 0.3 in the opposite cell");
     refused("copula,gaussian,;dimension,2,;matrix,1,0.2;,0.2,2", OUT_OF_DOMAIN,
-            "model, row 3: the matrix has 2 on its diagonal, in row 2, but must have 1");
+            "model has 2 on its diagonal, in row 4, column 3, where 1 must stand");
     /* eigenvalues of the equicorrelation matrix: 1 - r and 1 + (d - 1) r */
     refused("copula,gaussian,,;dimension,3,,;matrix,1,-0.6,-0.6;,-0.6,1,-0.6;,-0.6,-0.6,1",
             OUT_OF_DOMAIN,
@@ -257,9 +267,13 @@ static void what_is_no_block(void **state)
     value v = { .is = IS_TEXT, .text = "gumbel" };
     assert_int_equal(read_copula(&v, "model", &c, &r), BAD_KIND);
     assert_string_equal(r.why, "model is the text \"gumbel\", but must be a model block, as MODEL "
-                               "or FIT returns it");
+                               "returns it");
     refused("copula;dimension", BAD_KIND, "model has no word beside copula, in row 1");
     refused(",;,", BAD_KIND, "model has no row with the label copula");
+    refused("1,0.3;0.3,1", BAD_KIND,
+            "model is 2 x 2 numbers without labels; JOINT.MODEL makes a model of them");
+    refused(",motor,cargo;motor,1,0.3;cargo,0.3,1", BAD_KIND,
+            "model is 2 x 2 numbers without labels; JOINT.MODEL makes a model of them");
     pool_empty(&p);
 }
 

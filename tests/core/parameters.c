@@ -285,9 +285,47 @@ static void models_refused(void **state)
             (value[]){ word, cells(&p, "1,0.3;0.3,1"), nothing(), nothing(), number(3) }, BAD_KIND,
             "dimension is 3, but parameter is a matrix of 2 columns");
     refused("MODEL", 5, (value[]){ word, number(-0.6), nothing(), nothing(), number(3) },
-            OUT_OF_DOMAIN, "the matrix is not feasible, its lowest eigenvalue is -0.2 "
+            OUT_OF_DOMAIN, "parameter is -0.6, but one correlation for 3 lines must be at least "
+                           "-0.5 (-1/(d - 1))");
+    refused("MODEL", 2, (value[]){ word, number(1.5) }, OUT_OF_DOMAIN,
+            "parameter is 1.5, but a correlation is from -1 to 1");
+    pool_empty(&p);
+}
+
+/* Rows and columns as they stand in the range, header and name column included. */
+static void matrices_refused(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    value word = text("gaussian");
+    refused("MODEL", 2, (value[]){ word, cells(&p, "a,b;1,0.3;0.3,1.2") }, OUT_OF_DOMAIN,
+            "parameter has 1.2 on its diagonal, in row 3, column 2, where 1 must stand");
+    refused("MODEL", 2, (value[]){ word, cells(&p, ",a,b;a,1,1.3;b,1.3,1") }, OUT_OF_DOMAIN,
+            "parameter has 1.3 in row 2, column 3, outside [-1;1]");
+    refused("MODEL", 2, (value[]){ word, cells(&p, "a,1,0.3;b,0.4,1") }, BAD_KIND,
+            "parameter is not symmetric: 0.3 stands in row 1, column 3, but 0.4 in the opposite "
+            "cell");
+    refused("MODEL", 2, (value[]){ word, cells(&p, "1,-0.6,-0.6;-0.6,1,-0.6;-0.6,-0.6,1") },
+            OUT_OF_DOMAIN, "parameter: the matrix is not feasible, its lowest eigenvalue is -0.2 "
                            "(JOINT.REPAIR gives the nearest matrix that is)");
     pool_empty(&p);
+}
+
+/* A blank cell reaches a function as 0. */
+static void df_of_a_blank_cell(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    const copula *m = model_of(&c, 3, (value[]){ text("gumbel"), number(2), number(0) });
+    assert_same(m->theta, 2);
+    model_of(&c, 3, (value[]){ text("gaussian"), number(0.5), cells(&c.pool, "0") });
+    refused("MODEL", 3, (value[]){ text("t"), number(0.5), number(0) }, OUT_OF_DOMAIN,
+            "df is 0, but must be above 0 (a blank cell counts as 0)");
+    refused("MODEL", 3, (value[]){ text("t"), number(0.5), cells(&c.pool, "4;0") }, OUT_OF_DOMAIN,
+            "df is 0, but must be above 0 and at most 1000000000");
+    refused("MODEL", 3, (value[]){ text("gumbel"), number(2), number(4) }, BAD_KIND,
+            "df is given, but gumbel has no degrees of freedom");
+    pool_empty(&c.pool);
 }
 
 static void every_take_can_fail(void **state)
@@ -314,6 +352,7 @@ int main(void)
         cmocka_unit_test(list_of_families), cmocka_unit_test(negative_theta),
         cmocka_unit_test(greiner), cmocka_unit_test(models),
         cmocka_unit_test(layout), cmocka_unit_test(models_refused),
+        cmocka_unit_test(matrices_refused), cmocka_unit_test(df_of_a_blank_cell),
         cmocka_unit_test(every_take_can_fail),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -3,6 +3,76 @@
 
 #include "../../src/tail_dependence.h"
 
+/* As defined: the rows whose mid-ranks are beyond the edge in both columns. Mid-ranks by counting
+ * the values below and the ties. */
+static size_t joint_by_definition(const double *x, const double *y, size_t n, size_t k, bool upper)
+{
+    size_t joint = 0;
+    for (size_t i = 0; i < n; i++) {
+        double in_x = 0.5, in_y = 0.5;
+        for (size_t j = 0; j < n; j++) {
+            in_x += (x[j] < x[i]) + 0.5 * (x[j] == x[i]);
+            in_y += (y[j] < y[i]) + 0.5 * (y[j] == y[i]);
+        }
+        double edge = upper ? (double)(n - k) : (double)k;
+        joint += upper ? in_x > edge && in_y > edge : in_x <= edge && in_y <= edge;
+    }
+    return joint;
+}
+
+/* Every size of tail, with few and many ties. */
+static void every_tail(void **state)
+{
+    (void)state;
+    enum { MOST = 40 };
+    uint64_t random = 5;
+    for (size_t time = 0; time < effort(100); time++) {
+        double x[MOST], y[MOST];
+        size_t n = 2 + random_below(&random, MOST - 1), values = 1 + random_below(&random, 60);
+        for (size_t i = 0; i < n; i++) {
+            x[i] = (double)random_below(&random, values);
+            y[i] = (double)random_below(&random, values);
+        }
+        struct joint_ranks ranks;
+        struct tail_estimate upper, lower;
+        pool p = { 0 };
+        assert_int_equal(new_joint_ranks(x, y, n, &ranks, &p), OK);
+        for (size_t k = 1; k <= n; k++) {
+            upper_tail(&ranks, k, &upper);
+            lower_tail(&ranks, k, &lower);
+            assert_int_equal(upper.joint, joint_by_definition(x, y, n, k, true));
+            assert_int_equal(lower.joint, joint_by_definition(x, y, n, k, false));
+            assert_same(upper.lambda, (double)upper.joint / (double)k);
+            assert_same(lower.lambda, (double)lower.joint / (double)k);
+        }
+        pool_empty(&p);
+    }
+}
+
+/* A hundred thousand rows and a look at each of 100,000 tails: a rescan of the rows at each would
+ * take minutes. Opposite columns: nothing is joint up to half of the rows, then two more a row. */
+static void many_tails(void **state)
+{
+    (void)state;
+    enum { ROWS = 100000 };
+    double *x = malloc(2 * ROWS * sizeof *x);
+    assert_non_null(x);
+    for (size_t i = 0; i < ROWS; i++) x[ROWS + i] = -(x[i] = (double)i);
+    struct joint_ranks ranks;
+    struct tail_estimate t;
+    pool p = { 0 };
+    assert_int_equal(new_joint_ranks(x, x + ROWS, ROWS, &ranks, &p), OK);
+    for (size_t k = 1; k <= ROWS; k++) {
+        size_t joint = 2 * k > ROWS ? 2 * k - ROWS : 0;
+        lower_tail(&ranks, k, &t);
+        assert_true(t.joint == joint);
+        upper_tail(&ranks, k, &t);
+        assert_true(t.joint == joint);
+    }
+    pool_empty(&p);
+    free(x);
+}
+
 /* Losses and expenses of Frees & Valdez (1998) and others, counts recomputed in the file with
  * NumPy. */
 static void published(void **state)
@@ -83,7 +153,7 @@ static void by_hand(void **state)
     assert_same(t.lambda, 2 / 3.0);
     assert_int_equal(new_joint_ranks(x, y, 1, &ranks, &p), TOO_FEW);
     pool_empty(&p);
-    for (size_t k = 1; k <= 5; k++) {
+    for (size_t k = 1; k <= 6; k++) {
         pool failing = { .fail_at = k };
         assert_int_equal(new_joint_ranks(x, y, 6, &ranks, &failing), NO_MEMORY);
         pool_empty(&failing);
@@ -94,7 +164,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(published), cmocka_unit_test(error_against_simulation),
-        cmocka_unit_test(by_hand),
+        cmocka_unit_test(by_hand), cmocka_unit_test(every_tail), cmocka_unit_test(many_tails),
     };
     return cmocka_run_group_tests_name("tail_dependence", tests, NULL, NULL);
 }

@@ -16,6 +16,7 @@ margins      3 lines of a distribution       terms      3 lines: excess, limit, 
 faulty       x with an error cell in row 4
 long_x long_y  whole columns that begin with x and y
 long_data      three whole columns that begin with data
+long_uniforms  three whole columns that begin with uniforms
 """
 import random
 
@@ -96,9 +97,10 @@ def lay_out(document):
         name_range(document, name, area.AbsoluteName)
         top += len(rows) + 1
     sheet = document.Sheets.getByName('Long')
-    for i, row in enumerate(zip(X, Y, Z)):
+    for i, row in enumerate(zip(X, Y, Z, *zip(*blocks()['uniforms']))):
         for j, v in enumerate(row):
             sheet.getCellByPosition(j, i).Value = v
     name_range(document, 'long_x', '$Long.$A$1:$A$1048576')
     name_range(document, 'long_y', '$Long.$B$1:$B$1048576')
     name_range(document, 'long_data', '$Long.$A$1:$C$1048576')
+    name_range(document, 'long_uniforms', '$Long.$D$1:$F$1048576')

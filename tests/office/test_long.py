@@ -1,39 +1,45 @@
 """Whole columns give what the filled part of them gives, and in good time."""
 import time
 
-from checks import close, read_rows
+from checks import ERRORS, close, read_rows
 from test_sweep import baseline, call, examples_of
 
 PATIENCE = 20                        # seconds for a call with whole columns
 
 TRIMMED = {'column': ('x', 'long_x'), 'data': ('data', 'long_data'),
            'full data': ('data', 'long_data')}
+UNIFORMS = ('uniforms', 'long_uniforms')
 SECOND = {'x': 'y', 'long_x': 'long_y'}
+AS_MANY_LINES = ('margins', 'terms')     # blocks for the three lines of data and uniforms
 
 
-def with_columns(arguments, kinds, long):
-    """The call with every column or data argument replaced by ours; None when there is none."""
+def with_columns(arguments, parameters, long):
+    """The call with every column or data argument replaced by ours, and the blocks that have to fit
+    it; None when there is none."""
     columns, found = list(arguments), 0
-    for i, kind in enumerate(kinds[:len(columns)]):
+    for i, (parameter, kind) in enumerate(parameters[:len(columns)]):
         if kind in TRIMMED:
-            name = TRIMMED[kind][long]
+            name = (UNIFORMS if parameter == 'uniforms' else TRIMMED[kind])[long]
             columns[i] = SECOND[name] if found and kind == 'column' else name
             found += 1
+        elif kind in AS_MANY_LINES:
+            columns[i] = kind
     return columns if found else None
 
 
 def run(checks, desk, given):
-    examples, kinds = examples_of(given), {}
+    examples, parameters = examples_of(given), {}
     for name, parameter, kind, optional, rest in read_rows(given.parameters):
-        kinds.setdefault(name, []).append(kind)
-    for name in kinds:
+        parameters.setdefault(name, []).append((parameter, kind))
+    for name in parameters:
         arguments = baseline(name, examples)
-        short = with_columns(arguments or [], kinds[name], 0)
+        short = with_columns(arguments or [], parameters[name], 0)
         if not short:
             continue
         expected = desk.evaluate(call(name, short))
+        checks.check(expected not in ERRORS, 'long: %s gives %r' % (call(name, short), expected))
         start = time.monotonic()
-        formula = call(name, with_columns(arguments, kinds[name], 1))
+        formula = call(name, with_columns(arguments, parameters[name], 1))
         result = desk.evaluate(formula)
         seconds = time.monotonic() - start
         checks.check(seconds < PATIENCE, 'long: %s took %.1f s' % (formula, seconds))
