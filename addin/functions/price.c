@@ -374,8 +374,9 @@ const function price_functions[] = {
                   "Settings: rows (100000), seed (1), scheme (plain, antithetic, latin, sobol), "
                   "level (0.99). Under plain the block equals JOINT.REPORT of JOINT.LOSSES of "
                   "JOINT.DRAW; under the other schemes rows are drawn in 16 independent parts, "
-                  "and errors come from their spread; sobol does best with 16 times a power of two "
-                  "of rows, such as 65536.",
+                  "and errors come from their spread, those of VaR and TVaR once about four rows of "
+                  "each part are in the tail; sobol does best with 16 times a power of two of "
+                  "rows, such as 65536.",
         .examples = {
             { "INDEX(PRICE(MODEL(\"independent\");{\"exponential\";1|\"exponential\";2};"
               "{0;\"\";1|0;\"\";1};;{\"rows\";1000});12;2)", "1000" },
