@@ -31,6 +31,11 @@ double tail_weight(size_t n, double level);
  * order statistics estimates the density there (Siddiqui 1960). */
 double value_at_risk_error(size_t n, double level, struct order_window w, double low, double high);
 
+/* The error of a shortfall, or of a line's part in one, from the variance over all n rows of its
+ * influence values times (1 - level) (Manistre & Hancock 2005), with weight = tail_weight(); NaN
+ * when the variance is beyond the range of numbers. */
+double shortfall_error(double variance, size_t n, double weight);
+
 /* The value at risk at each of `count` levels in (0;1): the k-th smallest, k = order_of(n, level).
  * TOO_FEW when there are no losses; NO_MEMORY. */
 status values_at_risk(const double *loss, size_t n, const double *level, size_t count, pool *p,

@@ -111,6 +111,41 @@ static void parts_add_up(void **state)
     assert_close(errors / m, spread, 0.15);
 }
 
+/* 0.1 and 0.7 in every row: nothing varies, whatever their binary digits */
+static void alike_rows(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    double alone[2];
+    estimate part[2];
+    for (size_t i = 0; i < 20; i++) at[i] = i < 10 ? 0.1 : 0.7;
+    const samples still = { 10, 2, at, NULL };
+    assert_int_equal(allocate_covariance(&still, &p, part, alone), NO_VARIATION);
+    pool_empty(&p);
+}
+
+/* A line's part is its loss when that is the same in each of very many rows, and as exactly when the
+ * rows are tied only in their sum: here 0.1 and 0.3 in turn, on average 0.2. */
+static void parts_of_many_tied_rows(void **state)
+{
+    (void)state;
+    enum { MANY = LINES * N / 2 };
+    pool p = { 0 };
+    double alone[2];
+    estimate part[2];
+    const samples losses = { MANY, 2, at, NULL };
+    for (size_t i = 0; i < 2 * MANY; i++) at[i] = i < MANY ? 0.1 : 0.2;
+    assert_int_equal(allocate_tail(&losses, 0.99, &p, part, alone), OK);
+    assert_close(part[0].value, 0.1, 1e-15);
+    assert_close(part[1].value, 0.2, 1e-15);
+    assert_same(part[0].error, 0);
+    for (size_t i = 0; i < 2 * MANY; i++) at[i] = i % 2 == i / MANY ? 0.1 : 0.3;
+    assert_int_equal(allocate_tail(&losses, 0.99, &p, part, alone), OK);
+    assert_close(part[0].value, 0.2, 1e-15);
+    assert_close(part[1].value, 0.2, 1e-15);
+    pool_empty(&p);
+}
+
 static void refusals(void **state)
 {
     (void)state;
@@ -131,6 +166,8 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(parts_of_a_normal_model),
         cmocka_unit_test(parts_add_up),
+        cmocka_unit_test(alike_rows),
+        cmocka_unit_test(parts_of_many_tied_rows),
         cmocka_unit_test(refusals),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -117,6 +117,22 @@ static void layers_simulated(void **state)
     csv_free(t);
 }
 
+/* the mean of very many equal payments is one of them, and nothing varies */
+static void layers_of_equal_losses(void **state)
+{
+    (void)state;
+    struct layer_cost c;
+    for (size_t i = 0; i < N; i++) x[i] = 0.1;
+    assert_int_equal(layer_cost_of(x, N, 0, INFINITY, &c), OK);
+    assert_same(c.mean, 0.1);
+    assert_same(c.sd, 0);
+    for (size_t i = 0; i < N; i++) x[i] = i % 2 ? 0.1 : 0.3;
+    assert_int_equal(layer_cost_of(x, N, 0, 0.25, &c), OK);
+    assert_close(c.mean, 0.175, 1e-14);
+    assert_close(c.sd, 0.075 * sqrt(N / (N - 1.0)), 1e-14);
+    assert_same(c.exhausting, 0.5);
+}
+
 /* With an exponential of mean 1 and a = 1 - level, the asymptotic errors are sqrt(level / (a
  * n)) for the value at risk (its density there is a) and sqrt((2 - a) / (a n)) for the
  * shortfall. */
@@ -230,6 +246,7 @@ int main(void)
         cmocka_unit_test(closed_forms_simulated),
         cmocka_unit_test(closed_forms_stratified),
         cmocka_unit_test(layers_simulated),
+        cmocka_unit_test(layers_of_equal_losses),
         cmocka_unit_test(errors_of_the_exponential),
         cmocka_unit_test(errors_cover),
         cmocka_unit_test(too_few_to_tell),
