@@ -7,7 +7,7 @@
  *   over the root of their number, that of a tail figure only where each part has a tail.
  *
  * Special cases
- *   A loss that is no finite number, as heavy tails can give, ends the pricing.
+ *   A loss too large to add up, as heavy tails can give, ends the pricing.
  *
  * Accuracy
  *   Given and simulated losses take the same path from the loss on.

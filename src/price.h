@@ -34,8 +34,9 @@ typedef struct {
     size_t lines, rows;
     double level;
     estimate *of;
-    size_t overflowed;           /* when the status is OUT_OF_DOMAIN: 1 + the line whose loss is not
-                                    a finite number, or 0 */
+    size_t overflowed;           /* when the status is OUT_OF_DOMAIN: 1 + the line with a loss too
+                                    large to add up (risk.h), 1 + lines when that is a sum of a
+                                    row, or 0 */
 } pricing;
 
 /* how many rows there are: price_rows(lines) */

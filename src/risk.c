@@ -24,12 +24,18 @@
 #include <stdlib.h>
 #include <string.h>
 
+static bool all_add_up(const double *x, size_t n)
+{
+    size_t without = 0;
+    for (size_t i = 0; i < n; i++) without += !adds_up(x[i]);
+    return without == 0;
+}
+
 status row_sums(const samples *s, pool *p, const double **sums)
 {
-    if (s->cols == 1) {
-        *sums = s->at;
-        return OK;
-    }
+    *sums = s->at;
+    if (!all_add_up(s->at, s->rows * s->cols)) return OUT_OF_DOMAIN;
+    if (s->cols == 1) return OK;
     double *sum = pool_take_zeroed(p, s->rows, sizeof *sum);
     if (!sum) return NO_MEMORY;
     for (size_t j = 0; j < s->cols; j++) {
@@ -37,7 +43,7 @@ status row_sums(const samples *s, pool *p, const double **sums)
         for (size_t i = 0; i < s->rows; i++) sum[i] += x[i];
     }
     *sums = sum;
-    return OK;
+    return all_add_up(sum, s->rows) ? OK : OUT_OF_DOMAIN;
 }
 
 static double spread(size_t n, double level)

@@ -10,10 +10,20 @@
 #include "samples.h"
 #include "status.h"
 
+#include <math.h>
+#include <stdbool.h>
+
 /* error is NaN where the sample is too small to tell */
 typedef struct { double value, error; } estimate;
 
-/* The losses of one period: each row's sum over the columns, s->rows numbers; NO_MEMORY. */
+/* Whether a loss, or the sum of a row, leaves room to add up any number of such: up to 1e300. */
+static inline bool adds_up(double loss)
+{
+    return fabs(loss) <= 1e300;
+}
+
+/* The losses of one period: each row's sum over the columns, s->rows numbers. OUT_OF_DOMAIN when a
+ * loss or a sum does not add up (see above); NO_MEMORY. */
 status row_sums(const samples *s, pool *p, const double **sums);
 
 /* The order statistics that an estimate of the value at risk and of its error rest on, from 1

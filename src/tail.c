@@ -200,21 +200,24 @@ static void means_at_edge(const tail *t, const struct edge *e, double *mean)
     for (size_t j = 0; j < t->lines; j++) mean[j] /= count;
 }
 
+/* `mean` is that of the line at the edge */
 static estimate measure_part(const tail *t, const struct edge *e, size_t line, double mean)
 {
-    double squares = 0;
+    double away = 0, squares = 0;
     running_sum sum = { 0 };
     for (size_t i = 0; i < t->kept; i++) {
-        double away = weight_of(e, t->total[i]) * (t->parts[i * t->lines + line] - mean);
-        sum_add(&sum, away);
-        squares += away * away;
+        double weight = weight_of(e, t->total[i]), x = t->parts[i * t->lines + line];
+        double influence = weight * (x - mean);
+        sum_add(&sum, weight * x);
+        away += influence;
+        squares += influence * influence;
     }
     if (t->tied > 0 && t->cut == e->at) {
-        sum_add(&sum, e->share * tied_away(t, line, mean));
+        sum_add(&sum, e->share * tied_away(t, line, 0));
+        away += e->share * tied_away(t, line, mean);
         squares += e->share * e->share * fmax(tied_squares(t, line, mean), 0);
     }
-    double whole = sum_total(&sum);
-    return (estimate){ mean + whole / e->weight, error_from(t, e, whole, squares) };
+    return (estimate){ sum_total(&sum) / e->weight, error_from(t, e, away, squares) };
 }
 
 status tail_measure(const tail *t, pool *p, estimate *value_at_risk, estimate *shortfall,

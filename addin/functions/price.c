@@ -163,6 +163,14 @@ static status refuse_size(size_t lines, double rows, double level, scheme how, r
                   rows, lines, level);
 }
 
+static status refuse_price(const pricing *price, const char **names, status s, report *r)
+{
+    if (s != OUT_OF_DOMAIN || !price->overflowed || !names) return s;
+    if (price->overflowed > price->lines)
+        return refuse(r, s, "the losses of a row add up to more than 1e300");
+    return refuse(r, s, "a loss of %s is beyond 1e300", names[price->overflowed - 1]);
+}
+
 /* ---- REPORT ---- */
 
 enum { REPORT_LOSSES, REPORT_TERMS, REPORT_AGGREGATE, REPORT_LEVEL };
@@ -176,11 +184,13 @@ static status cell_report(const argument *in, value *out, report *r)
     pricing price;
     status s = refuse_size(losses->cols, (double)losses->rows, level, SCHEME_PLAIN, r);
     if (s == OK) s = cover_from(in + REPORT_TERMS, in + REPORT_AGGREGATE, losses->cols, &c, r);
-    if (s == OK) s = price_losses(losses, &c, level, r->pool, &price);
     if (s != OK) return s;
     const char **const sources[] = { losses->names, in[REPORT_TERMS].terms.names };
+    const char **names = line_names(losses->cols, sources, 2, r->pool);
+    s = price_losses(losses, &c, level, r->pool, &price);
+    if (s != OK) return refuse_price(&price, names, s, r);
     struct facts f = { .rows = (double)losses->rows, .seed = NAN, .level = level, .notes = "" };
-    return write_block(&price, line_names(losses->cols, sources, 2, r->pool), &f, out, r);
+    return write_block(&price, names, &f, out, r);
 }
 
 /* ---- PRICE ---- */
@@ -287,14 +297,6 @@ static const char *heavy_lines(const struct margins *m, const char **names, pool
                           isfinite(mean) ? "sd" : "mean");
     }
     return notes;
-}
-
-static status refuse_price(const pricing *price, const char **names, status s, report *r)
-{
-    if (s == OUT_OF_DOMAIN && price->overflowed && names)
-        return refuse(r, s, "a simulated loss of %s is beyond the range of numbers",
-                      names[price->overflowed - 1]);
-    return s;
 }
 
 static status cell_price(const argument *in, value *out, report *r)

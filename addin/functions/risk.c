@@ -15,7 +15,8 @@ static void put_known(value *out, size_t row, size_t col, double x)
 static status sums_of(const argument *losses, const double **sums, report *r)
 {
     if (losses->data.rows == 0) return refuse(r, TOO_FEW, "losses has no rows");
-    return row_sums(&losses->data, r->pool, sums);
+    status s = row_sums(&losses->data, r->pool, sums);
+    return s == OUT_OF_DOMAIN ? refuse(r, s, "a loss or the sum of a row is beyond 1e300") : s;
 }
 
 /* ---- layers ---- */
@@ -112,6 +113,7 @@ static status cell_allocate(const argument *in, value *out, report *r)
                ? allocate_tail(losses, in[1].number, r->pool, part, alone)
                : allocate_covariance(losses, r->pool, part, alone);
     if (s == TOO_FEW) return refuse(r, s, "losses has %zu rows, which are too few", losses->rows);
+    if (s == OUT_OF_DOMAIN) return refuse(r, s, "the losses are too large to be added or squared");
     if (s == NO_VARIATION) return refuse(r, s, "the sum of the losses does not vary");
     if (s == OK) s = new_table(r, losses->cols, 3, out);
     for (size_t j = 0; s == OK && j < losses->cols; j++) {

@@ -146,6 +146,46 @@ static void parts_of_many_tied_rows(void **state)
     pool_empty(&p);
 }
 
+/* At a level of 1 to the last bit the tail is a part of the largest row, and by definition the parts
+ * are its losses, even where lines are far larger than their sum in the row next to it. */
+static void the_very_largest_row(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    const double level = 1 - 1e-16;
+    double losses[] = { 1, 4e299, -9e299, -3, 5, -4e299, 9e299, 2 }, alone[2];
+    estimate part[2], tvar;
+    const double *sums;
+    const samples four = { 4, 2, losses, NULL };
+    assert_true(level < 1);
+    assert_int_equal(allocate_tail(&four, level, &p, part, alone), OK);
+    assert_close(part[0].value, 1, 1e-15);
+    assert_close(part[1].value, 5, 1e-15);
+    assert_same(alone[0], 4e299);
+    assert_same(alone[1], 9e299);
+    assert_int_equal(row_sums(&four, &p, &sums), OK);
+    assert_int_equal(tail_values_at_risk(sums, 4, &level, 1, &p, &tvar), OK);
+    assert_same(tvar.value, 6);
+    pool_empty(&p);
+}
+
+static void too_large(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    double sum[] = { 1, 9e299, 2, 9e299 }, loss[] = { 1, 1e308, 2, -1e308 },
+           square[] = { 1, 2e200, 5e199, 7 }, alone[2];
+    estimate part[2];
+    const double *sums;
+    const samples no_sum = { 2, 2, sum, NULL }, no_loss = { 2, 2, loss, NULL },
+                  no_square = { 2, 2, square, NULL };
+    assert_int_equal(row_sums(&no_sum, &p, &sums), OUT_OF_DOMAIN);
+    assert_int_equal(row_sums(&no_loss, &p, &sums), OUT_OF_DOMAIN);
+    assert_int_equal(allocate_tail(&no_sum, 0.5, &p, part, alone), OUT_OF_DOMAIN);
+    assert_int_equal(allocate_covariance(&no_square, &p, part, alone), OUT_OF_DOMAIN);
+    pool_empty(&p);
+}
+
 static void refusals(void **state)
 {
     (void)state;
@@ -168,6 +208,8 @@ int main(void)
         cmocka_unit_test(parts_add_up),
         cmocka_unit_test(alike_rows),
         cmocka_unit_test(parts_of_many_tied_rows),
+        cmocka_unit_test(the_very_largest_row),
+        cmocka_unit_test(too_large),
         cmocka_unit_test(refusals),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -355,6 +355,31 @@ static void overflow_is_told(void **state)
     pool_empty(&d.p);
 }
 
+/* each loss is a number but a row's sum is none, and the other way round the sum is 0 */
+static void sums_can_overflow(void **state)
+{
+    (void)state;
+    struct deal d;
+    set_model(&d, "independent", 2, 0);
+    set_cover(&d, false, false);
+    double over[] = { 1, 1e308, 2, 1e308 }, beyond[] = { 1, 1e308, 2, -1e308 },
+           fits[] = { 1, 9e299, 2, -9e299 };
+    const samples no_sum = { 2, 2, over, NULL }, no_loss = { 2, 2, beyond, NULL },
+                  fine = { 2, 2, fits, NULL };
+    assert_int_equal(price_losses(&no_loss, &d.cover, 0.5, &d.p, &d.out), OUT_OF_DOMAIN);
+    assert_int_equal(d.out.overflowed, 1);
+    assert_int_equal(price_losses(&no_sum, &d.cover, 0.5, &d.p, &d.out), OUT_OF_DOMAIN);
+    over[1] = over[3] = 9e299;
+    assert_int_equal(price_losses(&no_sum, &d.cover, 0.5, &d.p, &d.out), OUT_OF_DOMAIN);
+    assert_int_equal(d.out.overflowed, 3);
+    assert_int_equal(price_losses(&fine, &d.cover, 0.5, &d.p, &d.out), OK);
+    assert_same(figure(&d, PRICE_MEAN, GROSS).value, 1.5);
+    assert_close(figure(&d, PRICE_LINES, GROSS).value, 4.5e299, 1e-15);
+    for (size_t row = PRICE_VALUE_AT_RISK; row < price_rows(2); row++)
+        assert_true(isfinite(figure(&d, row, GROSS).value));
+    pool_empty(&d.p);
+}
+
 static void one_row(void **state)
 {
     (void)state;
@@ -419,6 +444,7 @@ int main(void)
         cmocka_unit_test(errors_of_short_parts),
         cmocka_unit_test(no_errors_without_a_tail),
         cmocka_unit_test(overflow_is_told),
+        cmocka_unit_test(sums_can_overflow),
         cmocka_unit_test(one_row),
         cmocka_unit_test(memory_can_fail),
         cmocka_unit_test(memory_is_bounded),
