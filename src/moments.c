@@ -65,6 +65,10 @@ static running_moments of_block(const double *x, size_t n)
 static void join(running_moments *m, running_moments b)
 {
     const running_moments a = *m;
+    if (a.count == 0) {
+        *m = b;
+        return;
+    }
     double count = a.count + b.count, d = b.mean - a.mean, d2 = d * d;
     double fa = a.count / count, fb = b.count / count, cross = a.count * fb;
     m->count = count;

@@ -100,6 +100,10 @@ static void powers_out_of_range(void **state)
     assert_close(moments_mean(&most).value, 8e200 / 3, 1e-15);
     assert_true(isnan(moments_mean(&most).error));
     assert_true(isnan(moments_sd(&most).value) && isnan(moments_sd(&most).error));
+    const double near[] = { 0x1p530, 0x1p530 + 0x1p490, 0x1p530 + 0x1p491 };
+    running_moments close = { 0 };
+    moments_add(&close, near, 3);
+    assert_close(moments_sd(&close).value, 0x1p490, 1e-12);                /* 1 + 0 + 1, by 2 */
 }
 
 static void edges(void **state)
