@@ -9,7 +9,8 @@
  * is taken from the eigenvalues of K, without those that are zero to rounding. Where K is close to
  * singular, so that its Schur complement cannot tell, the eigenvalues of K with a, and of K with b,
  * say whether any x will do. The lowest eigenvalue of a triple is the lowest root of its
- * characteristic cubic, by cosines (Viete).
+ * characteristic cubic, by cosines (Viete). The triples that clash most are held
+ * in a heap, so that holding many of them costs little.
  * Special cases: pairs are free in [-1;1]. A triple needs no decomposition: K is 1.
  * Accuracy: 1e-15 for triples and about 1e-15 divided by the lowest eigenvalue of K else.
  */
@@ -18,6 +19,7 @@
 #include "linear.h"
 
 #include <math.h>
+#include <stdlib.h>
 
 /* 1 - a' K^-1 a, 1 - b' K^-1 b and a' K^-1 b */
 typedef struct {
@@ -156,21 +158,46 @@ static bool before(const clash *a, const clash *b)
     return a->line[2] < b->line[2];
 }
 
-/* Puts a clash into its place in a sorted list that holds at most `most`. */
-static void insert(clash *list, size_t *n, size_t most, const clash *c)
+static int by_weight(const void *a, const void *b)
 {
-    if (*n == most && (most == 0 || !before(c, &list[*n - 1]))) return;
-    size_t k = *n < most ? (*n)++ : most - 1;
-    for (; k > 0 && before(c, &list[k - 1]); k--) list[k] = list[k - 1];
-    list[k] = *c;
+    return before(a, b) ? -1 : before(b, a);
+}
+
+/* The clashes that are kept, as a heap: the mildest first, and each before both that hang on it. */
+typedef struct {
+    clash *of;
+    size_t n, most;
+} worst_clashes;
+
+static void rise(clash *heap, size_t k, clash c)
+{
+    for (; k > 0 && before(&heap[(k - 1) / 2], &c); k = (k - 1) / 2) heap[k] = heap[(k - 1) / 2];
+    heap[k] = c;
+}
+
+static void sink(clash *heap, size_t n, clash c)
+{
+    size_t k = 0;
+    for (size_t child; (child = 2 * k + 1) < n; k = child) {
+        if (child + 1 < n && before(&heap[child], &heap[child + 1])) child++;
+        if (!before(&c, &heap[child])) break;
+        heap[k] = heap[child];
+    }
+    heap[k] = c;
+}
+
+static void keep_if_worse(worst_clashes *w, const clash *c)
+{
+    if (w->n < w->most) rise(w->of, w->n++, *c);
+    else if (w->n > 0 && before(c, w->of)) sink(w->of, w->n, *c);
 }
 
 status clashing_triples(const double *matrix, size_t d, size_t most, clash **found, size_t *n_found,
                         size_t *n_all, pool *p)
 {
     *n_found = *n_all = 0;
-    *found = pool_take(p, most ? most : 1, sizeof **found);
-    if (!*found) return NO_MEMORY;
+    worst_clashes kept = { pool_take(p, most ? most : 1, sizeof(clash)), 0, most };
+    if (!kept.of) return NO_MEMORY;
     for (size_t i = 0; i < d; i++)
         for (size_t j = i + 1; j < d; j++)
             for (size_t k = j + 1; k < d; k++) {
@@ -180,7 +207,10 @@ status clashing_triples(const double *matrix, size_t d, size_t most, clash **fou
                 if (now.lowest >= -3e-12) continue;
                 ++*n_all;
                 third_correlation(a, b, &now.low, &now.high);
-                insert(*found, n_found, most, &now);
+                keep_if_worse(&kept, &now);
             }
+    qsort(kept.of, kept.n, sizeof *kept.of, by_weight);
+    *found = kept.of;
+    *n_found = kept.n;
     return OK;
 }

@@ -198,6 +198,27 @@ static void clashes_are_those_that_eigenvalues_show(void **unused)
     }
 }
 
+/* Whatever is held, it is the head of the full list. */
+static void the_worst_come_first(void **unused)
+{
+    (void)unused;
+    uint64_t state = 12;
+    pool p = { .last = NULL };
+    size_t n, all, few;
+    double *m = noisy_matrix(&state, 40, 3, 0.6, &p);
+    clash *whole, *head;
+    assert_int_equal(clashing_triples(m, 40, 100000, &whole, &n, &all, &p), OK);
+    assert_int_equal(n, all);
+    assert_true(all > 1000);
+    for (size_t k = 1; k < n; k++) assert_true(whole[k - 1].lowest <= whole[k].lowest);
+    for (size_t most = 0; most <= all; most = 3 * most + 1) {
+        assert_int_equal(clashing_triples(m, 40, most, &head, &few, &all, &p), OK);
+        assert_int_equal(few, most);
+        assert_memory_equal(head, whole, few * sizeof *head);
+    }
+    pool_empty(&p);
+}
+
 /* The matrix of law holds no clash. Of 0.9, 0.9 and 0 (chain99 of nearest_correlation_summary.csv)
  * the lowest eigenvalue is 1 - 0.9 sqrt 2. */
 static void known_clashes(void **unused)
@@ -252,6 +273,7 @@ int main(void)
         cmocka_unit_test(feasible_singular_matrices),
         cmocka_unit_test(no_value_helps_when_the_others_clash),
         cmocka_unit_test(clashes_are_those_that_eigenvalues_show),
+        cmocka_unit_test(the_worst_come_first),
         cmocka_unit_test(known_clashes),
         cmocka_unit_test(every_allocation_can_fail),
     };
