@@ -340,9 +340,9 @@ static status cell_price(const argument *in, value *out, report *r)
     "its excess; else that in which anything is ceded. Exhausting: with an aggregate, the " \
     "ceded sum before it reaches excess + limit; else every line that follows no other " \
     "reaches its own; empty when a limit is open. Without terms every line goes whole to the " \
-    "aggregate, and nothing is ceded when there is none. Errors are simulation errors only, " \
-    "empty while about four rows are not yet in the tail. inputs is the 64-bit FNV-1a hash " \
-    "of every argument as it came. "
+    "aggregate, gains too, and nothing is ceded when there is none. Errors are simulation " \
+    "errors only, empty while about four rows are not yet in the tail. inputs is the 64-bit " \
+    "FNV-1a hash of every argument as it came. "
 
 const function price_functions[] = {
     {
@@ -376,8 +376,8 @@ const function price_functions[] = {
                   "Settings: rows (100000), seed (1), scheme (plain, antithetic, latin, sobol), "
                   "level (0.99). Under plain the block equals JOINT.REPORT of JOINT.LOSSES of "
                   "JOINT.DRAW; under the other schemes rows are drawn in 16 independent parts, "
-                  "and errors come from their spread, those of VaR and TVaR once about four rows of "
-                  "each part are in the tail; sobol does best with 16 times a power of two of "
+                  "and errors come from their spread, those of VaR and TVaR once about four rows "
+                  "of each part are in the tail; sobol does best with 16 times a power of two of "
                   "rows, such as 65536.",
         .examples = {
             { "INDEX(PRICE(MODEL(\"independent\");{\"exponential\";1|\"exponential\";2};"
