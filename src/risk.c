@@ -183,6 +183,23 @@ static void spaced_counts(size_t n, size_t points, size_t *count)
     }
 }
 
+/* Turns the counts that ties may cut through into shares at or above each point. x holds the order
+ * wanted[i] of n numbers in its place, and between two of these nothing outside them. */
+static void shares_at_or_above(const double *x, size_t n, const size_t *wanted, size_t points,
+                               double *share)
+{
+    for (size_t i = 0; i < points; i++) {
+        double loss = x[wanted[i] - 1];
+        if (i > 0 && loss == x[wanted[i - 1] - 1]) {
+            share[i] = share[i - 1];
+            continue;
+        }
+        size_t count = n + 1 - wanted[i];
+        for (size_t k = i > 0 ? wanted[i - 1] : 0; k < wanted[i] - 1; k++) count += x[k] == loss;
+        share[i] = (double)count / (double)n;
+    }
+}
+
 status exceedance_curve(const double *loss, size_t n, size_t points, pool *p, double *at,
                         double *probability)
 {
@@ -195,9 +212,7 @@ status exceedance_curve(const double *loss, size_t n, size_t points, pool *p, do
     spaced_counts(n, points, count);
     for (size_t i = 0; i < points; i++) wanted[i] = n + 1 - count[points - 1 - i];
     select_orders(copy, n, wanted, points);
-    for (size_t i = 0; i < points; i++) {
-        at[i] = copy[wanted[i] - 1];
-        probability[i] = (double)count[points - 1 - i] / (double)n;
-    }
+    for (size_t i = 0; i < points; i++) at[i] = copy[wanted[i] - 1];
+    shares_at_or_above(copy, n, wanted, points, probability);
     return OK;
 }

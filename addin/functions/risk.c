@@ -238,11 +238,12 @@ const function risk_functions[] = {
         .group = group,
         .help = "Losses and how often they are reached or exceeded, ready to chart.",
         .detail = "Column 1 holds losses, rising from the smallest to the largest; column 2 the "
-                  "share of rows at or above each by rank, from 1 to 1/n. In between the shares "
-                  "fall geometrically, so that on a logarithmic axis the points lie evenly. With "
-                  "fewer rows than points every row is one.",
+                  "share of rows at or above each, from 1 down. In between the ranks fall "
+                  "geometrically, so that on a logarithmic axis the points lie evenly. With fewer "
+                  "rows than points every row is one; tied rows give the same point again.",
         .examples = {
             { "INDEX(EXCEEDANCE({30|10|20|40});3;1)", "30" },
+            { "INDEX(EXCEEDANCE({0|0|0|5});3;2)", "1" },
             { "INDEX(EXCEEDANCE({30|10|20|40});3;2)", "0.5" },
         },
         .params = {

@@ -239,6 +239,28 @@ static void exceedance_of_a_ramp(void **state)
     pool_empty(&p);
 }
 
+/* with ties, by counting: the share of losses at or above each */
+static void exceedance_with_ties(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    double at[40], share[40], zeros[8] = { 0, 0, 0, 5, 0, 0, 0, 0 };
+    uint64_t random = 6;
+    assert_int_equal(exceedance_curve(zeros, 8, 2, &p, at, share), OK);
+    assert_true(at[0] == 0 && share[0] == 1 && at[1] == 5 && share[1] == 0.125);
+    for (size_t round = 0; round < effort(50); round++) {
+        size_t n = 2 + random_below(&random, 2000), points = 2 + random_below(&random, 39);
+        for (size_t i = 0; i < n; i++) x[i] = floor(exp(6 * random_uniform(&random) - 3));
+        assert_int_equal(exceedance_curve(x, n, points, &p, at, share), OK);
+        for (size_t i = 0; i < exceedance_points(n, points); i++) {
+            size_t count = 0;
+            for (size_t k = 0; k < n; k++) count += x[k] >= at[i];
+            assert_same(share[i], (double)count / (double)n);
+        }
+    }
+    pool_empty(&p);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -252,6 +274,7 @@ int main(void)
         cmocka_unit_test(too_few_to_tell),
         cmocka_unit_test(rows_are_summed),
         cmocka_unit_test(exceedance_of_a_ramp),
+        cmocka_unit_test(exceedance_with_ties),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
