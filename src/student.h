@@ -31,7 +31,7 @@ status chi_square_table(struct student *s, double df, pool *p);
  * answered with 2^-53 and those near 1 with 1 - 2^-53. */
 double student_probability(const struct student *s, double x);
 
-/* The log of the chi-square quantile at the probability Phi(z), |z| <= 8.25; error below 1e-11 of
+/* The log of the chi-square quantile at the probability Phi(z), |z| < 8.25; error below 1e-11 of
  * the standard deviation of the logarithm for |z| <= 7. */
 double log_chi_square(const struct student *s, double z);
 
