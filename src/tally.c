@@ -11,6 +11,7 @@
  *   Sums of a row are taken line by line in order, so that simulated and given losses agree.
  */
 #include "tally.h"
+#include "random.h"
 
 #include <math.h>
 
@@ -50,6 +51,7 @@ static void add_lines(const double *line, size_t lines, size_t n, double *restri
 }
 
 /* The first of some columns with an amount that does not add up (risk.h), or their number. */
+FOR_EACH_PROCESSOR
 static size_t first_too_large(const double *column, size_t columns, size_t n)
 {
     for (size_t j = 0; j < columns; j++) {
