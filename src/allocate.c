@@ -62,12 +62,14 @@ status allocate_covariance(const samples *losses, pool *p, estimate *part, doubl
     status s = row_sums(losses, p, &sums);
     if (s != OK) return s;
     moments_add(&sum, sums, losses->rows);
+    if (!isfinite(sum.second)) return OUT_OF_DOMAIN;
     if (!(sum.second > 0)) return NO_VARIATION;
     for (size_t j = 0; j < losses->cols; j++) {
         running_moments line = { 0 };
         moments_add(&line, column(losses, j), losses->rows);
         alone[j] = moments_sd(&line).value;
         part[j] = part_of_sd(column(losses, j), line.mean, sums, &sum);
+        if (!isfinite(alone[j]) || !isfinite(part[j].value)) return OUT_OF_DOMAIN;
     }
     return OK;
 }

@@ -48,6 +48,12 @@ static double deviance(double a, double x)
     return sum;
 }
 
+double gamma_log_power(double a, double x)
+{
+    if (a < 10) return a * log(x) - x - log_gamma_1p(a);
+    return -log_stirling_factor(a) - deviance(a, x) - log(sqrt_2pi) - 0.5 * log(a);
+}
+
 /* x^a exp(-x) / Gamma(a + 1) */
 static double front(double a, double x)
 {

@@ -6,7 +6,8 @@
  *   1974).
  *
  * Special cases
- *   Losses that are all alike are refused: most likelihoods have no maximum there.
+ *   Losses that are all alike are refused: most likelihoods have no maximum there. Losses whose sum
+ *   is beyond the range of numbers do not settle.
  *
  * Accuracy
  *   Parameters to 1e-12 relative or so, where the likelihood determines them that well.
@@ -56,5 +57,5 @@ status fit_margin(const distribution *d, const double *loss, size_t n, margin_fi
     for (size_t i = 0; s == OK && i < n; i++)
         fit->log_likelihood += d->log_density(&fit->margin, loss[i]);
     fit->aic = 2 * (double)distribution_parameters(d) - 2 * fit->log_likelihood;
-    return s;
+    return s == OK && !isfinite(fit->log_likelihood) ? NOT_SETTLED : s;
 }

@@ -12,11 +12,12 @@ typedef struct { double count, mean, second, third, fourth; } running_moments;
 /* Takes in n more numbers. */
 void moments_add(running_moments *m, const double *x, size_t n);
 
-/* The mean, and its standard error (NaN for fewer than two numbers). */
+/* The mean, and its standard error (NaN for fewer than two numbers, and where the squares are
+ * beyond the range of numbers). */
 estimate moments_mean(const running_moments *m);
 
 /* The standard deviation with divisor n - 1 (NaN for fewer than two numbers), and its standard
- * error by the delta method. */
+ * error by the delta method; NaN where powers are beyond the range of numbers. */
 estimate moments_sd(const running_moments *m);
 
 #endif

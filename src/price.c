@@ -4,10 +4,10 @@
  *   Rows in blocks through tally.c. A model is drawn many rows at a time (draw.h), each column
  *   through the quantile function of its line (quantiles.h). Where rows are not independent,
  *   the error of every figure is the standard deviation of PRICE_REPLICATES independent parts
- *   over the root of their number.
+ *   over the root of their number, that of a tail figure only where each part has a tail.
  *
  * Special cases
- *   A loss that is no finite number, as heavy tails can give, ends the pricing.
+ *   A loss too large to add up, as heavy tails can give, ends the pricing.
  *
  * Accuracy
  *   Given and simulated losses take the same path from the loss on.
@@ -151,6 +151,25 @@ static double error_of(const struct spread *s, size_t parts)
     return parts > 1 ? sqrt(s->squares / (n - 1) / n) : NAN;
 }
 
+/* whether a figure rests on the tail alone */
+static bool of_tail(size_t row, size_t lines)
+{
+    return row == PRICE_VALUE_AT_RISK || row == PRICE_SHORTFALL || row >= PRICE_LINES + lines;
+}
+
+/* Errors from the spread of the parts. A part that is too short to hold a tail answers with
+ * about its largest losses, whatever the level: such parts differ, but not as their true
+ * figures would. */
+static void put_errors(const struct spread *spread, size_t parts, pricing *out)
+{
+    size_t shortest = rows_of_part(out->rows, parts, parts - 1);
+    bool tail_known = window_around(shortest, out->level).known;
+    for (size_t i = 0; i < price_rows(out->lines) * VIEWS; i++) {
+        bool known = !isnan(out->of[i].value) && (tail_known || !of_tail(i / VIEWS, out->lines));
+        out->of[i].error = known ? error_of(spread + i, parts) : NAN;
+    }
+}
+
 /* Draws part k of the rows into the tally of all of them and into one of its own. */
 static status price_part(struct workshop *w, size_t k, size_t parts, tally *all, struct spread *to,
                          pool *p, pricing *out)
@@ -179,8 +198,7 @@ static status price_in_parts(struct workshop *w, tally *all, pool *p, pricing *o
         pool_back_to(p, mark);
     }
     if (s == OK) s = tally_close(all, of->cover, p, out);
-    for (size_t i = 0; i < figures && s == OK; i++)
-        out->of[i].error = isnan(out->of[i].value) ? NAN : error_of(spread + i, parts);
+    if (s == OK) put_errors(spread, parts, out);
     return s;
 }
 

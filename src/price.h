@@ -34,8 +34,9 @@ typedef struct {
     size_t lines, rows;
     double level;
     estimate *of;
-    size_t overflowed;           /* when the status is OUT_OF_DOMAIN: 1 + the line whose loss is not
-                                    a finite number, or 0 */
+    size_t overflowed;           /* when the status is OUT_OF_DOMAIN: 1 + the line with a loss too
+                                    large to add up (risk.h), 1 + lines when that is a sum of a
+                                    row, or 0 */
 } pricing;
 
 /* how many rows there are: price_rows(lines) */
@@ -67,7 +68,8 @@ struct simulation {
 /* The same for losses drawn from a model: under SCHEME_PLAIN what price_losses() gives for the
  * losses at the uniforms of draw(), to the last bits. Under the other schemes rows depend on
  * each other: they are drawn in PRICE_REPLICATES parts with seeds of their own (one row each
- * when there are fewer rows), and errors come from the spread of the parts. Also whatever
+ * when there are fewer rows), and errors come from the spread of the parts; those of tail
+ * figures are NaN while a part has too few rows in its tail (window_around()). Also whatever
  * draw_by_scheme() and quantiles_prepare() answer. */
 enum { PRICE_REPLICATES = 16 };
 status price_model(const struct simulation *s, pool *p, pricing *out);

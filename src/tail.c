@@ -47,19 +47,20 @@ status tail_prepare(tail *t, size_t lines, size_t rows, double level, pool *p)
     t->total = pool_take(p, room, sizeof *t->total);
     t->spare = pool_take(p, room, sizeof *t->spare);
     t->parts = pool_take(p, room, lines * sizeof *t->parts);
-    t->tied_sum = pool_take_zeroed(p, lines, sizeof *t->tied_sum);
-    t->tied_squares = pool_take_zeroed(p, lines, sizeof *t->tied_squares);
-    return t->total && t->spare && t->parts && t->tied_sum && t->tied_squares ? OK : NO_MEMORY;
+    t->ties = pool_take(p, lines, sizeof *t->ties);
+    return t->total && t->spare && t->parts && t->ties ? OK : NO_MEMORY;
 }
 
 static void tie(tail *t, const double *part, size_t stride)
 {
-    t->tied++;
     for (size_t j = 0; j < t->lines; j++) {
+        struct ties *line = t->ties + j;
         double x = part[j * stride];
-        t->tied_sum[j] += x;
-        t->tied_squares[j] += x * x;
+        if (t->tied == 0) *line = (struct ties){ .first = x };
+        sum_add(&line->away, x - line->first);
+        line->squares += (x - line->first) * (x - line->first);
     }
+    t->tied++;
 }
 
 /* Raises the cut. The room holds more rows above the old one than are wanted. */
@@ -68,8 +69,6 @@ static void raise_cut(tail *t)
     memcpy(t->spare, t->total, t->kept * sizeof *t->spare);
     t->cut = select_order(t->spare, t->kept, t->kept - t->wanted + 1);
     t->tied = 0;
-    memset(t->tied_sum, 0, t->lines * sizeof *t->tied_sum);
-    memset(t->tied_squares, 0, t->lines * sizeof *t->tied_squares);
     size_t kept = 0;
     for (size_t i = 0; i < t->kept; i++) {
         const double *row = t->parts + i * t->lines;
@@ -155,27 +154,43 @@ static double weight_of(const struct edge *e, double total)
 static double error_from(const tail *t, const struct edge *e, double sum, double squares)
 {
     double n = (double)t->rows, mean = sum / n;
-    double variance = fmax(squares / n - mean * mean, 0);
-    return e->known ? sqrt(variance / (n - 1)) * n / e->weight : NAN;
+    return e->known ? shortfall_error(squares / n - mean * mean, t->rows, e->weight) : NAN;
 }
 
 static estimate measure_total(const tail *t, const struct edge *e)
 {
-    double sum = 0, squares = 0;
+    double squares = 0;
+    running_sum sum = { 0 };
     for (size_t i = 0; i < t->kept; i++) {
         double beyond = fmax(t->total[i] - e->at, 0);
-        sum += beyond;
+        sum_add(&sum, beyond);
         squares += beyond * beyond;
     }
-    return (estimate){ e->at + sum / e->weight, error_from(t, e, sum, squares) };
+    double whole = sum_total(&sum);
+    return (estimate){ e->at + whole / e->weight, error_from(t, e, whole, squares) };
+}
+
+/* the sum over the ties of a line's distances from `from` */
+static double tied_away(const tail *t, size_t line, double from)
+{
+    const struct ties *of = t->ties + line;
+    return (double)t->tied * (of->first - from) + sum_total(&of->away);
+}
+
+/* the same of their squares */
+static double tied_squares(const tail *t, size_t line, double from)
+{
+    const struct ties *of = t->ties + line;
+    double shift = of->first - from;
+    return of->squares + shift * (tied_away(t, line, from) + sum_total(&of->away));
 }
 
 /* The mean of each line over the rows whose total lies in the window. */
 static void means_at_edge(const tail *t, const struct edge *e, double *mean)
 {
-    bool ties = t->cut >= e->low && t->cut <= e->high;
+    bool ties = t->tied > 0 && t->cut >= e->low && t->cut <= e->high;
     double count = ties ? (double)t->tied : 0;
-    for (size_t j = 0; j < t->lines; j++) mean[j] = ties ? t->tied_sum[j] : 0;
+    for (size_t j = 0; j < t->lines; j++) mean[j] = ties ? tied_away(t, j, 0) : 0;
     for (size_t i = 0; i < t->kept; i++) {
         if (t->total[i] < e->low || t->total[i] > e->high) continue;
         const double *row = t->parts + i * t->lines;
@@ -185,19 +200,24 @@ static void means_at_edge(const tail *t, const struct edge *e, double *mean)
     for (size_t j = 0; j < t->lines; j++) mean[j] /= count;
 }
 
+/* `mean` is that of the line at the edge */
 static estimate measure_part(const tail *t, const struct edge *e, size_t line, double mean)
 {
-    double sum = 0, squares = 0, share = t->cut == e->at ? e->share : 0, tied = (double)t->tied;
+    double away = 0, squares = 0;
+    running_sum sum = { 0 };
     for (size_t i = 0; i < t->kept; i++) {
-        double away = weight_of(e, t->total[i]) * (t->parts[i * t->lines + line] - mean);
-        sum += away;
-        squares += away * away;
+        double weight = weight_of(e, t->total[i]), x = t->parts[i * t->lines + line];
+        double influence = weight * (x - mean);
+        sum_add(&sum, weight * x);
+        away += influence;
+        squares += influence * influence;
     }
-    double tied_away = t->tied_sum[line] - tied * mean;
-    double tied_squares = t->tied_squares[line] - mean * (t->tied_sum[line] + tied_away);
-    sum += share * tied_away;
-    squares += share * share * fmax(tied_squares, 0);
-    return (estimate){ mean + sum / e->weight, error_from(t, e, sum, squares) };
+    if (t->tied > 0 && t->cut == e->at) {
+        sum_add(&sum, e->share * tied_away(t, line, 0));
+        away += e->share * tied_away(t, line, mean);
+        squares += e->share * e->share * fmax(tied_squares(t, line, mean), 0);
+    }
+    return (estimate){ sum_total(&sum) / e->weight, error_from(t, e, away, squares) };
 }
 
 status tail_measure(const tail *t, pool *p, estimate *value_at_risk, estimate *shortfall,

@@ -6,9 +6,16 @@
 
 #include "memory.h"
 #include "risk.h"
+#include "running_sum.h"
 #include "status.h"
 
 #include <stddef.h>
+
+/* One line in the rows equal to the cut: how far they lie from the first of them. */
+struct ties {
+    double first, squares;
+    running_sum away;
+};
 
 /* Every row above `cut` is kept; of those equal to it only count and sums; the rest is gone. */
 typedef struct {
@@ -21,7 +28,7 @@ typedef struct {
     double *spare;               /* room for a copy of total */
     double cut;
     size_t tied;
-    double *tied_sum, *tied_squares;      /* of each line, over the rows equal to cut */
+    struct ties *ties;           /* of each line; unset while none is tied */
 } tail;
 
 /* Room for a run of `rows` rows (1 or more); the level is in (0;1). NO_MEMORY. */

@@ -11,6 +11,7 @@
  *   Sums of a row are taken line by line in order, so that simulated and given losses agree.
  */
 #include "tally.h"
+#include "random.h"
 
 #include <math.h>
 
@@ -49,20 +50,29 @@ static void add_lines(const double *line, size_t lines, size_t n, double *restri
     }
 }
 
-static size_t first_infinite(const double *line, size_t lines, size_t n)
+/* The first of some columns with an amount that does not add up (risk.h), or their number. */
+FOR_EACH_PROCESSOR
+static size_t first_too_large(const double *column, size_t columns, size_t n)
 {
-    for (size_t j = 0; j < lines; j++) {
-        double zero = 0;
-        for (size_t i = 0; i < n; i++) zero += 0 * line[j * TALLY_STRIDE + i];
-        if (zero != 0) return j + 1;
+    for (size_t j = 0; j < columns; j++) {
+        size_t without = 0;
+        for (size_t i = 0; i < n; i++) without += !adds_up(column[j * TALLY_STRIDE + i]);
+        if (without) return j;
     }
-    return 0;
+    return columns;
+}
+
+static bool sums_too_large(const struct block_amounts *b, size_t n)
+{
+    bool fine = first_too_large(b->before, 1, n) == 1;
+    for (int v = 0; v < VIEWS; v++) fine = fine && first_too_large(b->total[v], 1, n) == 1;
+    return !fine;
 }
 
 size_t block_fill(struct block_amounts *b, const cover *c, size_t n)
 {
-    size_t infinite = first_infinite(b->line[GROSS], c->lines, n);
-    if (infinite) return infinite;
+    size_t large = first_too_large(b->line[GROSS], c->lines, n);
+    if (large < c->lines) return 1 + large;
     cede(c, b->line[GROSS], n, TALLY_STRIDE, b->line[CEDED], b->before);
     for (size_t j = 0; j < c->lines; j++) {
         const double *gross = b->line[GROSS] + j * TALLY_STRIDE;
@@ -71,7 +81,7 @@ size_t block_fill(struct block_amounts *b, const cover *c, size_t n)
         for (size_t i = 0; i < n; i++) retained[i] = gross[i] - ceded[i];
     }
     for (int v = 0; v < VIEWS; v++) add_lines(b->line[v], c->lines, n, b->total[v]);
-    return 0;
+    return sums_too_large(b, n) ? 1 + c->lines : 0;
 }
 
 /* ---- attaching and exhausting ---- */

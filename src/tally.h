@@ -30,7 +30,8 @@ status block_prepare(struct block_amounts *b, size_t lines, pool *p);
 status tally_prepare(tally *t, size_t lines, size_t rows, double level, pool *p);
 
 /* Fills what is ceded and retained of the n gross losses in the block, at most TALLY_BLOCK.
- * Returns 0, or 1 + the first line with a loss that is not finite. */
+ * Returns 0, or 1 + the first line with a loss that does not add up (risk.h), or 1 + the number of
+ * lines when only a sum of a row does not. */
 size_t block_fill(struct block_amounts *b, const cover *c, size_t n);
 
 /* Takes down n rows of a filled block. */

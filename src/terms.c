@@ -9,7 +9,8 @@
  * Special cases
  *   A leader with no loss cedes nothing of its followers either. Following passes through a chain
  *   even where a line between has no loss in a row. A row that cedes nothing before the
- *   aggregate cedes nothing after it.
+ *   aggregate cedes nothing after it. Without terms a negative loss, a gain, goes to the aggregate
+ *   like any other: it lowers the row's sum and bears its share of the recovery.
  *
  * Accuracy
  *   Rounding only; a ceded amount never exceeds share * limit.
@@ -116,6 +117,15 @@ static void cede_lines(const cover *c, const double *loss, size_t rows, size_t s
     }
 }
 
+/* Without terms each line goes to the aggregate as it is, gains too. */
+static void cede_all_or_nothing(const cover *c, const double *loss, size_t rows, size_t stride,
+                                double *ceded)
+{
+    for (size_t j = 0; j < c->lines; j++)
+        for (size_t i = 0; i < rows; i++)
+            ceded[j * stride + i] = c->aggregate ? loss[j * stride + i] : 0;
+}
+
 static void add_to(double *restrict sum, const double *restrict x, size_t rows)
 {
     for (size_t i = 0; i < rows; i++) sum[i] += x[i];
@@ -129,21 +139,19 @@ static void recovered_part(const term *aggregate, size_t rows, double *restrict 
     for (size_t i = 0; i < rows; i++) sum[i] = sum[i] > 0 ? layer(&copy, sum[i]) / sum[i] : 0;
 }
 
+/* 0 times a gain is to be 0 and not -0 */
 static void scale_by(double *restrict x, const double *restrict factor, size_t rows)
 {
-    for (size_t i = 0; i < rows; i++) x[i] *= factor[i];
+    for (size_t i = 0; i < rows; i++) x[i] = factor[i] > 0 ? x[i] * factor[i] : 0;
 }
 
 /* at most ROWS_AT_ONCE rows */
 static void cede_rows(const cover *c, const double *loss, size_t rows, size_t stride, double *ceded,
                       double *before)
 {
-    const term everything = { .limit = INFINITY, .share = c->aggregate ? 1 : 0 };
     double sum[ROWS_AT_ONCE] = { 0 };
     if (c->of) cede_lines(c, loss, rows, stride, ceded);
-    else
-        for (size_t j = 0; j < c->lines; j++)
-            cede_line(&everything, loss + j * stride, rows, ceded + j * stride);
+    else cede_all_or_nothing(c, loss, rows, stride, ceded);
     if (!c->aggregate && !before) return;
     for (size_t j = 0; j < c->lines; j++) add_to(sum, ceded + j * stride, rows);
     if (before) memcpy(before, sum, rows * sizeof *sum);

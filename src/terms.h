@@ -27,8 +27,8 @@ struct terms {
 /* The terms of a whole cover, checked and ready to apply: see cover_prepare(). */
 typedef struct {
     size_t lines;
-    const term *of;              /* NULL: lines have no terms; each goes whole to the aggregate, or
-                                    nothing is ceded when there is none */
+    const term *of;              /* NULL: lines have no terms; each goes whole to the aggregate,
+                                    gains too, or nothing is ceded when there is none */
     const size_t *leader;        /* of each line: the head of the chain it follows, itself when it
                                     follows none */
     const term *aggregate;       /* NULL when there is none */

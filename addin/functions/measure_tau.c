@@ -60,9 +60,10 @@ const function measure_tau_functions[] = {
             "1924). fisherz is tanh(atanh(tau) -/+ z sqrt(0.437/(n - 4))) (Fieller, Hartley & "
             "Pearson 1957), its error by the delta method, and needs five rows. jackknife leaves "
             "out each row in turn. bootstrap gives percentiles and standard deviation of 2,000 "
-            "resamples that the seed draws. Limits are kept within [-1;1]. Rows with a gap in x "
-            "or y are left out. #N/A with fewer than three rows, #DIV/0! when a column does not "
-            "vary.",
+            "resamples that the seed draws; the office waits for it, about a second for 10,000 rows "
+            "and 10 to 15 for 100,000, where free is as good. Limits are kept within [-1;1]. Rows "
+            "with a gap in x or y are left out. #N/A with fewer than three rows, #DIV/0! when a "
+            "column does not vary.",
         .examples = {
             { "INDEX(TAUBAND({44.4|45.9|41.9|53.3|44.7|44.1|50.7|45.2|60.1};"
               "{2.6|3.1|2.5|5.0|3.6|4.0|5.2|2.8|3.8});1;4)", "0.253575258104244" },

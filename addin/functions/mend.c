@@ -223,7 +223,9 @@ const function mend_functions[] = {
             "bit for bit. With a floor above 0, 1e-8 say, the result has a Cholesky factor. "
             "Firmness says how far each entry is to be trusted: the larger, the less it moves, and "
             "hold keeps it as it is. One triangle of firmness is enough, its diagonal does not "
-            "matter, and twice the firmness everywhere changes nothing. Entries held that cannot "
+            "matter, and twice the firmness everywhere changes nothing. Keep firmness within a "
+            "factor of a million: beyond, the more so with entries held, the search may end in "
+            "Err:523, as it may where the entries held only just stand together. Those that cannot "
             "stand together are #NUM!, and WHY names lines to look at. Methods: Newton on the dual "
             "(Qi & Sun 2006), with firmness augmented Lagrangians (Qi & Sun 2011).",
         .examples = {

@@ -35,6 +35,7 @@ static status cell_cede(const argument *in, value *out, report *r)
     status s = cover_from(in + 1, in + 2, losses->cols, &c, r);
     if (s != OK) return s;
     cede(&c, losses->at, losses->rows, losses->rows, ceded.at, NULL);
+    remark(r, "%zu row%s used", losses->rows, plural(losses->rows));
     return table_like(in, &ceded, out, r);
 }
 
@@ -163,6 +164,15 @@ static status refuse_size(size_t lines, double rows, double level, scheme how, r
                   rows, lines, level);
 }
 
+static status refuse_price(const pricing *price, const char **names, status s, report *r)
+{
+    if (s != OUT_OF_DOMAIN || !price->overflowed || !names) return s;
+    if (price->overflowed > price->lines)
+        return refuse(r, s, "the losses of a row add up to more than 1e300");
+    return refuse(r, s, "a loss of %s is beyond 1e300; if it is simulated, are a, b, c parameters, "
+                  "and not mean and sd? See MOMENTS", names[price->overflowed - 1]);
+}
+
 /* ---- REPORT ---- */
 
 enum { REPORT_LOSSES, REPORT_TERMS, REPORT_AGGREGATE, REPORT_LEVEL };
@@ -171,16 +181,18 @@ static status cell_report(const argument *in, value *out, report *r)
 {
     const samples *losses = &in[REPORT_LOSSES].data;
     double level = in[REPORT_LEVEL].number;
-    if (losses->rows == 0) return refuse(r, TOO_FEW, "losses has no rows");
+    remark(r, "%zu row%s used", losses->rows, plural(losses->rows));
     cover c;
     pricing price;
     status s = refuse_size(losses->cols, (double)losses->rows, level, SCHEME_PLAIN, r);
     if (s == OK) s = cover_from(in + REPORT_TERMS, in + REPORT_AGGREGATE, losses->cols, &c, r);
-    if (s == OK) s = price_losses(losses, &c, level, r->pool, &price);
     if (s != OK) return s;
     const char **const sources[] = { losses->names, in[REPORT_TERMS].terms.names };
+    const char **names = line_names(losses->cols, sources, 2, r->pool);
+    s = price_losses(losses, &c, level, r->pool, &price);
+    if (s != OK) return refuse_price(&price, names, s, r);
     struct facts f = { .rows = (double)losses->rows, .seed = NAN, .level = level, .notes = "" };
-    return write_block(&price, line_names(losses->cols, sources, 2, r->pool), &f, out, r);
+    return write_block(&price, names, &f, out, r);
 }
 
 /* ---- PRICE ---- */
@@ -279,14 +291,6 @@ static const char *heavy_lines(const struct margins *m, const char **names, pool
     return notes;
 }
 
-static status refuse_price(const pricing *price, const char **names, status s, report *r)
-{
-    if (s == OUT_OF_DOMAIN && price->overflowed && names)
-        return refuse(r, s, "a simulated loss of %s is beyond the range of numbers: are a, b, c "
-                      "parameters, and not mean and sd? See MOMENTS", names[price->overflowed - 1]);
-    return s;
-}
-
 static status cell_price(const argument *in, value *out, report *r)
 {
     const struct margins *margins = &in[PRICE_MARGINS].margins;
@@ -327,9 +331,9 @@ static status cell_price(const argument *in, value *out, report *r)
     "its excess; else that in which anything is ceded. Exhausting: with an aggregate, the " \
     "ceded sum before it reaches excess + limit; else every line that follows no other " \
     "reaches its own; empty when a limit is open. Without terms every line goes whole to the " \
-    "aggregate, and nothing is ceded when there is none. Errors are simulation errors only, " \
-    "empty while about four rows are not yet in the tail. inputs is the 64-bit FNV-1a hash " \
-    "of every argument as it came. "
+    "aggregate, gains too, and nothing is ceded when there is none. Errors are simulation " \
+    "errors only, empty while about four rows are not yet in the tail. inputs is the 64-bit " \
+    "FNV-1a hash of every argument as it came. "
 
 const function price_functions[] = {
     {
@@ -363,8 +367,9 @@ const function price_functions[] = {
                   "Settings: rows (100000), seed (1), scheme (plain, antithetic, latin, sobol), "
                   "level (0.99). Under plain the block equals JOINT.REPORT of JOINT.LOSSES of "
                   "JOINT.DRAW; under the other schemes rows are drawn in 16 independent parts, "
-                  "and errors come from their spread; sobol does best with 16 times a power of two "
-                  "of rows, such as 65536.",
+                  "and errors come from their spread, those of VaR and TVaR once about four rows "
+                  "of each part are in the tail; sobol does best with 16 times a power of two of "
+                  "rows, such as 65536.",
         .examples = {
             { "INDEX(PRICE(MODEL(\"independent\");{\"exponential\";1|\"exponential\";2};"
               "{0;\"\";1|0;\"\";1};;{\"rows\";1000});12;2)", "1000" },

@@ -20,7 +20,8 @@ static status sums_of(const argument *losses, const double **sums, report *r)
                losses->data.rows, plural(losses->data.rows));
     else
         remark(r, "%zu row%s used", losses->data.rows, plural(losses->data.rows));
-    return row_sums(&losses->data, r->pool, sums);
+    status s = row_sums(&losses->data, r->pool, sums);
+    return s == OUT_OF_DOMAIN ? refuse(r, s, "a loss or the sum of a row is beyond 1e300") : s;
 }
 
 /* ---- layers ---- */
@@ -117,6 +118,7 @@ static status cell_allocate(const argument *in, value *out, report *r)
                ? allocate_tail(losses, in[1].number, r->pool, part, alone)
                : allocate_covariance(losses, r->pool, part, alone);
     if (s == TOO_FEW) return refuse(r, s, "losses has %zu rows, which are too few", losses->rows);
+    if (s == OUT_OF_DOMAIN) return refuse(r, s, "the losses are too large to be added or squared");
     if (s == NO_VARIATION) return refuse(r, s, "the sum of the losses does not vary");
     if (s == OK) s = new_table(r, losses->cols, 3, out);
     for (size_t j = 0; s == OK && j < losses->cols; j++) {
@@ -241,11 +243,12 @@ const function risk_functions[] = {
         .group = group,
         .help = "Losses and how often they are reached or exceeded, ready to chart.",
         .detail = "Column 1 holds losses, rising from the smallest to the largest; column 2 the "
-                  "share of rows at or above each by rank, from 1 to 1/n. In between the shares "
-                  "fall geometrically, so that on a logarithmic axis the points lie evenly. With "
-                  "fewer rows than points every row is one.",
+                  "share of rows at or above each, from 1 down. In between the ranks fall "
+                  "geometrically, so that on a logarithmic axis the points lie evenly. With fewer "
+                  "rows than points every row is one; tied rows give the same point again.",
         .examples = {
             { "INDEX(EXCEEDANCE({30|10|20|40});3;1)", "30" },
+            { "INDEX(EXCEEDANCE({0|0|0|5});3;2)", "1" },
             { "INDEX(EXCEEDANCE({30|10|20|40});3;2)", "0.5" },
         },
         .params = {

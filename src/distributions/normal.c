@@ -47,11 +47,22 @@ static status from_moments(double mean, double sd, double threshold, margin *m)
     return OK;
 }
 
+/* The sd with divisor n, in units of the largest distance from the mean, so that no scale of the
+ * losses is too large or too small to be squared. */
+static double deviation(const double *loss, size_t n, double mean)
+{
+    double largest = 0, squares = 0;
+    for (size_t i = 0; i < n; i++) largest = fmax(largest, fabs(loss[i] - mean));
+    for (size_t i = 0; i < n; i++) {
+        double away = (loss[i] - mean) / largest;
+        squares += away * away;
+    }
+    return largest * sqrt(squares / (double)n);
+}
+
 static status fit(const double *loss, size_t n, margin *m, double *error)
 {
-    double count = (double)n, mean = mean_loss(loss, n), squares = 0;
-    for (size_t i = 0; i < n; i++) squares += (loss[i] - mean) * (loss[i] - mean);
-    double sd = sqrt(squares / count);
+    double count = (double)n, mean = mean_loss(loss, n), sd = deviation(loss, n, mean);
     *m = (margin){ &normal_distribution, mean, sd, NAN };
     error[0] = sd / sqrt(count);
     error[1] = sd / sqrt(2 * count);

@@ -111,6 +111,81 @@ static void parts_add_up(void **state)
     assert_close(errors / m, spread, 0.15);
 }
 
+/* 0.1 and 0.7 in every row: nothing varies, whatever their binary digits */
+static void alike_rows(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    double alone[2];
+    estimate part[2];
+    for (size_t i = 0; i < 20; i++) at[i] = i < 10 ? 0.1 : 0.7;
+    const samples still = { 10, 2, at, NULL };
+    assert_int_equal(allocate_covariance(&still, &p, part, alone), NO_VARIATION);
+    pool_empty(&p);
+}
+
+/* A line's part is its loss when that is the same in each of very many rows, and as exactly when the
+ * rows are tied only in their sum: here 0.1 and 0.3 in turn, on average 0.2. */
+static void parts_of_many_tied_rows(void **state)
+{
+    (void)state;
+    enum { MANY = LINES * N / 2 };
+    pool p = { 0 };
+    double alone[2];
+    estimate part[2];
+    const samples losses = { MANY, 2, at, NULL };
+    for (size_t i = 0; i < 2 * MANY; i++) at[i] = i < MANY ? 0.1 : 0.2;
+    assert_int_equal(allocate_tail(&losses, 0.99, &p, part, alone), OK);
+    assert_close(part[0].value, 0.1, 1e-15);
+    assert_close(part[1].value, 0.2, 1e-15);
+    assert_same(part[0].error, 0);
+    for (size_t i = 0; i < 2 * MANY; i++) at[i] = i % 2 == i / MANY ? 0.1 : 0.3;
+    assert_int_equal(allocate_tail(&losses, 0.99, &p, part, alone), OK);
+    assert_close(part[0].value, 0.2, 1e-15);
+    assert_close(part[1].value, 0.2, 1e-15);
+    pool_empty(&p);
+}
+
+/* At a level of 1 to the last bit the tail is a part of the largest row, and by definition the parts
+ * are its losses, even where lines are far larger than their sum in the row next to it. */
+static void the_very_largest_row(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    const double level = 1 - 1e-16;
+    double losses[] = { 1, 4e299, -9e299, -3, 5, -4e299, 9e299, 2 }, alone[2];
+    estimate part[2], tvar;
+    const double *sums;
+    const samples four = { 4, 2, losses, NULL };
+    assert_true(level < 1);
+    assert_int_equal(allocate_tail(&four, level, &p, part, alone), OK);
+    assert_close(part[0].value, 1, 1e-15);
+    assert_close(part[1].value, 5, 1e-15);
+    assert_same(alone[0], 4e299);
+    assert_same(alone[1], 9e299);
+    assert_int_equal(row_sums(&four, &p, &sums), OK);
+    assert_int_equal(tail_values_at_risk(sums, 4, &level, 1, &p, &tvar), OK);
+    assert_same(tvar.value, 6);
+    pool_empty(&p);
+}
+
+static void too_large(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    double sum[] = { 1, 9e299, 2, 9e299 }, loss[] = { 1, 1e308, 2, -1e308 },
+           square[] = { 1, 2e200, 5e199, 7 }, alone[2];
+    estimate part[2];
+    const double *sums;
+    const samples no_sum = { 2, 2, sum, NULL }, no_loss = { 2, 2, loss, NULL },
+                  no_square = { 2, 2, square, NULL };
+    assert_int_equal(row_sums(&no_sum, &p, &sums), OUT_OF_DOMAIN);
+    assert_int_equal(row_sums(&no_loss, &p, &sums), OUT_OF_DOMAIN);
+    assert_int_equal(allocate_tail(&no_sum, 0.5, &p, part, alone), OUT_OF_DOMAIN);
+    assert_int_equal(allocate_covariance(&no_square, &p, part, alone), OUT_OF_DOMAIN);
+    pool_empty(&p);
+}
+
 static void refusals(void **state)
 {
     (void)state;
@@ -131,6 +206,10 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(parts_of_a_normal_model),
         cmocka_unit_test(parts_add_up),
+        cmocka_unit_test(alike_rows),
+        cmocka_unit_test(parts_of_many_tied_rows),
+        cmocka_unit_test(the_very_largest_row),
+        cmocka_unit_test(too_large),
         cmocka_unit_test(refusals),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -106,6 +106,41 @@ static void singular_neighbours(void **unused)
     assert_null(p.last);
 }
 
+static bool is_feasible(const double *m, size_t d)
+{
+    pool p = { .last = NULL };
+    bool feasible = false;
+    assert_int_equal(matrix_feasible(m, d, 0, &feasible, &p), OK);
+    pool_empty(&p);
+    return feasible;
+}
+
+/* A matrix that is feasible by its eigenvalues, singular and off by the noise of a sheet's rounding,
+ * has leeway by definition: the entry as it stands is one that will do. And what will do lies
+ * between the limits, as far as its last digits allow. */
+static void feasible_singular_matrices(void **unused)
+{
+    (void)unused;
+    static const double noises[] = { 0, 1e-16, 4e-15, 1e-13, 1e-12 };
+    uint64_t state = 77;
+    size_t checked = 0;
+    for (size_t round = 0; round < effort(600); round++) {
+        pool p = { .last = NULL };
+        size_t d = 4 + random_below(&state, 12), factors = 1 + random_below(&state, d - 1);
+        double *m = noisy_matrix(&state, d, factors, noises[round % 5], &p), low, high;
+        size_t row = random_below(&state, d), column = (row + 1 + random_below(&state, d - 1)) % d;
+        if (is_feasible(m, d)) {
+            double was = m[row * d + column];
+            assert_int_equal(entry_leeway(m, d, row, column, &low, &high, &p), OK);
+            assert_true(low <= high);
+            assert_true(low - 1e-4 <= was && was <= high + 1e-4);
+            checked++;
+        }
+        pool_empty(&p);
+    }
+    assert_true(checked > effort(600) / 2);
+}
+
 static void no_value_helps_when_the_others_clash(void **unused)
 {
     (void)unused;
@@ -163,6 +198,27 @@ static void clashes_are_those_that_eigenvalues_show(void **unused)
     }
 }
 
+/* Whatever is held, it is the head of the full list. */
+static void the_worst_come_first(void **unused)
+{
+    (void)unused;
+    uint64_t state = 12;
+    pool p = { .last = NULL };
+    size_t n, all, few;
+    double *m = noisy_matrix(&state, 40, 3, 0.6, &p);
+    clash *whole, *head;
+    assert_int_equal(clashing_triples(m, 40, 100000, &whole, &n, &all, &p), OK);
+    assert_int_equal(n, all);
+    assert_true(all > 1000);
+    for (size_t k = 1; k < n; k++) assert_true(whole[k - 1].lowest <= whole[k].lowest);
+    for (size_t most = 0; most <= all; most = 3 * most + 1) {
+        assert_int_equal(clashing_triples(m, 40, most, &head, &few, &all, &p), OK);
+        assert_int_equal(few, most);
+        assert_memory_equal(head, whole, few * sizeof *head);
+    }
+    pool_empty(&p);
+}
+
 /* The matrix of law holds no clash. Of 0.9, 0.9 and 0 (chain99 of nearest_correlation_summary.csv)
  * the lowest eigenvalue is 1 - 0.9 sqrt 2. */
 static void known_clashes(void **unused)
@@ -193,6 +249,14 @@ static void every_allocation_can_fail(void **unused)
         assert_int_equal(entry_leeway(m, 4, 0, 1, &low, &high, &p), NO_MEMORY);
         assert_null(p.last);
     }
+    const double copies[] = { 1, 0, .5, .6, 0, 1, .5, .5, .5, .5, 1, 1, .6, .5, 1, 1 };
+    status s = NO_MEMORY;
+    for (size_t fail = 1; s == NO_MEMORY; fail++) {
+        pool few = { .fail_at = fail };
+        s = entry_leeway(copies, 4, 0, 1, &low, &high, &few);
+        assert_null(few.last);
+    }
+    assert_int_equal(s, OUT_OF_DOMAIN);
     pool p = { .fail_at = 1 };
     clash *found;
     size_t n, all;
@@ -206,8 +270,10 @@ int main(void)
         cmocka_unit_test(limits_by_partial_correlations),
         cmocka_unit_test(eigenvalues_change_sign_at_the_limits),
         cmocka_unit_test(singular_neighbours),
+        cmocka_unit_test(feasible_singular_matrices),
         cmocka_unit_test(no_value_helps_when_the_others_clash),
         cmocka_unit_test(clashes_are_those_that_eigenvalues_show),
+        cmocka_unit_test(the_worst_come_first),
         cmocka_unit_test(known_clashes),
         cmocka_unit_test(every_allocation_can_fail),
     };

@@ -100,7 +100,48 @@ static void nearly_alike(void **state)
     for (int i = 0; i < 50; i++) squares += (loss[i] - 1000.0245) * (loss[i] - 1000.0245);
     assert_close(mean, 1000.0245, 1e-12);
     assert_close(sd, sqrt(squares / 50), 1e-4);
+    assert_close(f.log_likelihood, 140.97235526234546, 1e-6);              /* mpmath, 60 digits */
     assert_int_equal(fit_margin(distribution_named("weibull"), loss, 50, &f, &row), OK);
+}
+
+/* Likelihoods of gammas whose shape is 96, 5e9 and 2e14, which are all but normal then, must not
+ * mislead: values from mpmath to 60 digits. */
+static void likelihood_of_large_shapes(void **state)
+{
+    (void)state;
+    static const double plain[] = { 9, 10, 10.5, 11, 12.25 };
+    double alike[5];
+    margin_fit f, normal;
+    size_t row;
+    for (int i = 0; i < 5; i++) alike[i] = 1000 + (0.5 * i - 1) * 1e-4;
+    assert_int_equal(fit_margin(distribution_named("gamma"), plain, 5, &f, &row), OK);
+    assert_close(f.log_likelihood, -7.4409847012116311, 1e-13);
+    assert_int_equal(fit_margin(distribution_named("gamma"), alike, 5, &f, &row), OK);
+    assert_close(f.log_likelihood, 40.689877146512516, 1e-6);
+    assert_int_equal(fit_margin(distribution_named("normal"), alike, 5, &normal, &row), OK);
+    assert_within(f.aic, normal.aic, 1e-4);
+}
+
+/* Losses in another unit: mean, sd and errors are scaled, the log-likelihood less n log of it. */
+static void any_unit(void **state)
+{
+    (void)state;
+    static const double unit[] = { 0x1p-1000, 0x1p-600, 0x1p600, 0x1p1000 };
+    margin_fit f, scaled;
+    double loss[6] = { 1, 2, 3, 5, 9, 40 }, other[6];
+    size_t row;
+    assert_int_equal(fit_margin(distribution_named("normal"), loss, 6, &f, &row), OK);
+    assert_close(f.margin.b, sqrt(1120 / 6.0), 1e-15);     /* 81 + 64 + 49 + 25 + 1 + 900 */
+    for (size_t k = 0; k < 4; k++) {
+        for (size_t i = 0; i < 6; i++) other[i] = unit[k] * loss[i];
+        assert_int_equal(fit_margin(distribution_named("normal"), other, 6, &scaled, &row), OK);
+        assert_same(scaled.margin.a, unit[k] * f.margin.a);
+        assert_same(scaled.margin.b, unit[k] * f.margin.b);
+        assert_same(scaled.error[0], unit[k] * f.error[0]);
+        assert_close(scaled.log_likelihood, f.log_likelihood - 6 * log(unit[k]), 1e-13);
+    }
+    const double huge[] = { 1e308, 1.2e308, 1.5e308 };
+    assert_int_equal(fit_margin(distribution_named("normal"), huge, 3, &f, &row), NOT_SETTLED);
 }
 
 static void refusals(void **state)
@@ -125,6 +166,8 @@ int main(void)
         cmocka_unit_test(errors_are_the_spread),
         cmocka_unit_test(fits_scale),
         cmocka_unit_test(nearly_alike),
+        cmocka_unit_test(likelihood_of_large_shapes),
+        cmocka_unit_test(any_unit),
         cmocka_unit_test(refusals),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -69,6 +69,43 @@ static void error_of_normal_sd(void **state)
     assert_within(moments_sd(&m).value, 20, 4 * moments_sd(&m).error);
 }
 
+/* 0.1 is no sum of powers of two, and three of them do not add up to three times one: that must
+ * not make alike numbers vary. */
+static void alike_is_alike(void **state)
+{
+    (void)state;
+    static const double of[] = { 0.1, 0.7, 1e-3, 3.3e9, -0.3 };
+    for (size_t k = 0; k < 5; k++) {
+        static double x[N];
+        running_moments m = { 0 };
+        for (size_t i = 0; i < N; i++) x[i] = of[k];
+        for (size_t n = 1; n < 200; n += 3) moments_add(&m, x, n);
+        moments_add(&m, x, N);
+        assert_same(m.mean, of[k]);
+        assert_same(m.second, 0);
+        assert_same(moments_sd(&m).value, 0);
+    }
+}
+
+/* What is beyond the range of numbers is not known, and not 0. */
+static void powers_out_of_range(void **state)
+{
+    (void)state;
+    const double large[] = { 1e80, 2e80, 5e80 }, larger[] = { 1e200, 2e200, 5e200 };
+    running_moments m = { 0 }, most = { 0 };
+    moments_add(&m, large, 3);
+    assert_close(moments_sd(&m).value, sqrt(13.0 / 3) * 1e80, 1e-14);      /* 25/9 + 4/9 + 49/9 */
+    assert_true(isnan(moments_sd(&m).error));
+    moments_add(&most, larger, 3);
+    assert_close(moments_mean(&most).value, 8e200 / 3, 1e-15);
+    assert_true(isnan(moments_mean(&most).error));
+    assert_true(isnan(moments_sd(&most).value) && isnan(moments_sd(&most).error));
+    const double near[] = { 0x1p530, 0x1p530 + 0x1p490, 0x1p530 + 0x1p491 };
+    running_moments close = { 0 };
+    moments_add(&close, near, 3);
+    assert_close(moments_sd(&close).value, 0x1p490, 1e-12);                /* 1 + 0 + 1, by 2 */
+}
+
 static void edges(void **state)
 {
     (void)state;
@@ -90,6 +127,8 @@ int main(void)
         cmocka_unit_test(blocks_give_the_whole),
         cmocka_unit_test(small_sample),
         cmocka_unit_test(error_of_normal_sd),
+        cmocka_unit_test(alike_is_alike),
+        cmocka_unit_test(powers_out_of_range),
         cmocka_unit_test(edges),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

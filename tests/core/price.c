@@ -289,6 +289,56 @@ static void schemes_agree(void **state)
     pool_empty(&d.p);
 }
 
+/* Two standard normals with correlation 1/2 add up to a normal with sd sqrt 3; truth holds its
+ * quantile z and its density at z / 0.01 at level 0.99 (scipy.stats.norm). How far the figures lie
+ * from these is what the errors say, even where parts have but five rows in the tail. */
+static void errors_of_short_parts(void **state)
+{
+    (void)state;
+    static const double truth[] = { 2.3263478740408408, 2.6652142203458075 };
+    for (int how = SCHEME_ANTITHETIC; how <= SCHEME_SOBOL; how++) {
+        double away[2] = { 0 }, errors[2] = { 0 };
+        for (size_t round = 0; round < effort(200); round++) {
+            struct deal d;
+            set_model(&d, "gaussian", 2, 0.5);
+            d.of[0] = d.of[1] = margin_of("normal", 0, 1);
+            set_cover(&d, false, false);
+            d.sim.how = (scheme)how;
+            d.sim.rows = PRICE_REPLICATES * 500;
+            d.sim.seed = 1 + round;
+            run(&d);
+            for (size_t k = 0; k < 2; k++) {
+                estimate e = figure(&d, k ? PRICE_SHORTFALL : PRICE_VALUE_AT_RISK, GROSS);
+                away[k] += pow(e.value - truth[k] * sqrt(3), 2);
+                errors[k] += e.error * e.error;
+            }
+            pool_empty(&d.p);
+        }
+        for (size_t k = 0; k < 2; k++) assert_within(sqrt(away[k] / errors[k]), 1, 0.25);
+    }
+}
+
+/* With fewer than about four rows of each part in the tail the tail figures have no error, as under
+ * plain; the others have. */
+static void no_errors_without_a_tail(void **state)
+{
+    (void)state;
+    struct deal d;
+    set_layers(&d, "gaussian", 0.5);
+    set_cover(&d, true, true);
+    for (int how = SCHEME_ANTITHETIC; how <= SCHEME_SOBOL; how++) {
+        d.sim.how = (scheme)how;
+        d.sim.rows = PRICE_REPLICATES * 300;
+        run(&d);
+        for (size_t i = 0; i < price_rows(3); i++) {
+            bool tail = i == PRICE_VALUE_AT_RISK || i == PRICE_SHORTFALL || i >= PRICE_LINES + 3;
+            if (isnan(figure(&d, i, CEDED).value)) continue;
+            assert_int_equal(isnan(figure(&d, i, CEDED).error), tail);
+        }
+    }
+    pool_empty(&d.p);
+}
+
 /* ---- trouble ---- */
 
 static void overflow_is_told(void **state)
@@ -302,6 +352,31 @@ static void overflow_is_told(void **state)
     d.sim.rows = 10000;
     assert_int_equal(price_model(&d.sim, &d.p, &d.out), OUT_OF_DOMAIN);
     assert_int_equal(d.out.overflowed, 2);
+    pool_empty(&d.p);
+}
+
+/* each loss is a number but a row's sum is none, and the other way round the sum is 0 */
+static void sums_can_overflow(void **state)
+{
+    (void)state;
+    struct deal d;
+    set_model(&d, "independent", 2, 0);
+    set_cover(&d, false, false);
+    double over[] = { 1, 1e308, 2, 1e308 }, beyond[] = { 1, 1e308, 2, -1e308 },
+           fits[] = { 1, 9e299, 2, -9e299 };
+    const samples no_sum = { 2, 2, over, NULL }, no_loss = { 2, 2, beyond, NULL },
+                  fine = { 2, 2, fits, NULL };
+    assert_int_equal(price_losses(&no_loss, &d.cover, 0.5, &d.p, &d.out), OUT_OF_DOMAIN);
+    assert_int_equal(d.out.overflowed, 1);
+    assert_int_equal(price_losses(&no_sum, &d.cover, 0.5, &d.p, &d.out), OUT_OF_DOMAIN);
+    over[1] = over[3] = 9e299;
+    assert_int_equal(price_losses(&no_sum, &d.cover, 0.5, &d.p, &d.out), OUT_OF_DOMAIN);
+    assert_int_equal(d.out.overflowed, 3);
+    assert_int_equal(price_losses(&fine, &d.cover, 0.5, &d.p, &d.out), OK);
+    assert_same(figure(&d, PRICE_MEAN, GROSS).value, 1.5);
+    assert_close(figure(&d, PRICE_LINES, GROSS).value, 4.5e299, 1e-15);
+    for (size_t row = PRICE_VALUE_AT_RISK; row < price_rows(2); row++)
+        assert_true(isfinite(figure(&d, row, GROSS).value));
     pool_empty(&d.p);
 }
 
@@ -366,7 +441,10 @@ int main(void)
         cmocka_unit_test(model_equals_its_losses),
         cmocka_unit_test(layers_of_an_exponential),
         cmocka_unit_test(schemes_agree),
+        cmocka_unit_test(errors_of_short_parts),
+        cmocka_unit_test(no_errors_without_a_tail),
         cmocka_unit_test(overflow_is_told),
+        cmocka_unit_test(sums_can_overflow),
         cmocka_unit_test(one_row),
         cmocka_unit_test(memory_can_fail),
         cmocka_unit_test(memory_is_bounded),

@@ -256,6 +256,21 @@ static void labels_of_the_block(void **state)
                      at(labelled("TVaR"), k), 1e-13);
 }
 
+/* what is too large to add up is said to be, and where */
+static void too_large(void **state)
+{
+    (void)state;
+    value in[] = { cells(&memory, "motor,fire;1,2;9e299,9e299"), number(0.5),
+                   text("covariance") };
+    refused("report", in, 1, OUT_OF_DOMAIN, "the losses of a row add up to more than 1e300");
+    refused("tvar", in, 2, OUT_OF_DOMAIN, "a loss or the sum of a row is beyond 1e300");
+    refused("allocate", in, 2, OUT_OF_DOMAIN, "the losses are too large to be added or squared");
+    in[0] = cells(&memory, "motor,fire;1,2;3,1e308");
+    refused("report", in, 1, OUT_OF_DOMAIN, "a loss of fire is beyond 1e300");
+    in[0] = cells(&memory, "1,2;3,1e200");
+    refused("allocate", in, 3, OUT_OF_DOMAIN, "the losses are too large to be added or squared");
+}
+
 /* names that are missing or come twice still make labels that a lookup can tell apart */
 static void labels_are_unique(void **state)
 {
@@ -392,6 +407,7 @@ int main(void)
         cmocka_unit_test_teardown(layer_cells, done),
         cmocka_unit_test_teardown(ceded_cells, done),
         cmocka_unit_test_teardown(labels_of_the_block, done),
+        cmocka_unit_test_teardown(too_large, done),
         cmocka_unit_test_teardown(labels_are_unique, done),
         cmocka_unit_test_teardown(price_equals_report, done),
         cmocka_unit_test_teardown(inputs_tell_changes, done),

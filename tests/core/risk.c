@@ -117,6 +117,22 @@ static void layers_simulated(void **state)
     csv_free(t);
 }
 
+/* the mean of very many equal payments is one of them, and nothing varies */
+static void layers_of_equal_losses(void **state)
+{
+    (void)state;
+    struct layer_cost c;
+    for (size_t i = 0; i < N; i++) x[i] = 0.1;
+    assert_int_equal(layer_cost_of(x, N, 0, INFINITY, &c), OK);
+    assert_same(c.mean, 0.1);
+    assert_same(c.sd, 0);
+    for (size_t i = 0; i < N; i++) x[i] = i % 2 ? 0.1 : 0.3;
+    assert_int_equal(layer_cost_of(x, N, 0, 0.25, &c), OK);
+    assert_close(c.mean, 0.175, 1e-14);
+    assert_close(c.sd, 0.075 * sqrt(N / (N - 1.0)), 1e-14);
+    assert_same(c.exhausting, 0.5);
+}
+
 /* With an exponential of mean 1 and a = 1 - level, the asymptotic errors are sqrt(level / (a
  * n)) for the value at risk (its density there is a) and sqrt((2 - a) / (a n)) for the
  * shortfall. */
@@ -223,6 +239,28 @@ static void exceedance_of_a_ramp(void **state)
     pool_empty(&p);
 }
 
+/* with ties, by counting: the share of losses at or above each */
+static void exceedance_with_ties(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    double at[40], share[40], zeros[8] = { 0, 0, 0, 5, 0, 0, 0, 0 };
+    uint64_t random = 6;
+    assert_int_equal(exceedance_curve(zeros, 8, 2, &p, at, share), OK);
+    assert_true(at[0] == 0 && share[0] == 1 && at[1] == 5 && share[1] == 0.125);
+    for (size_t round = 0; round < effort(50); round++) {
+        size_t n = 2 + random_below(&random, 2000), points = 2 + random_below(&random, 39);
+        for (size_t i = 0; i < n; i++) x[i] = floor(exp(6 * random_uniform(&random) - 3));
+        assert_int_equal(exceedance_curve(x, n, points, &p, at, share), OK);
+        for (size_t i = 0; i < exceedance_points(n, points); i++) {
+            size_t count = 0;
+            for (size_t k = 0; k < n; k++) count += x[k] >= at[i];
+            assert_same(share[i], (double)count / (double)n);
+        }
+    }
+    pool_empty(&p);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -230,11 +268,13 @@ int main(void)
         cmocka_unit_test(closed_forms_simulated),
         cmocka_unit_test(closed_forms_stratified),
         cmocka_unit_test(layers_simulated),
+        cmocka_unit_test(layers_of_equal_losses),
         cmocka_unit_test(errors_of_the_exponential),
         cmocka_unit_test(errors_cover),
         cmocka_unit_test(too_few_to_tell),
         cmocka_unit_test(rows_are_summed),
         cmocka_unit_test(exceedance_of_a_ramp),
+        cmocka_unit_test(exceedance_with_ties),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

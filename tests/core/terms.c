@@ -90,6 +90,27 @@ static void without_terms(void **state)
     pool_empty(&p);
 }
 
+/* A gain goes whole to the aggregate as well: of 100 - 30 = 70 it pays 20 beyond 50, which the lines
+ * share as 100 to -30. */
+static void gains_without_terms(void **state)
+{
+    (void)state;
+    pool p = { 0 };
+    const double loss[] = { 100, 10, -30, -30 };           /* two rows of two lines */
+    const term aggregate = { 50, none, 1, 0 };
+    double ceded[4], before[2];
+    cover c = covered(NULL, 2, &aggregate, &p);
+    cede(&c, loss, 2, 2, ceded, before);
+    assert_same(before[0], 70);
+    assert_close(ceded[0] + ceded[2], 20, 1e-15);
+    assert_close(ceded[0], 20 * 100 / 70.0, 1e-15);
+    assert_close(ceded[2], -20 * 30 / 70.0, 1e-15);
+    assert_same(before[1], -20);
+    assert_same(ceded[1], 0);
+    assert_same(ceded[3], 0);
+    pool_empty(&p);
+}
+
 /* what is ceded and kept adds up, and no line cedes more than its loss */
 static void never_more_than_the_loss(void **state)
 {
@@ -151,6 +172,7 @@ int main(void)
         cmocka_unit_test(followers),
         cmocka_unit_test(aggregate_is_shared),
         cmocka_unit_test(without_terms),
+        cmocka_unit_test(gains_without_terms),
         cmocka_unit_test(never_more_than_the_loss),
         cmocka_unit_test(faults),
     };
