@@ -266,7 +266,9 @@ static void too_large(void **state)
     refused("tvar", in, 2, OUT_OF_DOMAIN, "a loss or the sum of a row is beyond 1e300");
     refused("allocate", in, 2, OUT_OF_DOMAIN, "the losses are too large to be added or squared");
     in[0] = cells(&memory, "motor,fire;1,2;3,1e308");
-    refused("report", in, 1, OUT_OF_DOMAIN, "a loss of fire is beyond 1e300");
+    refused("report", in, 1, OUT_OF_DOMAIN,
+            "a loss of fire is beyond 1e300; if it is simulated, are a, b, c parameters, and not "
+            "mean and sd? See MOMENTS");
     in[0] = cells(&memory, "1,2;3,1e200");
     refused("allocate", in, 3, OUT_OF_DOMAIN, "the losses are too large to be added or squared");
 }

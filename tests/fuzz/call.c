@@ -62,6 +62,7 @@ static void keep(const value *v)
 static const char *wrong_with(status s, const report *r, const value *out)
 {
     if (s < OK || s > NO_MEMORY) return "a status that is none";
+    if (r->undefined) return "a number that is undefined without a reason";
     if (s != OK) return *r->why ? NULL : "a refusal without a sentence";
     return fault_of_result(out);
 }
