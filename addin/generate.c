@@ -6,6 +6,7 @@
  * reference for users, and for the office tests the documented examples and the kinds of the
  * parameters as tables.
  */
+#include "family_texts.h"
 #include "function.h"
 
 #include <ctype.h>
@@ -277,15 +278,38 @@ static void each_group(void (*say)(const char *heading))
         }
 }
 
+static void reference_family(const family *f, pool *p)
+{
+    printf("| %s | %s | %s | %s | %s | %s | %s | %s |\n", f->word, parameter_text(f, p),
+           tau_range(f, p), rho_range(f, p), dimensions_text(f, p), tails_text(f), f->use,
+           f->source);
+}
+
+static void reference_families(void)
+{
+    pool p = { 0 };
+    puts("## Copula families\n\n"
+         "Written from their rows in `src/copulas`. Ranges are those of the unrotated copula; tau "
+         "and Spearman's rho of a pair. [ and ] mean that an end belongs to the range, ( and ) "
+         "that it does not. Tails: corners with tail dependence; rotation 180 exchanges them. Rotations "
+         "0, 90, 180, 270 for pairs, 0 and 180 beyond.\n\n"
+         "| family | parameter | tau | rho | dimensions | tails | for | source |\n"
+         "|---|---|---|---|---|---|---|---|");
+    for (const family *const *f = families; *f; f++) reference_family(*f, &p);
+    putchar('\n');
+    pool_empty(&p);
+}
+
 static void reference(void)
 {
     puts("# Function reference\n\n"
          "Written from the function tables in `addin/functions`; each example runs as a test in "
-         "the office. Formulas are as typed in an English office. What holds for every function stands "
-         "in the README under Conventions.\n");
+         "the office. Formulas are as typed in an English office. What holds for every function "
+         "stands in the README under Conventions.\n");
     each_group(contents_group);
     putchar('\n');
     each_group(reference_group);
+    reference_families();
 }
 
 /* ---- the examples: function, formula, what it gives ---- */

@@ -1,38 +1,21 @@
 /* model_checks.c - what makes a copula admissible. */
 #include "models.h"
+#include "family_texts.h"
 #include "../src/correlation.h"
 #include "../src/family.h"
 
 #include <math.h>
 
-enum { LOW_END_OPEN = 1, HIGH_END_OPEN = 2, MOST_COLUMNS = 16384, MOST_IN_MATRIX = 4000 };
+enum { MOST_COLUMNS = 16384, MOST_IN_MATRIX = 4000 };
 
 static const double HIGHEST_DF = 1e9;
 
-static const char *range_text(double low, double high, int open, pool *p)
-{
-    return text_from(p, "%s%g;%g%s", open & LOW_END_OPEN ? "(" : "[", low, high,
-                     open & HIGH_END_OPEN ? ")" : "]");
-}
-
 /* Where pairs have more than higher dimensions, the end that those have belongs to them. */
-static double lowest_theta(const family *f, size_t dimension, int *open)
+double lowest_theta(const family *f, size_t dimension, int *open)
 {
     bool beyond = dimension > 2 && f->theta_low_beyond_pairs > f->theta_low;
     *open = beyond ? f->theta_open & HIGH_END_OPEN : f->theta_open;
     return beyond ? f->theta_low_beyond_pairs : f->theta_low;
-}
-
-const char *theta_range(const family *f, size_t dimension, pool *p)
-{
-    int open;
-    double low = lowest_theta(f, dimension, &open);
-    return range_text(low, f->theta_high, open, p);
-}
-
-const char *tau_range(const family *f, pool *p)
-{
-    return range_text(f->tau_low, f->tau_high, f->tau_open, p);
 }
 
 status check_columns(const family *f, double dimension, report *r)

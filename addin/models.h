@@ -37,10 +37,9 @@ status check_degrees(double rotation, report *r);
 /* The block of a copula. */
 status write_copula(const copula *c, value *out, report *r);
 
-/* "[1;1e+17]": the theta of a family in this dimension; NULL when there is no memory. */
-const char *theta_range(const family *f, size_t dimension, pool *p);
+enum { LOW_END_OPEN = 1, HIGH_END_OPEN = 2 };    /* of the ranges in a family's row */
 
-/* "[0;1)": the tau that a pair of the family can have. */
-const char *tau_range(const family *f, pool *p);
+/* The low end of a family's theta in this dimension, and which ends are excluded. */
+double lowest_theta(const family *f, size_t dimension, int *open);
 
 #endif

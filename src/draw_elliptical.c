@@ -7,12 +7,7 @@
  *   Giorgi, Lindskog & McNeil 2003 for the grouped one).
  *
  * Special cases
- *   A pivot of the factorisation that is zero to rounding gives a zero column: the matrix is
- *   singular and the copula lives on fewer dimensions. Its row is scaled back to length one, so
- *   that the margin stays uniform. A pivot far below zero can still be rounding, enlarged by small
- *   pivots before it, in a matrix that is feasible to -1e-12 d (correlation.h). The factor then is
- *   that of (M + e I) / (1 + e), e = 2e-12 d, which has pivots of 1e-12 d at least.
- *   Where it has no factor either: OUT_OF_DOMAIN, no correlation matrix.
+ *   A singular matrix: see factor.c.
  *
  * Accuracy
  *   Sums run in a fixed order, without contraction: the bits do not depend on the machine.
@@ -20,50 +15,11 @@
 #include "draw.h"
 
 #include "draw_block.h"
+#include "factor.h"
 #include "normal.h"
 #include "student.h"
 
 #include <math.h>
-
-static const double ROUNDING = 0x1p-50, NEGATIVE = -1e-8, LIFT = 2e-12;
-
-static void scale_to_unit_length(double *row, size_t n)
-{
-    double sum = 0.0;
-    for (size_t k = 0; k < n; k++) sum += row[k] * row[k];
-    for (size_t k = 0; k < n; k++) row[k] /= sqrt(sum);
-}
-
-/* Lower triangular l, row by row, with l l' the matrix whose correlations are `kept` times those
- * given; pivots are zero where it is singular. */
-static status factorise(const double *matrix, size_t d, double kept, double *l)
-{
-    for (size_t i = 0; i < d; i++) {
-        double *row = l + i * d;
-        for (size_t j = 0; j <= i; j++) {
-            const double *other = l + j * d;
-            double rest = matrix[i * d + j] * (j < i ? kept : 1.0);
-            for (size_t k = 0; k < j; k++) rest -= row[k] * other[k];
-            if (j < i) {
-                row[j] = other[j] > 0.0 ? rest / other[j] : 0.0;
-            } else if (rest > ROUNDING * (double)d) {
-                row[i] = sqrt(rest);
-            } else if (rest > NEGATIVE) {
-                row[i] = 0.0;
-                scale_to_unit_length(row, i);
-            } else {
-                return OUT_OF_DOMAIN;
-            }
-        }
-    }
-    return OK;
-}
-
-static status factor_of(const double *matrix, size_t d, double *l)
-{
-    status s = factorise(matrix, d, 1.0, l);
-    return s == OK ? OK : factorise(matrix, d, 1.0 / (1.0 + LIFT * (double)d), l);
-}
 
 FOR_EACH_PROCESSOR
 static void scale_column(double factor, double *restrict x)
@@ -101,7 +57,7 @@ static status prepare(struct elliptical *e, const copula *c, pool *p)
     e->factor = pool_take_zeroed(p, e->d * e->d, sizeof *e->factor);
     e->x = pool_take(p, e->d, sizeof *e->x);
     if (!e->factor || !e->x) return NO_MEMORY;
-    return factor_of(c->matrix, e->d, e->factor);
+    return correlation_factor(c->matrix, e->d, e->factor);
 }
 
 static void normal_block(const struct elliptical *e, const struct draw_rows *where, size_t start)

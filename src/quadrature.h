@@ -11,4 +11,20 @@ enum { QUADRATURE_POINTS = 20 };
 void quadrature_points(double from, double to, double x[QUADRATURE_POINTS],
                        double weights[QUADRATURE_POINTS]);
 
+/* The same for a function that needs more beside x. */
+double integral_of(double (*f)(double x, const void *with), const void *with, double from,
+                   double to);
+
+/* The integral over an interval that is halved until both halves agree with the whole, to 1e-12 of
+ * their sum or to `enough`, or have been halved 200 times: about 1e-14 relative for a positive f
+ * that bends anywhere. */
+double adapted_integral(double (*f)(double x, const void *with), const void *with, double from,
+                        double to, double enough);
+
+/* The integral of a positive f from `from` to infinity (length > 0) or minus infinity (length < 0),
+ * over panels the first of which has this length and each next twice that of the one before, until
+ * one adds nothing. f must not rise again once it has fallen to nothing. */
+double outward_integral(double (*f)(double x, const void *with), const void *with, double from,
+                        double length);
+
 #endif

@@ -4,7 +4,8 @@
  *   rho grows with tau, so tau is searched for and theta is that of tau. The search is bracketed by
  *   1 - sqrt(2 (1 - rho)) <= tau (Durbin & Stuart 1951) and tau <= rho, which holds for pairs that
  *   are left-tail decreasing and right-tail increasing (Caperaa & Genest 1993), as all positively
- *   dependent ones here are; for negative rho the signs change.
+ *   dependent ones here are; for negative rho the signs change. Families whose rho and tau reach
+ *   differently far have a search of their own.
  *
  * Special cases
  *   rho = 0 and, where the family reaches them, -1 and 1 have the theta of the same tau.
@@ -29,6 +30,7 @@ static double over(double tau, const void *with)
 
 status theta_from_rho(const family *f, double rho, double df, double *theta)
 {
+    if (f->theta_from_spearman) return f->theta_from_spearman(rho, theta);
     double tau = rho, size = fabs(rho);
     status s = f->theta_from_tau(tau, theta);
     if (s != OK || rho == 0 || size == 1) return s;

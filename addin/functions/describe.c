@@ -119,13 +119,19 @@ static struct part part_beside(const table *t, size_t row)
     return p;
 }
 
+/* A number as a result: infinite ones, which a formula around the block may make, are errors. */
+static double shown(double x)
+{
+    return isinf(x) ? fault(OUT_OF_DOMAIN) : x;
+}
+
 /* The content of one cell as a result. */
 static value content(const table *t, size_t row, size_t col)
 {
     const char *word = col < t->cols ? word_at(t, row, col) : NULL;
     if (word) return (value){ .is = IS_TEXT, .text = word };
     if (col >= t->cols || empty_at(t, row, col)) return (value){ .is = IS_TEXT, .text = "" };
-    return (value){ .is = IS_NUMBER, .number = t->at[row * t->cols + col] };
+    return (value){ .is = IS_NUMBER, .number = shown(t->at[row * t->cols + col]) };
 }
 
 static status copy_part(const table *t, const struct part *p, value *out, report *r)
@@ -134,7 +140,7 @@ static status copy_part(const table *t, const struct part *p, value *out, report
     for (size_t i = 0; s == OK && i < p->rows; i++)
         for (size_t j = 0; s == OK && j < p->cols; j++) {
             const char *word = word_at(t, p->row + i, 1 + j);
-            put_number(out, i, j, t->at[(p->row + i) * t->cols + 1 + j]);
+            put_number(out, i, j, shown(t->at[(p->row + i) * t->cols + 1 + j]));
             if (word) s = put_text(r, out, i, j, word);
         }
     return s;

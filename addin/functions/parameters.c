@@ -1,4 +1,5 @@
 /* parameters.c - from measured dependence to the parameters of a model. */
+#include "../family_texts.h"
 #include "../function.h"
 #include "../correlations.h"
 #include "../models.h"
@@ -32,13 +33,27 @@ static void remark_pairs_only(const family *f, const value *out, report *r)
                "way to negative dependence", f->theta_low_beyond_pairs);
 }
 
-/* What a family reaches of tau it reaches of rho. */
-static status refuse_reach(const char *what, const argument *a, const family *f, report *r)
+static status refuse_reach(const char *what, const argument *a, const char *range,
+                           const family *f, report *r)
 {
-    const char *range = tau_range(f, r->pool);
     if (!range) return NO_MEMORY;
     return refuse(r, OUT_OF_DOMAIN, "%s is %g, but a pair of the %s copula reaches only %s", what,
                   a->number, f->word, range);
+}
+
+/* What there is to say of a range that went well but for some of its cells. */
+static status remark_reach(const char *what, const value *out, const char *range, const family *f,
+                           report *r)
+{
+    size_t n = out->is == IS_TABLE ? out->table.rows * out->table.cols : 0;
+    if (!range) return NO_MEMORY;
+    for (size_t i = 0; i < n; i++)
+        if (fault_in(out->table.at[i]) == OUT_OF_DOMAIN) {
+            remark(r, "of %s a pair of the %s copula reaches only %s", what, f->word, range);
+            break;
+        }
+    remark_pairs_only(f, out, r);
+    return OK;
 }
 
 static status cell_theta(const argument *in, value *out, report *r)
@@ -47,8 +62,10 @@ static status cell_theta(const argument *in, value *out, report *r)
     if (!f->has_theta && !f->has_matrix)
         return refuse(r, BAD_KIND, "%s has no parameter", f->word);
     status s = each_number(&in[1], theta_of_tau, f, out, r);
-    if (s == OUT_OF_DOMAIN && out->is == IS_NUMBER) return refuse_reach("tau", &in[1], f, r);
-    if (s == OK) remark_pairs_only(f, out, r);
+    const char *range = tau_range(f, r->pool);
+    if (s == OUT_OF_DOMAIN && out->is == IS_NUMBER)
+        return refuse_reach("tau", &in[1], range, f, r);
+    if (s == OK) s = remark_reach("tau", out, range, f, r);
     return s;
 }
 
@@ -74,8 +91,10 @@ static status cell_thetarho(const argument *in, value *out, report *r)
     if (!f->has_df && in[2].given)
         return refuse(r, BAD_KIND, "df is given, but %s has no degrees of freedom", f->word);
     status s = each_number(&in[1], theta_of_rho, &c, out, r);
-    if (s == OUT_OF_DOMAIN && out->is == IS_NUMBER) return refuse_reach("rho", &in[1], f, r);
-    if (s == OK) remark_pairs_only(f, out, r);
+    const char *range = rho_range(f, r->pool);
+    if (s == OUT_OF_DOMAIN && out->is == IS_NUMBER)
+        return refuse_reach("rho", &in[1], range, f, r);
+    if (s == OK) s = remark_reach("rho", out, range, f, r);
     return s;
 }
 
@@ -111,34 +130,11 @@ static status cell_dffromtail(const argument *in, value *out, report *r)
     return s == OK ? answer(out, df) : s;
 }
 
-static const char *parameter_text(const family *f, pool *p)
-{
-    if (f->has_matrix) return f->has_df ? "matrix, df" : "matrix";
-    if (!f->has_theta) return "none";
-    const char *pairs = theta_range(f, 2, p), *beyond = theta_range(f, 3, p);
-    if (!pairs || !beyond) return NULL;
-    if (f->theta_low == f->theta_low_beyond_pairs) return text_from(p, "theta %s", pairs);
-    return text_from(p, "theta %s, beyond pairs %s", pairs, beyond);
-}
-
-/* Which corners have tail dependence, looked up at tau = 0.3 and four degrees of freedom. */
-static const char *tails_text(const family *f)
-{
-    double theta;
-    if (f->theta_from_tau(0.3, &theta) != OK) return "none";
-    bool lower = f->tail(theta, 4, LOWER) > 0, upper = f->tail(theta, 4, UPPER) > 0;
-    return lower && upper ? "both" : lower ? "lower" : upper ? "upper" : "none";
-}
-
 static status put_family(const family *f, size_t row, value *out, report *r)
 {
     pool *p = r->pool;
-    const char *dimensions = f->most_dimensions ? text_from(p, "2 to %zu", f->most_dimensions)
-                                                : "2 or more";
-    const char *rotations = f->most_dimensions == 2 ? "0 90 180 270"
-                                                    : "0 90 180 270, beyond pairs 0 180";
-    const char *texts[] = { f->word, parameter_text(f, p), tau_range(f, p), dimensions, rotations,
-                            tails_text(f) };
+    const char *texts[] = { f->word, parameter_text(f, p), tau_range(f, p), dimensions_text(f, p),
+                            rotations_text(f), tails_text(f) };
     for (size_t j = 0; j < sizeof texts / sizeof *texts; j++) {
         status s = texts[j] ? put_text(r, out, row, j, texts[j]) : NO_MEMORY;
         if (s != OK) return s;
@@ -295,11 +291,12 @@ const function parameters_functions[] = {
         .help = "The parameter with which a pair of a copula family has this Kendall's tau.",
         .detail =
             "gaussian and t: the correlation sin(pi tau/2). clayton: 2 tau/(1 - tau). gumbel: "
-            "1/(1 - tau). frank: by its Debye function. joe: by its digamma function. Accurate to "
-            "1e-12 relative. gumbel and joe reach tau from 0 to below 1, clayton also down to -1 "
-            "and frank to above -1, both with a negative theta, which in more than two dimensions "
-            "is not admissible; clayton with rotation 90 is another way to negative dependence. "
-            "Where tau is a range the result has its shape, with #NUM! in the cell of a tau that "
+            "1/(1 - tau). frank: by its Debye function. joe: by its digamma function. amh and "
+            "plackett: by inverting tau. fgm: 9 tau/2. Accurate to 1e-12 relative. What a family "
+            "reaches of tau stands under Copula families; clayton and frank reach below 0 with a "
+            "negative theta, which in more than two dimensions is not admissible; clayton with "
+            "rotation 90 is another way to negative dependence. Where tau is a range the result "
+            "has its shape, with #NUM! in the cell of a tau that "
             "the family cannot reach. A blank single cell counts as 0.",
         .examples = {
             { "THETA(\"gumbel\";0.5)", "2" },
@@ -320,14 +317,16 @@ const function parameters_functions[] = {
         .group = GROUP,
         .help = "The parameter with which a pair of a copula family has this Spearman's rho.",
         .detail =
-            "gaussian: 2 sin(pi rho/6). The others by inverting rho: frank by its Debye functions, "
-            "gumbel by an integral, clayton and joe by series, t by an integral over its "
-            "chi-squares. A family reaches those rho that it reaches of tau, see THETA, and "
-            "negative ones likewise with a negative theta, which is for pairs only. A blank single "
-            "cell counts as 0.",
+            "gaussian: 2 sin(pi rho/6). fgm: 3 rho. The others by inverting rho: frank by its "
+            "Debye "
+            "functions, gumbel by an integral, clayton, joe and amh by series, plackett by its "
+            "closed form, t by an integral over its chi-squares. What a family reaches of rho "
+            "stands under Copula families; negative ones of clayton and frank with a negative "
+            "theta, which is for pairs only. A blank single cell counts as 0.",
         .examples = {
             { "THETARHO(\"gaussian\";0.5)", "0.517638090205042" },
             { "THETARHO(\"clayton\";-7/15)", "-0.5" },
+            { "THETARHO(\"plackett\";0.5)", "5.1156608664894" },
             { "THETARHO(\"gumbel\";-0.1)", "#NUM!" },
         },
         .params = {

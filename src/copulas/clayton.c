@@ -5,6 +5,7 @@
  *   tau = theta / (theta + 2). For theta > 0 the frailty is gamma with shape 1/theta (Marshall &
  *   Olkin 1988). A pair with negative theta is drawn by inverting its conditional distribution:
  *   with a = -theta, dC/du = w gives v^a = 1 - u^a (1 - w^(a/(1-a))).
+ *   With negative theta C = max(u^a + v^a - 1, 0)^(1/a).
  *   Spearman's rho is a hypergeometric series at 1, positive and negative theta having one each;
  *   where dependence is strong, strong_rho.c.
  *
@@ -18,6 +19,7 @@
  *   from 1 to 1e-13.
  */
 #include "families.h"
+#include "../archimedean.h"
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../slow_series.h"
@@ -93,7 +95,7 @@ static double tail(double theta, double df, enum corner corner)
 
 static double psi(double log_t, double theta)
 {
-    return portable_exp(-portable_log1pexp(log_t) / theta);
+    return portable_exp(-portable_log1pexp(log_t) / fmax(theta, 1e-20));
 }
 
 /* For theta in [-1;0). With x = u^a (1 - w^b) near 1, 1 - x is summed from positive parts. */
@@ -107,6 +109,61 @@ static double conditional_quantile(double u, double w, double theta)
                               : portable_log(-portable_expm1(log_u) + portable_exp(log_u + log_w));
     return portable_exp(log_rest / a);
 }
+
+static double positive(double theta)
+{
+    return fmax(theta, 1e-20);               /* which nothing can tell from independence */
+}
+
+/* log(u^-theta - 1) */
+static double log_inverse(double u, double theta)
+{
+    double x = -positive(theta) * log(u);
+    return x > 1 ? x + log1p(-exp(-x)) : log(expm1(x));
+}
+
+static double log_derivative(size_t order, double log_t, double theta)
+{
+    double a = positive(theta), sum = -(double)order * log(a);
+    for (size_t i = 1; i < order; i++) sum += log1p((double)i * a);
+    return sum - (1 / a + (double)order) * portable_log1pexp(log_t);
+}
+
+/* For theta in (-1;0), a = -theta: log(u^a + v^a - 1) / a, -infinity where nothing lies. */
+static double log_cdf(double u, double v, double a)
+{
+    double below = expm1(a * log(u)) + expm1(a * log(v));
+    return below > -1 ? log1p(below) / a : -HUGE_VAL;
+}
+
+static double pair_cdf(double u, double v, double theta)
+{
+    return theta == -1 ? fmax(0, u - (1 - v)) : exp(log_cdf(u, v, -theta));
+}
+
+static double pair_conditional(double u, double v, double theta)
+{
+    if (theta == -1) return NAN;
+    double log_c = log_cdf(u, v, -theta);
+    return fmin(1, exp((1 + theta) * (log_c - log(u))));
+}
+
+static double pair_log_density(double u, double v, double theta)
+{
+    double a = -theta, log_c = log_cdf(u, v, a);
+    if (theta == -1) return NAN;
+    return isinf(log_c) ? log_c
+                        : log1p(theta) - (1 - a) * (log(u) + log(v)) + (1 - 2 * a) * log_c;
+}
+
+static double pair_quantile(double u, double w, double theta)
+{
+    return theta == -1 ? NAN : conditional_quantile(u, w, theta);
+}
+
+static const struct generator generator = { log_inverse, log_derivative, false };
+static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
+                                            pair_quantile };
 
 /* Below 1e-20 no draw can be told from independence. */
 static status draw_clayton(const copula *c, const struct draw_rows *where, pool *p)
@@ -128,4 +185,9 @@ const family clayton_family = {
     .draw = draw_clayton,
     .frailty = &gamma_frailty,
     .psi = psi,
+    .evaluator = &archimedean_evaluator,
+    .generator = &generator,
+    .pair = &pair,
+    .use = "losses that are small or absent together; by rotation 180 large ones",
+    .source = "Clayton (1978)",
 };

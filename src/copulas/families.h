@@ -7,5 +7,6 @@
 
 extern const family independent_family, gaussian_family, t_family;
 extern const family clayton_family, gumbel_family, frank_family, joe_family;
+extern const family amh_family, plackett_family, fgm_family;
 
 #endif

@@ -17,6 +17,7 @@
  *   tau and theta to 1e-14 relative.
  */
 #include "families.h"
+#include "../archimedean.h"
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../root.h"
@@ -129,14 +130,82 @@ static status theta_from_tau(double tau, double *theta)
     return s;
 }
 
-/* For theta > 0. Where x = (1 - exp(-theta)) exp(-t) nears 1, 1 - x is a sum of positive parts. */
+static double positive(double theta)
+{
+    return fmax(theta, 1e-16);               /* which nothing can tell from independence */
+}
+
+/* log(1 - z) with z = (1 - exp(-theta)) exp(-t), theta > 0; near z = 1 from its positive parts */
+static double log_rest_of(double log_t, double theta)
+{
+    double t = exp(log_t), z = -expm1(-theta) * exp(-t);
+    return z < 0.5 ? log1p(-z) : log_added(log_one_minus_exp(log_t), -theta - t);
+}
+
+/* For theta > 0. */
 static double psi(double log_t, double theta)
 {
-    double t = portable_exp(log_t), x = -portable_expm1(-theta) * portable_exp(-t);
-    double log_rest = x < 0.5 ? portable_log1p(-x)
-                              : portable_log(-portable_expm1(-t) + portable_exp(-theta - t));
-    return -log_rest / theta;
+    return -log_rest_of(log_t, positive(theta)) / positive(theta);
 }
+
+/* psi^-1(u) = -log(1 - q), where q falls from 1 at u = 0 to 0 */
+static double log_inverse(double u, double theta)
+{
+    double a = positive(theta), one_minus = a * u < 1e-12 ? a * u : -expm1(-a * u);
+    double log_q = a < 1 ? log(expm1(a * (1 - u)) / expm1(a))
+                         : portable_log1mexp(-a * (1 - u)) - a * u - portable_log1mexp(-a);
+    if (log_q < -40) return log_q;
+    return log(log_q < -0.7 ? -log1p(-exp(log_q)) : -log(one_minus / -expm1(-a)));
+}
+
+/* With w = z/(1-z) it is 1/theta times a polynomial in w. */
+static double log_derivative(size_t order, double log_t, double theta)
+{
+    double a = positive(theta), log_z = portable_log1mexp(-a) - exp(log_t);
+    return log_sum_rising(order, log_z - log_rest_of(log_t, a), 1) - log(a);
+}
+
+/* A pair with theta = -s < 0: with E(x) = exp(s x) - 1, exp(s C) - 1 = E(u) E(v) / E(1). */
+static double log_e(double x, double s)
+{
+    double y = s * x;
+    return y > 1 ? y + log1p(-exp(-y)) : log(expm1(y));
+}
+
+static double pair_cdf(double u, double v, double theta)
+{
+    double s = -theta;
+    return portable_log1pexp(log_e(u, s) + log_e(v, s) - log_e(1, s)) / s;
+}
+
+/* log(E(1) + E(u) E(v)) */
+static double log_bottom(double u, double v, double s)
+{
+    return log_added(log_e(1, s), log_e(u, s) + log_e(v, s));
+}
+
+static double pair_log_density(double u, double v, double theta)
+{
+    double s = -theta;
+    return log(s) + log_e(1, s) + s * u + s * v - 2 * log_bottom(u, v, s);
+}
+
+static double pair_conditional(double u, double v, double theta)
+{
+    double s = -theta;
+    return fmin(1, exp(s * u + log_e(v, s) - log_bottom(u, v, s)));
+}
+
+/* E(v) = w E(1) / (exp(s u) (1-w) + w) */
+static double pair_quantile(double u, double w, double theta)
+{
+    double s = -theta, bottom = log_added(s * u + log1p(-w), log(w));
+    return portable_log1pexp(log(w) + log_e(1, s) - bottom) / s;
+}
+
+static const struct generator generator = { log_inverse, log_derivative, true };
+static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
+                                            pair_quantile };
 
 /* The draw for -theta with its second column turned round. */
 static status draw_negative(const copula *c, const struct draw_rows *where, pool *p)
@@ -171,4 +240,9 @@ const family frank_family = {
     .draw = draw_frank,
     .frailty = &log_series_frailty,
     .psi = psi,
+    .evaluator = &archimedean_evaluator,
+    .generator = &generator,
+    .pair = &pair,
+    .use = "dependence alike for small and large losses and weak among the extremes",
+    .source = "Frank (1979)",
 };

@@ -5,6 +5,7 @@
  */
 #include "elliptical.h"
 #include "families.h"
+#include "../elliptical_points.h"
 
 #include <math.h>
 
@@ -34,4 +35,7 @@ const family gaussian_family = {
     .rho_from_theta = rho_from_theta,
     .tail = tail,
     .draw = draw_gaussian,
+    .evaluator = &gaussian_evaluator,
+    .use = "many lines by one matrix of correlations; extremes far out come apart",
+    .source = "Pearson (1907), Sibuya (1960)",
 };

@@ -13,6 +13,7 @@
  *   tau and theta to 2 units in the last place, tau and rho relative also near 0.
  */
 #include "families.h"
+#include "../archimedean.h"
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../quadrature.h"
@@ -72,6 +73,21 @@ static double psi(double log_t, double theta)
     return portable_exp(-portable_exp(log_t / theta));
 }
 
+static double log_inverse(double u, double theta)
+{
+    return theta * log(-log(u));
+}
+
+/* psi(t) / t^order times a polynomial in t^(1/theta) with positive coefficients */
+static double log_derivative(size_t order, double log_t, double theta)
+{
+    double log_x = log_t / theta;
+    return log_sum_of_powers(order, log_x, 1 / theta, (theta - 1) / theta) - exp(log_x)
+           - (double)order * log_t;
+}
+
+static const struct generator generator = { log_inverse, log_derivative, true };
+
 const family gumbel_family = {
     .word = "gumbel",
     .has_theta = true,
@@ -84,4 +100,8 @@ const family gumbel_family = {
     .draw = draw_by_frailty,
     .frailty = &stable_frailty,
     .psi = psi,
+    .evaluator = &archimedean_evaluator,
+    .generator = &generator,
+    .use = "large losses that come together, such as losses and their expense",
+    .source = "Gumbel (1960)",
 };

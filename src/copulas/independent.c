@@ -4,6 +4,7 @@
  *   There is no parameter; tau is 0 and nothing else.
  */
 #include "families.h"
+#include "../evaluate.h"
 
 static status theta_from_tau(double tau, double *theta)
 {
@@ -39,4 +40,7 @@ const family independent_family = {
     .rho_from_theta = rho_from_theta,
     .tail = tail,
     .draw = draw_independent,
+    .evaluator = &independent_evaluator,
+    .use = "what others are compared with",
+    .source = "",
 };

@@ -21,6 +21,7 @@
  *   from theta 10 its distance from 1 to 1e-13.
  */
 #include "families.h"
+#include "../archimedean.h"
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../root.h"
@@ -158,6 +159,23 @@ static double psi(double log_t, double theta)
     return -portable_expm1(log_rest / theta);
 }
 
+/* t = -log(1 - (1-u)^theta) */
+static double log_inverse(double u, double theta)
+{
+    double log_rest = theta * log1p(-u);
+    if (log_rest < -40) return log_rest;
+    return log(log_rest < -0.7 ? -log1p(-exp(log_rest)) : -log(-expm1(log_rest)));
+}
+
+/* With y = exp(-t), w = y/(1-y) it is (1-y)^(1/theta)/theta times a polynomial in w. */
+static double log_derivative(size_t order, double log_t, double theta)
+{
+    double log_rest = log_one_minus_exp(log_t), log_w = -exp(log_t) - log_rest;
+    return log_sum_rising(order, log_w, (theta - 1) / theta) + log_rest / theta - log(theta);
+}
+
+static const struct generator generator = { log_inverse, log_derivative, true };
+
 const family joe_family = {
     .word = "joe",
     .has_theta = true,
@@ -170,4 +188,8 @@ const family joe_family = {
     .draw = draw_by_frailty,
     .frailty = &sibuya_frailty,
     .psi = psi,
+    .evaluator = &archimedean_evaluator,
+    .generator = &generator,
+    .use = "large losses that come together, with hardly any dependence among small ones",
+    .source = "Joe (1993)",
 };

@@ -14,6 +14,7 @@
  */
 #include "elliptical.h"
 #include "families.h"
+#include "../elliptical_points.h"
 #include "../t_rho.h"
 
 #include <gsl/gsl_errno.h>
@@ -48,4 +49,7 @@ const family t_family = {
     .rho_from_theta = rho_from_theta,
     .tail = tail,
     .draw = draw_t,
+    .evaluator = &t_evaluator,
+    .use = "many lines by one matrix, with extremes that come together in every corner",
+    .source = "Demarta & McNeil (2005)",
 };

@@ -20,6 +20,10 @@ static const struct {
     { "frank", 2, 1e9, 0 }, { "frank", 2, 1e-15, 0 },
     { "joe", 2, 1.000000001, 0 }, { "joe", 3, 3, 0 }, { "joe", 2, 20000, 0 },
     { "joe", 2, 1e9, 0 },
+    { "amh", 2, -1, 0 }, { "amh", 2, 1e-9, 0 }, { "amh", 2, 0.9, 0 }, { "amh", 2, 1, 0 },
+    { "plackett", 2, 1e-200, 0 }, { "plackett", 2, 0.2, 0 }, { "plackett", 2, 1, 0 },
+    { "plackett", 2, 50, 0 }, { "plackett", 2, 1e200, 0 },
+    { "fgm", 2, -1, 0 }, { "fgm", 2, 0.5, 0 }, { "fgm", 2, 1, 0 },
 };
 enum { MODELS = sizeof models / sizeof *models };
 

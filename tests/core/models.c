@@ -51,8 +51,9 @@ static void one_parameter_comes_back(void **state)
         if (!(*f)->has_theta) continue;
         for (size_t i = 0; i < effort(50); i++) {
             pool p = { 0 };
-            copula c = { .family = *f, .dimension = 2 + random_below(&s, 4),
-                         .theta = 1 + 20 * random_uniform(&s) };
+            size_t more = (*f)->most_dimensions ? (*f)->most_dimensions - 1 : 4;
+            copula c = { .family = *f, .dimension = 2 + random_below(&s, more),
+                         .theta = fmin((*f)->theta_high, 1 + 20 * random_uniform(&s)) };
             c.rotation = c.dimension == 2 ? 90 * (int)random_below(&s, 4)
                                           : 180 * (int)random_below(&s, 2);
             const copula *back = there_and_back(&p, &c);

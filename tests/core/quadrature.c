@@ -28,8 +28,49 @@ static void points(void **state)
     assert_close(sum, (pow(2, 40) - pow(0.5, 40)) / 40, 4e-15);
 }
 
+static double step_like(double x, const void *with)
+{
+    const double *width = with;
+    return 1 / (1 + exp(-x / *width));
+}
+
+static double noisy(double x, const void *with)
+{
+    (void)with;
+    return 1 + 1e-6 * sin(1e12 * x);
+}
+
+/* the logistic function integrates to width log(1 + exp(x/width)) */
+static void narrow_bends(void **state)
+{
+    (void)state;
+    for (double width = 1; width > 1e-9; width /= 10) {
+        double want = 0.7 - width * log1p(exp(-0.3 / width)) + width * log1p(exp(-0.7 / width));
+        assert_close(adapted_integral(step_like, &width, -0.3, 0.7, 0), want, 1e-13);
+    }
+    assert_close(adapted_integral(noisy, NULL, 0, 1, 0), 1, 1e-6);      /* which has to end */
+}
+
+static double power(double x, const void *with)
+{
+    const double *p = with;
+    return pow(1 + fabs(x), -*p);
+}
+
+/* 1/(p - 1), to either side */
+static void to_infinity(void **state)
+{
+    (void)state;
+    for (double p = 2; p < 40; p *= 1.5) {
+        assert_close(outward_integral(power, &p, 0, 1), 1 / (p - 1), 1e-13);
+        assert_close(outward_integral(power, &p, 0, -1e-3), 1 / (p - 1), 1e-13);
+    }
+}
+
 int main(void)
 {
-    const struct CMUnitTest tests[] = { cmocka_unit_test(powers), cmocka_unit_test(points) };
+    const struct CMUnitTest tests[] = { cmocka_unit_test(powers), cmocka_unit_test(points),
+                                        cmocka_unit_test(narrow_bends),
+                                        cmocka_unit_test(to_infinity) };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -19,11 +19,13 @@ def with_columns(arguments, parameters, long):
     columns, found = list(arguments), 0
     for i, (parameter, kind) in enumerate(parameters[:len(columns)]):
         if kind in TRIMMED:
-            name = (UNIFORMS if parameter == 'uniforms' else TRIMMED[kind])[long]
+            name = (UNIFORMS if parameter in ('uniforms', 'points') else TRIMMED[kind])[long]
             columns[i] = SECOND[name] if found and kind == 'column' else name
             found += 1
         elif kind in AS_MANY_LINES:
             columns[i] = kind
+        elif kind == 'model' and ('points', 'data') in parameters:
+            columns[i] = 'JOINT.MODEL("gaussian";matrix)'
     return columns if found else None
 
 

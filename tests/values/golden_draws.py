@@ -81,6 +81,36 @@ def frank_negative(theta):
     return lambda seed, row, d: np.abs(np.array([0, 1]) - frank(-theta)(seed, row, d))
 
 
+def by_conditional(below):
+    """v with P(V <= v | U = u) = w, by bisection"""
+    def draw(seed, row, d):
+        u, w = uniform(seed, 0, row, 0), uniform(seed, 0, row, 1)
+        low, high = 0.0, 1.0
+        for _ in range(200):
+            v = (low + high) / 2
+            low, high = (low, v) if below(u, v) >= w else (v, high)
+        return [u, v]
+    return draw
+
+
+def amh(theta):
+    def below(u, v):
+        return v * (1 - theta * (1 - v)) / (1 - theta * (1 - u) * (1 - v)) ** 2
+    return by_conditional(below)
+
+
+def plackett(theta):
+    def below(u, v):
+        eta = theta - 1
+        root = math.sqrt((1 + eta * (u + v)) ** 2 - 4 * u * v * theta * eta)
+        return 0.5 - (1 + eta * u - (eta + 2) * v) / (2 * root)
+    return by_conditional(below)
+
+
+def fgm(theta):
+    return by_conditional(lambda u, v: v * (1 + theta * (1 - v) * (1 - 2 * u)))
+
+
 def independent(seed, row, d):
     return [uniform(seed, 0, row, j) for j in range(d)]
 
@@ -93,6 +123,8 @@ CASES = {
     't, df 0.5': (t(0.3, 0.5), 1, 0), 't, df 4': (t(0.5, 4), 1, 0), 't, df 5.5': (t(0.5, 5.5), 1, 0),
     't, df 1e6': (t(0.5, 1e6), 1, 0), 't, grouped 3 and 30': (t(0.5, 3, 30), 1, 0),
     'gumbel': (gumbel(2), 1, 0), 'frank': (frank(5.75), 1, 0), 'frank, negative': (frank_negative(-8), 1, 0),
+    'amh': (amh(0.75), 1, 0), 'amh, theta -1': (amh(-1), 1, 0), 'plackett': (plackett(12), 1, 0),
+    'plackett, negative': (plackett(0.0625), 1, 0), 'fgm': (fgm(1), 1, 0), 'fgm, negative': (fgm(-0.75), 1, 0),
 }
 
 

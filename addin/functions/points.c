@@ -1,0 +1,324 @@
+/* points.c - what a model says at points. */
+#include "../function.h"
+#include "../read.h"
+#include "../shape.h"
+#include "../words.h"
+#include "../../src/evaluate.h"
+
+#include <math.h>
+
+enum { ASKED, POINTS };
+
+/* What came out, and what WHY is to say of it. */
+struct answers {
+    samples s;
+    double error;             /* the largest that a row has */
+    size_t empty;             /* rows with a gap */
+};
+
+/* One row of points; the answer goes into `to`. */
+typedef status answer_row(const struct evaluation *e, const double *u, double *to, double *error);
+
+static status names_agree(const copula *c, const samples *points, report *r)
+{
+    for (size_t j = 0; c->lines && points->names && j < c->dimension; j++)
+        if (*c->lines[j] && *points->names[j] && !same_word(c->lines[j], points->names[j]))
+            return refuse(r, BAD_KIND, "points has the name \"%s\" above column %zu, but the model "
+                          "calls that line \"%s\"", points->names[j], j + 1, c->lines[j]);
+    return OK;
+}
+
+/* Rows of as many columns as the model has, each number within (0;1), or [0;1] if closed. */
+static status check_points(const argument *in, bool closed, report *r)
+{
+    const samples *points = &in[POINTS].data;
+    const copula *c = in[ASKED].model;
+    if (points->cols != c->dimension)
+        return refuse(r, BAD_KIND, "points has %zu columns, but the model has %zu", points->cols,
+                      c->dimension);
+    for (size_t j = 0; j < points->cols; j++)
+        for (size_t i = 0; i < in[POINTS].filled; i++) {
+            double u = column(points, j)[i];
+            if (is_gap(u) || (u > 0 && u < 1) || (closed && u >= 0 && u <= 1)) continue;
+            return refuse(r, OUT_OF_DOMAIN,
+                          "points has %g in row %zu, column %zu, but must be between 0 and 1%s", u,
+                          row_in_range(&in[POINTS], i), j + 1, closed ? "" : ", ends excluded");
+        }
+    return names_agree(c, points, r);
+}
+
+static bool take_row(const samples *points, size_t i, double *u)
+{
+    bool whole = true;
+    for (size_t j = 0; j < points->cols; j++) {
+        u[j] = column(points, j)[i];
+        whole = whole && !is_gap(u[j]);
+    }
+    return whole;
+}
+
+static status each_row(const argument *in, const struct evaluation *e, answer_row *of,
+                       struct answers *a, report *r)
+{
+    const samples *points = &in[POINTS].data;
+    double *u = pool_take(r->pool, points->cols, 2 * sizeof *u), *to = u + points->cols;
+    if (!u) return NO_MEMORY;
+    for (size_t i = 0; i < a->s.rows; i++) {
+        double error = 0;
+        bool whole = take_row(points, i, u);
+        status s = whole ? of(e, u, to, &error) : OK;
+        if (s == NO_MEMORY) return s;
+        if (!whole) a->empty++;
+        if (s == OK && whole) a->error = fmax(a->error, error);
+        for (size_t j = 0; j < a->s.cols; j++)
+            column(&a->s, j)[i] = !whole ? gap() : s != OK ? fault(s)
+                                : isfinite(to[j]) ? to[j] : fault(OUT_OF_DOMAIN);
+    }
+    return OK;
+}
+
+/* `cols` answers a row. */
+static status ask_all(const argument *in, enum question q, size_t cols, answer_row *of,
+                      struct answers *a, struct evaluation *e, report *r)
+{
+    status s = check_points(in, q == ASK_CDF, r);
+    if (s == OK) s = evaluation_of(in[ASKED].model, e, r->pool);
+    if (s != OK) return s;
+    const char *limit = evaluation_limit(e, q);
+    if (limit) return refuse(r, OUT_OF_DOMAIN, "model %s", limit);
+    *a = (struct answers){ .s = { .rows = in[POINTS].filled, .cols = cols } };
+    a->s.at = pool_take(r->pool, a->s.rows, cols * sizeof *a->s.at);
+    if (!a->s.at) return NO_MEMORY;
+    s = each_row(in, e, of, a, r);
+    if (s == OK && a->empty)
+        remark(r, "%zu row%s of points with gaps left empty", a->empty, plural(a->empty));
+    return s;
+}
+
+/* One column, below the words of a header if the points had one. */
+static status one_column(const argument *in, const struct answers *a, const char *word, value *out,
+                         report *r)
+{
+    size_t header = in[POINTS].header;
+    status s = new_table(r, a->s.rows + header, 1, out);
+    if (s == OK && header) s = put_text(r, out, 0, 0, word);
+    for (size_t i = 0; s == OK && i < a->s.rows; i++)
+        put_number(out, i + header, 0, a->s.at[i]);
+    return s;
+}
+
+static status row_cdf(const struct evaluation *e, const double *u, double *to, double *error)
+{
+    return cdf_at(e, u, to, error);
+}
+
+static status cell_cdf(const argument *in, value *out, report *r)
+{
+    struct answers a;
+    struct evaluation e;
+    status s = ask_all(in, ASK_CDF, 1, row_cdf, &a, &e, r);
+    if (s == OK && a.error > 0 && e.rotation == 0)
+        remark(r, "by quasi-Monte Carlo, with a standard error of at most %g", a.error);
+    if (s == OK && a.error > 0 && e.rotation != 0)
+        remark(r, "rounding may have cost up to %g", a.error);
+    return s == OK ? one_column(in, &a, "cdf", out, r) : s;
+}
+
+static status row_density(const struct evaluation *e, const double *u, double *to, double *error)
+{
+    (void)error;
+    double logarithm = 0;
+    status s = log_density_at(e, u, &logarithm);
+    *to = exp(logarithm);
+    return s;
+}
+
+static status cell_density(const argument *in, value *out, report *r)
+{
+    struct answers a;
+    struct evaluation e;
+    status s = ask_all(in, ASK_DENSITY, 1, row_density, &a, &e, r);
+    return s == OK ? one_column(in, &a, "density", out, r) : s;
+}
+
+static status row_conditional(const struct evaluation *e, const double *u, double *to,
+                              double *error)
+{
+    (void)error;
+    return conditional_at(e, u, to);
+}
+
+static status cell_conditional(const argument *in, value *out, report *r)
+{
+    struct answers a;
+    struct evaluation e;
+    size_t d = in[ASKED].model->dimension;
+    status s = ask_all(in, ASK_CONDITIONAL, d, row_conditional, &a, &e, r);
+    return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
+}
+
+static status row_from_conditional(const struct evaluation *e, const double *u, double *to,
+                                   double *error)
+{
+    (void)error;
+    return from_conditional_at(e, u, to);
+}
+
+static status cell_fromconditional(const argument *in, value *out, report *r)
+{
+    struct answers a;
+    struct evaluation e;
+    size_t d = in[ASKED].model->dimension;
+    status s = ask_all(in, ASK_CONDITIONAL, d, row_from_conditional, &a, &e, r);
+    return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
+}
+
+static status kendall_of(double w, const void *with, double *k)
+{
+    const struct evaluation *e = with;
+    return kendall_at(e, w, k);
+}
+
+static status cell_kendallof(const argument *in, value *out, report *r)
+{
+    struct evaluation e;
+    status s = evaluation_of(in[0].model, &e, r->pool);
+    if (s != OK) return s;
+    const char *limit = evaluation_limit(&e, ASK_KENDALL);
+    if (limit) return refuse(r, OUT_OF_DOMAIN, "model %s", limit);
+    return each_number(&in[1], kendall_of, &e, out, r);
+}
+
+static const char GROUP[] = "Describe a model";
+
+const function points_functions[] = {
+    {
+        .name = "cdf",
+        .group = GROUP,
+        .help = "The probability that all lines are at most what a row of points says.",
+        .detail =
+            "Pairs to 1e-10 relative, in the tails too: for gaussian and t the integral of a "
+            "conditional probability, which is positive, and likewise where a rotation would make "
+            "numbers cancel; a pair of a grouped t to 1e-10 absolute. gaussian and t beyond pairs "
+            "by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with 32,768 points, for up to 128 "
+            "columns; WHY states the standard error. Archimedean families in any dimension by "
+            "their generator, rotated by 180 beyond pairs as a sum over all subsets of columns, "
+            "for up to 16; WHY states what rounding may have cost. A row with a gap gives an empty "
+            "cell. A probability that all columns are above a point is that of the model with "
+            "rotation 180 at 1 - u.",
+        .examples = {
+            { "CDF(MODEL(\"gaussian\";0.5);{0.5;0.5})", "0.333333333333333" },
+            { "CDF(MODEL(\"clayton\";1);{0.5;0.5|0.2;0.9})", "0.333333333333333" },
+            { "CDF(MODEL(\"t\";0.5;4;180);{0.01;0.01})", "0.00287678434851538" },
+            { "CDF(MODEL(\"gumbel\";2);{0.5;1.5})", "#NUM!" },
+        },
+        .params = {
+            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+              .kind = MODEL },
+            { .name = "points",
+              .help = "One point a row, one column for each of the model, from 0 to 1.",
+              .kind = DATA },
+        },
+        .call = cell_cdf,
+        .costly = true,
+    },
+    {
+        .name = "density",
+        .group = GROUP,
+        .help = "The density of a model, one value a row of points.",
+        .detail =
+            "Archimedean families in any dimension by the derivatives of their generator (Hofert, "
+            "Maechler & McNeil 2012), gumbel, frank and joe for up to 1,024 columns; a grouped t "
+            "by "
+            "an integral over its chi-squares, for u from 1e-13 to 1 - 1e-13. A singular matrix "
+            "and perfect dependence have no density: #NUM!. So has a density beyond 1e308. A row "
+            "with a gap gives an empty cell.",
+        .examples = {
+            { "DENSITY(MODEL(\"gaussian\";0.5);{0.5;0.5})", "1.15470053837925" },
+            { "DENSITY(MODEL(\"clayton\";1;;;3);{0.5;0.5;0.5})", "1.5" },
+            { "DENSITY(MODEL(\"gaussian\";1);{0.5;0.5})", "#NUM!" },
+        },
+        .params = {
+            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+              .kind = MODEL },
+            { .name = "points",
+              .help = "One point a row, one column for each of the model, between 0 and 1.",
+              .kind = DATA },
+        },
+        .call = cell_density,
+        .costly = true,
+    },
+    {
+        .name = "conditional",
+        .group = GROUP,
+        .help = "Rows of a model into independent uniforms: each column given those before it.",
+        .detail =
+            "The transform of Rosenblatt (1952): column 1 as it is, column j the probability that "
+            "the line is at most what it is, given the columns before. Of rows that follow the "
+            "model the result is uniform and independent, which is a way to look where a model "
+            "does not fit. gumbel, frank and joe for up to 200 columns; a grouped t as in DENSITY. "
+            "A singular matrix and perfect dependence are #NUM!. A row with a gap gives empty "
+            "cells.",
+        .examples = {
+            { "INDEX(CONDITIONAL(MODEL(\"clayton\";1);{0.5;0.5});1;2)", "0.444444444444444" },
+            { "INDEX(CONDITIONAL(MODEL(\"independent\");{0.3;0.8});1;2)", "0.8" },
+        },
+        .params = {
+            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+              .kind = MODEL },
+            { .name = "points",
+              .help = "One point a row, one column for each of the model, between 0 and 1.",
+              .kind = DATA },
+        },
+        .call = cell_conditional,
+        .costly = true,
+    },
+    {
+        .name = "fromConditional",
+        .group = GROUP,
+        .help = "Independent uniforms into rows that follow a model; the inverse of CONDITIONAL.",
+        .detail =
+            "Column 1 as it is, column j the quantile of its conditional distribution given the "
+            "columns before. It makes rows of a model from uniforms of one's own, or moves one "
+            "line along its conditional distribution for a stress: with 0.99 in column 2 it "
+            "answers what line 2 has in one of a hundred cases in which line 1 has what is in "
+            "column 1. Limits as in CONDITIONAL. Numbers beyond 1 - 2^-53 become that.",
+        .examples = {
+            { "INDEX(FROMCONDITIONAL(MODEL(\"clayton\";1);{0.5;0.444444444444444});1;2)", "0.5" },
+            { "INDEX(FROMCONDITIONAL(MODEL(\"gaussian\";0.5);{0.99;0.5});1;2)",
+              "0.877620530654097" },
+        },
+        .params = {
+            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+              .kind = MODEL },
+            { .name = "points",
+              .help = "One row of uniforms for each row wanted, between 0 and 1.", .kind = DATA },
+        },
+        .call = cell_fromconditional,
+        .costly = true,
+    },
+    {
+        .name = "kendallOf",
+        .group = GROUP,
+        .help = "The Kendall distribution of a model: P(C(U) <= w), to lay beside KENDALLCURVE.",
+        .detail =
+            "Archimedean families by their generator in any dimension (Barbe, Genest, Ghoudi & "
+            "Remillard 1996), other pairs and rotated ones by an integral along the curve on which "
+            "the distribution function is w, to 1e-9; a pair of a grouped t takes some seconds a "
+            "value. gaussian and t in more than two dimensions have no formula: #NUM!. Of a pair "
+            "tau is 3 - 4 times the area below it (Genest & Rivest 1993).",
+        .examples = {
+            { "KENDALLOF(MODEL(\"independent\");0.5)", "0.846573590279973" },
+            { "KENDALLOF(MODEL(\"clayton\";1);0.5)", "0.75" },
+        },
+        .params = {
+            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+              .kind = MODEL },
+            { .name = "w", .help = "From 0 to 1, a number or a range of them.", .kind = NUMBERS,
+              .low = 0, .high = 1 },
+        },
+        .call = cell_kendallof,
+        .costly = true,
+    },
+    { 0 },
+};

@@ -1,0 +1,279 @@
+/* evaluate.c - what a copula says at points: the rotation, and the kinds without parameters.
+ *
+ * Method
+ *   The columns that the rotation turns are replaced by 1 - u before, and where the answer is about
+ *   that column after, asking the unrotated copula. For the probability of a pair
+ *     90: v - C(1-u, v),  180: u + v - 1 + C(1-u, 1-v),  270: u - C(u, 1-v),
+ *   and where these cancel, the integral over the first column of a conditional probability, which
+ *   is positive. Beyond pairs rotation 180 is a sum over all subsets of the columns.
+ *
+ * Special cases
+ *   A probability with some u = 0 is 0; with one u below 1 it is that u.
+ */
+#include "evaluate.h"
+#include "quadrature.h"
+
+#include <math.h>
+
+enum { MOST_IN_SUBSETS = 16 };
+
+static bool turns(int rotation, size_t column)
+{
+    return rotation == 180 || (rotation == 90 && column == 0) || (rotation == 270 && column == 1);
+}
+
+static double turned(double u)
+{
+    return u < 0x1p-53 ? 1 - 0x1p-53 : 1 - u;
+}
+
+/* the point for the unrotated copula */
+static const double *turn_all(const struct evaluation *e, const double *u)
+{
+    if (e->rotation == 0) return u;
+    for (size_t j = 0; j < e->c->dimension; j++)
+        e->turned[j] = turns(e->rotation, j) ? turned(u[j]) : u[j];
+    return e->turned;
+}
+
+status evaluation_of(const copula *c, struct evaluation *e, pool *p)
+{
+    const family *f = c->family;
+    bool only_pair = !f->generator || c->theta < f->theta_low_beyond_pairs;
+    *e = (struct evaluation){ .c = c, .by = f->evaluator };
+    if (f->pair && only_pair) e->by = &pair_evaluator;
+    e->rotation = e->by->takes_rotation ? 0 : c->rotation;
+    e->turned = pool_take(p, c->dimension, sizeof *e->turned);
+    e->room = pool_take(p, c->dimension, 4 * sizeof *e->room);
+    if (!e->turned || !e->room) return NO_MEMORY;
+    return e->by->prepare ? e->by->prepare(e, p) : OK;
+}
+
+/* ---- probabilities of rotated pairs ---- */
+
+struct strip {
+    const struct evaluation *e;
+    double v;
+};
+
+/* P(V <= v | U = x) of the rotated copula, as its first column x comes */
+static double strip_at(double x, const void *with)
+{
+    const struct strip *s = with;
+    double w[2];
+    const double u[2] = { x, s->v };
+    return conditional_at(s->e, u, w) == OK ? w[1] : NAN;
+}
+
+static status unrotated_cdf(const struct evaluation *e, double u, double v, double *value)
+{
+    double error;
+    const double point[2] = { u, v };
+    return e->by->cdf(e, point, value, &error);
+}
+
+/* As it stands; what cancels leaves 1e-16. */
+static status cancelling_cdf(const struct evaluation *e, double u, double v, double *value)
+{
+    double x = turns(e->rotation, 0) ? 1 - u : u, y = turns(e->rotation, 1) ? 1 - v : v, c = 0;
+    status s = x > 0 && y > 0 ? unrotated_cdf(e, x, y, &c) : OK;
+    if (e->rotation == 180) *value = fmax(0, (u - y) + c);
+    else *value = fmax(0, (e->rotation == 90 ? v : u) - c);
+    return s;
+}
+
+/* Panels of the integral shrink towards u = 0, where it may be steep. */
+static double strip_integral(const struct evaluation *e, double u, double v)
+{
+    struct strip strip = { e, v };
+    double sum = 0;
+    for (double to = u; to > 0 && sum >= 0; to /= 8) {
+        double part = adapted_integral(strip_at, &strip, to / 8, to, 1e-16 * sum);
+        sum += part;
+        if (to < 1e-17 * u || part < 1e-16 * sum) break;
+    }
+    return sum;
+}
+
+/* Without a density what cancelled stands. */
+static status rotated_pair_cdf(const struct evaluation *e, double u, double v, double *value)
+{
+    status s = cancelling_cdf(e, u, v, value);
+    if (s != OK || *value > 1e-3) return s;
+    double sum = strip_integral(e, u, v);
+    if (!isnan(sum)) *value = sum;
+    return OK;
+}
+
+/* ---- beyond pairs, rotation 180: over all subsets of the columns ---- */
+
+static status subsets_cdf(const struct evaluation *e, const double *u, double *value, double *error)
+{
+    size_t d = e->c->dimension;
+    if (d > MOST_IN_SUBSETS) return OUT_OF_DOMAIN;
+    double sum = 0, sizes = 0;
+    for (unsigned long set = 0; set < 1ul << d; set++) {
+        double part = 1, ignored, sign = 1;
+        bool none = true;
+        for (size_t j = 0; j < d; j++) {
+            bool in = set >> j & 1;
+            e->turned[j] = in ? 1 - u[j] : 1;
+            sign = in ? -sign : sign;
+            none = none && !in;
+            if (e->turned[j] == 0) part = 0;
+        }
+        status s = none || part == 0 ? OK : e->by->cdf(e, e->turned, &part, &ignored);
+        if (s != OK) return s;
+        sum += sign * part;
+        sizes += part;
+    }
+    *value = sum < 0 ? 0 : sum;
+    *error = 2e-16 * sizes;
+    return OK;
+}
+
+status cdf_at(const struct evaluation *e, const double *u, double *value, double *error)
+{
+    size_t below_one = 0, one = 0, d = e->c->dimension;
+    *error = 0;
+    *value = 0;
+    for (size_t j = 0; j < d; j++) {
+        if (u[j] == 0) return OK;
+        if (u[j] < 1) below_one++, one = j;
+    }
+    *value = below_one ? u[one] : 1;
+    if (below_one < 2) return OK;
+    if (e->rotation == 0) return e->by->cdf(e, u, value, error);
+    return d == 2 ? rotated_pair_cdf(e, u[0], u[1], value) : subsets_cdf(e, u, value, error);
+}
+
+status pair_cdf_roughly_at(const struct evaluation *e, const double *u, double *value)
+{
+    return e->rotation == 0 ? unrotated_cdf(e, u[0], u[1], value)
+                            : cancelling_cdf(e, u[0], u[1], value);
+}
+
+status log_density_at(const struct evaluation *e, const double *u, double *value)
+{
+    return e->by->log_density(e, turn_all(e, u), value);
+}
+
+status conditional_at(const struct evaluation *e, const double *u, double *w)
+{
+    double first = u[0];
+    status s = e->by->conditional(e, turn_all(e, u), w);
+    for (size_t j = 1; s == OK && j < e->c->dimension; j++)
+        if (turns(e->rotation, j)) w[j] = 1 - w[j];
+    w[0] = first;
+    return s;
+}
+
+status from_conditional_at(const struct evaluation *e, const double *w, double *u)
+{
+    double first = w[0];
+    status s = e->by->from_conditional(e, turn_all(e, w), u);
+    for (size_t j = 1; s == OK && j < e->c->dimension; j++)
+        if (turns(e->rotation, j)) u[j] = 1 - u[j];
+    u[0] = first;
+    return s;
+}
+
+/* ---- what has no answer ---- */
+
+const char *evaluation_limit(const struct evaluation *e, enum question q)
+{
+    size_t d = e->c->dimension;
+    if (q == ASK_CDF && e->rotation && d > MOST_IN_SUBSETS)
+        return "is rotated, so that its distribution function is a sum over all subsets of "
+               "columns: there can be at most 16";
+    if (q == ASK_KENDALL && d > 2 && (e->rotation || !e->by->kendall))
+        return "has more than two columns, where its Kendall distribution has no formula";
+    return e->by->limit ? e->by->limit(e, q) : NULL;
+}
+
+/* ---- independence ---- */
+
+static status product_of_all(const struct evaluation *e, const double *u, double *value,
+                             double *error)
+{
+    (void)error;
+    *value = 1;
+    for (size_t j = 0; j < e->c->dimension; j++) *value *= u[j];
+    return OK;
+}
+
+static status no_log_density(const struct evaluation *e, const double *u, double *value)
+{
+    (void)e;
+    (void)u;
+    *value = 0;
+    return OK;
+}
+
+static status unchanged(const struct evaluation *e, const double *u, double *w)
+{
+    for (size_t j = 0; j < e->c->dimension; j++) w[j] = u[j];
+    return OK;
+}
+
+/* -log of the product is gamma with shape d: w times the first d terms of exp(-log w). */
+static double kendall_of_product(const struct evaluation *e, double w)
+{
+    double term = w, sum = w;
+    for (size_t k = 1; k < e->c->dimension; k++) sum += term *= -log(w) / (double)k;
+    return sum;
+}
+
+const struct evaluator independent_evaluator = {
+    .takes_rotation = true,
+    .cdf = product_of_all,
+    .log_density = no_log_density,
+    .conditional = unchanged,
+    .from_conditional = unchanged,
+    .kendall = kendall_of_product,
+};
+
+/* ---- pairs by their own functions ---- */
+
+static status pair_cdf(const struct evaluation *e, const double *u, double *value, double *error)
+{
+    (void)error;
+    *value = e->c->family->pair->cdf(u[0], u[1], e->c->theta);
+    return OK;
+}
+
+static status pair_log_density(const struct evaluation *e, const double *u, double *value)
+{
+    *value = e->c->family->pair->log_density(u[0], u[1], e->c->theta);
+    return isnan(*value) ? OUT_OF_DOMAIN : OK;
+}
+
+static status pair_conditional(const struct evaluation *e, const double *u, double *w)
+{
+    w[0] = u[0];
+    w[1] = e->c->family->pair->conditional(u[0], u[1], e->c->theta);
+    return isnan(w[1]) ? OUT_OF_DOMAIN : OK;
+}
+
+static status pair_from_conditional(const struct evaluation *e, const double *w, double *u)
+{
+    u[0] = w[0];
+    u[1] = e->c->family->pair->conditional_quantile(w[0], w[1], e->c->theta);
+    return isnan(u[1]) ? OUT_OF_DOMAIN : OK;
+}
+
+/* The parameter at which a family has perfect dependence has no density. */
+static const char *pair_limit(const struct evaluation *e, enum question q)
+{
+    bool perfect = isnan(e->c->family->pair->conditional(0.5, 0.5, e->c->theta));
+    if (!perfect || q == ASK_CDF || q == ASK_KENDALL) return NULL;
+    return "has perfect dependence: it has no density and its columns no conditional distribution";
+}
+
+const struct evaluator pair_evaluator = {
+    .cdf = pair_cdf,
+    .log_density = pair_log_density,
+    .conditional = pair_conditional,
+    .from_conditional = pair_from_conditional,
+    .limit = pair_limit,
+};

@@ -1,0 +1,79 @@
+/* evaluate.h - what a copula says at points: probability, density, conditional distributions.
+ *
+ * A point is `dimension` numbers, all strictly between 0 and 1 unless it says otherwise; everything
+ * is about the rotated copula. A point is turned by 1 - u, kept at or below 1 - 2^-53.
+ */
+#ifndef EVALUATE_H
+#define EVALUATE_H
+
+#include "family.h"
+
+/* What can be asked. */
+enum question { ASK_CDF, ASK_DENSITY, ASK_CONDITIONAL, ASK_KENDALL };
+
+/* A copula made ready for any number of points. One thread at a time. */
+struct evaluation {
+    const copula *c;
+    const struct evaluator *by;
+    int rotation;             /* what the evaluator did not take in */
+    void *prepared;           /* the evaluator's own */
+    double *turned, *room;    /* dimension and 4 x dimension numbers */
+};
+
+/* The kinds of copula; each for the unrotated one unless it takes the rotation in. */
+struct evaluator {
+    bool takes_rotation;
+    status (*prepare)(struct evaluation *e, pool *p);                 /* or NULL */
+    status (*cdf)(const struct evaluation *e, const double *u, double *value, double *error);
+    status (*log_density)(const struct evaluation *e, const double *u, double *value);
+    status (*conditional)(const struct evaluation *e, const double *u, double *w);
+    status (*from_conditional)(const struct evaluation *e, const double *w, double *u);
+    double (*kendall)(const struct evaluation *e, double w);          /* or NULL; 0 < w < 1 */
+    const char *(*limit)(const struct evaluation *e, enum question q);
+};
+
+extern const struct evaluator independent_evaluator, pair_evaluator;
+
+/* A pair without rotation, 0 < u, v < 1, theta in the family's range. */
+struct pair_functions {
+    double (*cdf)(double u, double v, double theta);
+    double (*log_density)(double u, double v, double theta);          /* -infinity where it is 0 */
+    double (*conditional)(double u, double v, double theta);          /* P(V <= v | U = u) */
+    double (*conditional_quantile)(double u, double w, double theta); /* v at which that is w */
+};
+
+/* From the pool, which must stay until the last question. NO_MEMORY; OUT_OF_DOMAIN when a matrix is
+ * none of correlations. */
+status evaluation_of(const copula *c, struct evaluation *e, pool *p);
+
+/* Why a question has no answer for this copula whatever the point, as the end of a sentence that
+ * begins with "model"; NULL when it has. */
+const char *evaluation_limit(const struct evaluation *e, enum question q);
+
+/* P(U_1 <= u_1, ..., U_d <= u_d), 0 and 1 allowed. *error is 0, or the standard error of a value by
+ * quasi-Monte Carlo, or a bound on what cancellation may have left. Pairs to 1e-10 relative, those
+ * of a grouped t to 1e-10. OUT_OF_DOMAIN as evaluation_limit() says, and for a grouped t pair
+ * within 1e-13 of 0 or 1. */
+status cdf_at(const struct evaluation *e, const double *u, double *value, double *error);
+
+/* The same of a pair, 0 < u < 1, to 1e-15 absolute: much faster where a rotation makes it
+ * cancel. */
+status pair_cdf_roughly_at(const struct evaluation *e, const double *u, double *value);
+
+/* The log of the density, -infinity where that is 0. OUT_OF_DOMAIN where there is none: a singular
+ * matrix, perfect dependence. */
+status log_density_at(const struct evaluation *e, const double *u, double *value);
+
+/* w_1 = u_1, w_j = P(U_j <= u_j | U_1 = u_1, ..., U_(j-1) = u_(j-1)): independent uniforms when u
+ * is from the copula (Rosenblatt 1952). OUT_OF_DOMAIN likewise. */
+status conditional_at(const struct evaluation *e, const double *u, double *w);
+
+/* Its inverse, from w to u. */
+status from_conditional_at(const struct evaluation *e, const double *w, double *u);
+
+/* K(w) = P(C(U) <= w), 0 <= w <= 1, to 1e-9: Barbe, Genest, Ghoudi & Remillard (1996) for
+ * Archimedean copulas in any dimension, for other pairs an integral along the curve where C is w.
+ * NOT_SETTLED when a point of that curve is not found. */
+status kendall_at(const struct evaluation *e, double w, double *k);
+
+#endif

@@ -1,0 +1,130 @@
+/* The Kendall distribution: closed forms, its mean, which is tau, and the curve of a draw. */
+#include "asked.h"
+
+#include "../../src/quadrature.h"
+
+#include <gsl/gsl_errno.h>
+
+static double kendall(const copula *c, double w)
+{
+    pool p = { 0 };
+    struct evaluation e;
+    double k;
+    assert_int_equal(evaluation_of(c, &e, &p), OK);
+    assert_null(evaluation_limit(&e, ASK_KENDALL));
+    assert_int_equal(kendall_at(&e, w, &k), OK);
+    pool_empty(&p);
+    return k;
+}
+
+/* Genest & Rivest (1993), table 1: w - w log(w)/theta for gumbel, w + w (1 - w^theta)/theta for
+ * clayton; three independent columns w (1 - log w + log(w)^2/2) (Barbe et al. 1996) */
+static void closed_forms(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    for (double w = 0.05; w < 1; w += 0.1) {
+        double l = log(w);
+        assert_within(kendall(one_parameter(&s, "gumbel", 2, 2.5), w), w - w * l / 2.5, 1e-14);
+        double clayton = w + w * (1 - w * w) / 2, three = w * (1 - l + l * l / 2);
+        assert_within(kendall(one_parameter(&s, "clayton", 2, 2), w), clayton, 1e-14);
+        assert_within(kendall(one_parameter(&s, "independent", 3, 0), w), three, 1e-14);
+        assert_within(kendall(one_parameter(&s, "gumbel", 3, 1), w), three, 1e-14);
+        double negative = w - (w - sqrt(w)) / 0.5;          /* w - (w - w^(1-a))/a, a = 1/2 */
+        assert_within(kendall(one_parameter(&s, "clayton", 2, -0.5), w), negative, 1e-9);
+        assert_within(kendall(elliptical(&s, "gaussian", 2, 0, 0), w), w - w * l, 1e-9);
+        assert_within(kendall(one_parameter(&s, "amh", 2, 1), w), w + w * (1 - w), 1e-9);
+        assert_within(kendall(one_parameter(&s, "fgm", 2, 0), w), w - w * l, 1e-9);
+        assert_within(kendall(one_parameter(&s, "plackett", 2, 1), w), w - w * l, 1e-9);
+        assert_same(kendall(elliptical(&s, "t", 2, 1, 3), w), w);
+        assert_same(kendall(elliptical(&s, "t", 2, -1, 3), w), 1);
+        assert_same(kendall(one_parameter(&s, "clayton", 2, -1), w), 1);
+    }
+}
+
+/* K(x^2) 2 x */
+static double weighted(double x, const void *with)
+{
+    return kendall(with, x * x) * 2 * x;
+}
+
+/* tau = 3 - 4 int K (Genest & Rivest 1993), over sqrt(w) */
+static void mean_is_tau(const copula *c, double tau, double most)
+{
+    assert_within(3 - 4 * integral_of(weighted, c, 0, 1), tau, most);
+}
+
+static void means(void **state)
+{
+    (void)state;
+    const struct { const char *word; double theta; int rotation; } any[] = {
+        { "frank", 5, 0 }, { "frank", -5, 0 }, { "joe", 3, 0 }, { "amh", -0.8, 0 },
+        { "plackett", 7, 0 }, { "fgm", -1, 0 }, { "gumbel", 2, 180 }, { "clayton", 1, 90 },
+        { "joe", 2, 270 },
+    };
+    for (size_t k = 0; k < sizeof any / sizeof *any; k++) {
+        struct sample_copula s;
+        copula *c = one_parameter(&s, any[k].word, 2, any[k].theta);
+        double tau;
+        c->rotation = any[k].rotation;
+        assert_int_equal(c->family->tau_from_theta(c->theta, &tau), OK);
+        mean_is_tau(c, c->rotation % 180 ? -tau : tau, 2e-6);
+    }
+    struct sample_copula s;
+    mean_is_tau(elliptical(&s, "gaussian", 2, 0.5, 0), 1.0 / 3, 2e-6);
+}
+
+/* elliptical pairs with t: K of a draw, within 4.5 standard errors of a share */
+static void curve_of_a_draw(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    copula *c = elliptical(&s, "t", 2, 0.6, 3);
+    size_t n = effort(1000);
+    double *u = drawn(c, 5, 0, n), known = kendall(c, 0.3), count = 0;
+    for (size_t i = 0; i < n; i++) {
+        const double point[2] = { u[i], u[n + i] };
+        count += ask(c, CDF, point) <= 0.3;
+    }
+    assert_within(count / (double)n, known, 4.5 * sqrt(known * (1 - known) / (double)n));
+    free(u);
+}
+
+/* df that differ by nothing to speak of, against equal ones */
+static void grouped(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    double plain = kendall(elliptical(&s, "t", 2, 0.6, 3), 0.3);
+    s.df[1] = 3 * (1 + 1e-13);
+    assert_within(kendall(&s.c, 0.3), plain, 1e-8);
+}
+
+static void limits(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    pool p = { 0 };
+    struct evaluation e;
+    copula *c = elliptical(&s, "gaussian", 3, 0.5, 0);
+    assert_int_equal(evaluation_of(c, &e, &p), OK);
+    assert_non_null(evaluation_limit(&e, ASK_KENDALL));
+    c = one_parameter(&s, "gumbel", 3, 2);
+    c->rotation = 180;
+    assert_int_equal(evaluation_of(c, &e, &p), OK);
+    assert_non_null(evaluation_limit(&e, ASK_KENDALL));
+    pool_empty(&p);
+    assert_same(kendall(one_parameter(&s, "gumbel", 2, 2), 0), 0);
+    assert_same(kendall(one_parameter(&s, "plackett", 2, 2), 1), 1);
+}
+
+int main(void)
+{
+    gsl_set_error_handler_off();
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(closed_forms), cmocka_unit_test(means),
+        cmocka_unit_test(curve_of_a_draw), cmocka_unit_test(grouped),
+        cmocka_unit_test(limits),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}

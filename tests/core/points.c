@@ -1,0 +1,195 @@
+/* CDF, DENSITY, CONDITIONAL, FROMCONDITIONAL, KENDALLOF and THETABAND, as a cell calls them. */
+#include "cells.h"
+
+#include <gsl/gsl_errno.h>
+
+struct call {
+    pool pool;
+    report report;
+    value out;
+    status s;
+};
+
+static struct call *call(struct call *c, const char *name, size_t n, const value *in)
+{
+    const function *f = function_named(name);
+    assert_non_null(f);
+    c->report = (report){ .pool = &c->pool };
+    c->s = call_function(f, in, n, &c->out, &c->report);
+    return c;
+}
+
+/* MODEL of a family, its parameter, df, rotation and dimension; 0 where left out */
+static value model(struct call *c, const char *word, double parameter, double df, double rotation,
+                   double dimension)
+{
+    value in[] = { text(word), number(parameter), df > 0 ? number(df) : nothing(), number(rotation),
+                   number(dimension) };
+    call(c, "MODEL", 5, in);
+    assert_string_equal(c->report.why, "");
+    return c->out;
+}
+
+static double cell(const struct call *c, size_t row, size_t col)
+{
+    assert_string_equal(c->report.why, "");
+    assert_int_equal(c->s, OK);
+    assert_true(row < c->out.table.rows && col < c->out.table.cols);
+    return c->out.table.at[row * c->out.table.cols + col];
+}
+
+static void refused(const char *name, value m, value points, status want, const char *why)
+{
+    struct call c = { 0 };
+    call(&c, name, 2, (value[]){ m, points });
+    assert_string_equal(c.report.why, why);
+    assert_int_equal(c.s, want);
+    pool_empty(&c.pool);
+}
+
+/* Sheppard (1899); clayton with theta = 1 is uv/(u + v - uv); joint_exceedance.csv */
+static void values(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    value gaussian = model(&c, "gaussian", 0.5, 0, 0, 2);
+    value clayton = model(&c, "clayton", 1, 0, 0, 2);
+    value t = model(&c, "t", 0.5, 4, 180, 2);
+    value points = cells(&c.pool, "0.5,0.5;0.2,0.9;,0.5;0,0.3;1,0.4");
+    call(&c, "CDF", 2, (value[]){ gaussian, points });
+    assert_close(cell(&c, 0, 0), 1.0 / 3, 1e-12);
+    assert_int_equal(c.out.table.rows, 5);
+    assert_int_equal(c.out.table.cols, 1);
+    assert_true(marks_gap(cell(&c, 2, 0)));
+    assert_non_null(strstr(c.report.facts, "1 row of points with gaps left empty"));
+    call(&c, "CDF", 2, (value[]){ clayton, points });
+    assert_close(cell(&c, 1, 0), 0.18 / 0.92, 1e-14);
+    assert_same(cell(&c, 3, 0), 0);
+    assert_same(cell(&c, 4, 0), 0.4);
+    call(&c, "CDF", 2, (value[]){ t, cells(&c.pool, "0.01,0.01") });
+    assert_close(cell(&c, 0, 0), 0.0028767843485153781, 1e-10);
+    call(&c, "DENSITY", 2, (value[]){ gaussian, cells(&c.pool, "motor,cargo;0.5,0.5") });
+    assert_string_equal(c.out.table.words[0], "density");
+    assert_close(cell(&c, 1, 0), 2 / sqrt(3), 1e-13);
+    call(&c, "CONDITIONAL", 2, (value[]){ clayton, cells(&c.pool, "motor,cargo;0.5,0.5") });
+    assert_string_equal(c.out.table.words[1], "cargo");
+    assert_same(cell(&c, 1, 0), 0.5);
+    assert_close(cell(&c, 1, 1), 4.0 / 9, 1e-14);          /* (v/(u+v-uv))^2 */
+    value back = c.out;
+    call(&c, "FROMCONDITIONAL", 2, (value[]){ clayton, back });
+    assert_close(cell(&c, 1, 1), 0.5, 1e-14);
+    call(&c, "KENDALLOF", 2, (value[]){ clayton, cells(&c.pool, "0.5;1") });
+    assert_close(cell(&c, 0, 0), 0.75, 1e-14);
+    assert_same(cell(&c, 1, 0), 1);
+    pool_empty(&c.pool);
+}
+
+/* David (1953): 1/4 at correlation 1/2 in three columns; the error is in WHY. */
+static void errors_are_told(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    value three = model(&c, "gaussian", 0.5, 0, 0, 3), survival = model(&c, "gumbel", 2, 0, 180, 3);
+    call(&c, "CDF", 2, (value[]){ three, cells(&c.pool, "0.5,0.5,0.5") });
+    assert_within(cell(&c, 0, 0), 0.25, 1e-5);
+    assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo, with a standard error of at most "));
+    call(&c, "CDF", 2, (value[]){ survival, cells(&c.pool, "0.5,0.5,0.5") });
+    assert_true(cell(&c, 0, 0) > 0.25);
+    assert_non_null(strstr(c.report.facts, "rounding may have cost up to "));
+    pool_empty(&c.pool);
+}
+
+static void refusals(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    pool *p = &c.pool;
+    value gumbel = model(&c, "gumbel", 2, 0, 0, 2), singular = model(&c, "gaussian", 1, 0, 0, 2);
+    value opposite = model(&c, "clayton", -1, 0, 0, 2), many = model(&c, "frank", 2, 0, 0, 300);
+    value three = model(&c, "t", 0.5, 3, 0, 3), survival = model(&c, "joe", 2, 0, 180, 17);
+    refused("CDF", gumbel, cells(p, "0.5,0.5,0.5"), BAD_KIND,
+            "points has 3 columns, but the model has 2");
+    refused("CDF", gumbel, cells(p, "a,b;0.5,0.5;0.5,1.5"), OUT_OF_DOMAIN,
+            "points has 1.5 in row 3, column 2, but must be between 0 and 1");
+    refused("DENSITY", gumbel, cells(p, "0.5,1"), OUT_OF_DOMAIN,
+            "points has 1 in row 1, column 2, but must be between 0 and 1, ends excluded");
+    refused("DENSITY", singular, cells(p, "0.5,0.5"), OUT_OF_DOMAIN,
+            "model has a singular matrix: it has no density and some columns no conditional "
+            "distribution");
+    refused("CONDITIONAL", opposite, cells(p, "0.5,0.5"), OUT_OF_DOMAIN,
+            "model has perfect dependence: it has no density and its columns no conditional "
+            "distribution");
+    refused("KENDALLOF", three, number(0.5), OUT_OF_DOMAIN,
+            "model has more than two columns, where its Kendall distribution has no formula");
+    value wide = { .is = IS_TABLE, .table = { 1, 300, pool_take(p, 300, sizeof(double)), NULL } };
+    for (size_t j = 0; j < 300; j++) wide.table.at[j] = 0.5;
+    refused("CONDITIONAL", many, wide, OUT_OF_DOMAIN,
+            "model has too many columns: conditional distributions of its family can have at most "
+            "200");
+    wide.table.cols = 17;
+    refused("CDF", survival, wide, OUT_OF_DOMAIN,
+            "model is rotated, so that its distribution function is a sum over all subsets of "
+            "columns: there can be at most 16");
+    call(&c, "MODEL", 2, (value[]){ text("gaussian"), cells(p, "motor,cargo;1,0.5;0.5,1") });
+    refused("CDF", c.out, cells(p, "motor,fire;0.5,0.5"), BAD_KIND,
+            "points has the name \"fire\" above column 2, but the model calls that line \"cargo\"");
+    pool_empty(p);
+}
+
+/* Hollander & Wolfe's (1973) nine pairs */
+static void bands(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    value x = cells(&c.pool, "44.4;45.9;41.9;53.3;44.7;44.1;50.7;45.2;60.1");
+    value y = cells(&c.pool, "2.6;3.1;2.5;5.0;3.6;4.0;5.2;2.8;3.8");
+    call(&c, "THETABAND", 3, (value[]){ text("gumbel"), x, y });
+    assert_close(cell(&c, 0, 0), 1.8, 1e-14);
+    assert_same(cell(&c, 0, 1), 1);
+    assert_close(cell(&c, 0, 3), 0.253575258104244 * 3.24, 1e-9);
+    assert_same(cell(&c, 0, 4), 9);
+    assert_non_null(strstr(c.report.facts, "low cut: that of tau is -0.05"));
+    assert_non_null(strstr(c.report.facts, "reaches only [0;1); it is 1"));
+    call(&c, "THETABAND", 4, (value[]){ text("clayton"), x, y, number(0.999) });
+    assert_true(marks_gap(cell(&c, 0, 2)));
+    assert_non_null(strstr(c.report.facts, "reaches only [-1;1); it is left open"));
+    call(&c, "THETABAND", 3, (value[]){ text("fgm"), x, y });
+    assert_int_equal(c.s, OUT_OF_DOMAIN);
+    assert_string_equal(c.report.why, "tau of x and y is 0.444444, but a pair of the fgm copula "
+                                      "reaches only [-0.222222;0.222222]");
+    call(&c, "THETABAND", 3, (value[]){ text("independent"), x, y });
+    assert_string_equal(c.report.why, "independent has no parameter");
+    value two = cells(&c.pool, "1;2");
+    call(&c, "THETABAND", 3, (value[]){ text("joe"), two, two });
+    assert_int_equal(c.s, TOO_FEW);
+    pool_empty(&c.pool);
+}
+
+static void every_take_can_fail(void **state)
+{
+    (void)state;
+    static const char *const names[] = { "CDF", "DENSITY", "CONDITIONAL", "FROMCONDITIONAL" };
+    for (int k = 0; k < 12; k++)
+        for (size_t fail_at = 1;; fail_at++) {
+            struct call c = { 0 };
+            value m = k < 4 ? model(&c, "gumbel", 2, 0, 0, 3) : k < 8 ? model(&c, "t", 0.5, 4, 0, 3)
+                                                             : model(&c, "amh", 0.5, 0, 90, 2);
+            value points = cells(&c.pool, k < 8 ? "a,b,c;0.5,0.2,0.3" : "a,b;0.5,0.2");
+            c.pool.fail_at = c.pool.taken + fail_at;
+            call(&c, names[k % 4], 2, (value[]){ m, points });
+            bool failed = c.pool.taken >= c.pool.fail_at;
+            pool_empty(&c.pool);
+            assert_int_equal(c.s, failed ? NO_MEMORY : OK);
+            if (!failed) break;
+        }
+}
+
+int main(void)
+{
+    gsl_set_error_handler_off();                             /* as the add-in does at load */
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(values), cmocka_unit_test(errors_are_told), cmocka_unit_test(refusals),
+        cmocka_unit_test(bands), cmocka_unit_test(every_take_can_fail),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}
