@@ -291,8 +291,8 @@ static void reference_families(void)
     puts("## Copula families\n\n"
          "Written from their rows in `src/copulas`. Ranges are those of the unrotated copula; tau "
          "and Spearman's rho of a pair. [ and ] mean that an end belongs to the range, ( and ) "
-         "that it does not. Tails: corners with tail dependence; rotation 180 exchanges them. Rotations "
-         "0, 90, 180, 270 for pairs, 0 and 180 beyond.\n\n"
+         "that it does not. Tails: corners with tail dependence; rotation 180 exchanges them. "
+         "Rotations 0, 90, 180, 270 for pairs, 0 and 180 beyond.\n\n"
          "| family | parameter | tau | rho | dimensions | tails | for | source |\n"
          "|---|---|---|---|---|---|---|---|");
     for (const family *const *f = families; *f; f++) reference_family(*f, &p);

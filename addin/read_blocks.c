@@ -205,6 +205,8 @@ status read_margins(const char *name, const value *v, struct margins *m, report 
     if (s != OK) return s;
     *m = (struct margins){ .lines = l.rows, .of = pool_take(r->pool, l.rows, sizeof *m->of) };
     if (!m->of) return NO_MEMORY;
+    if (!l.first && !row_names_distribution(t, r->pool))
+        return all_distributions(name, word_at(t, 0, l.column[MARGIN_DISTRIBUTION]), 1, r);
     s = read_names(name, t, &l, MARGIN_NAME, &m->names, r);
     for (size_t i = 0; i < l.rows && s == OK; i++) s = read_margin(name, t, &l, i, m->of + i, r);
     return s;

@@ -152,6 +152,7 @@ status read_matrix(const value *v, const char *name, samples *m, bool *header, r
     status s = table_of(name, v, "a square range of numbers", &t, r);
     if (s != OK) return s;
     size_t rows = filled_rows(t);
+    if (!rows) return refuse(r, BAD_KIND, "%s is empty", name);
     *header = rows > 1 && header_in(t);
     bool side = t->cols > 1 && names_in_column(t, *header);
     size_t d = t->cols - side;
@@ -166,8 +167,9 @@ status read_matrix(const value *v, const char *name, samples *m, bool *header, r
             s = number_at(name, t, i + *header, j + side, x, r);
             if (s != OK) return s;
             if (is_gap(*x))
-                return refuse(r, BAD_KIND, "%s has an empty cell in row %zu, column %zu", name,
-                              i + *header + 1, j + side + 1);
+                return refuse(r, BAD_KIND, "%s has an empty cell in row %zu, column %zu (MIRROR "
+                              "makes a full matrix of a triangle)", name, i + *header + 1,
+                              j + side + 1);
         }
     return names_of_matrix(name, t, *header, side, m, r);
 }

@@ -77,6 +77,25 @@ status square_of_any_size(const char *name, const value *v, square *found, repor
     return check_frame(found, r);
 }
 
+static status check_name(const square *s, size_t row, size_t column, size_t line,
+                         const char **names, const char *other, report *r)
+{
+    const char *own = word_at(s->cells, row, column);
+    if (!own || !*names[line] || same_word(own, names[line])) return OK;
+    return refuse(r, BAD_KIND, "%s names line %zu \"%s\" in row %zu, column %zu, but %s names it "
+                  "\"%s\"", s->name, line + 1, own, row + 1, column + 1, other, names[line]);
+}
+
+status check_names(const square *s, const char **names, const char *other, report *r)
+{
+    status done = OK;
+    for (size_t i = 0; !done && i < s->d; i++) {
+        if (s->row) done = check_name(s, 0, s->column + i, i, names, other, r);
+        if (!done && s->column) done = check_name(s, s->row + i, 0, i, names, other, r);
+    }
+    return done;
+}
+
 static value cell_at(const square *s, size_t i, size_t j)
 {
     const table *t = s->cells;

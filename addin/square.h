@@ -21,6 +21,9 @@ status square_of_size(const char *name, const value *v, size_t d, square *found,
  * number. */
 status square_of_any_size(const char *name, const value *v, square *found, report *r);
 
+/* Names around the square must be those of another argument; empty ones are no names. */
+status check_names(const square *s, const char **names, const char *other, report *r);
+
 /* The cell that counts for row i and column j: itself, or the opposite one when it is empty. A gap
  * when both are. BAD_KIND when both are filled and differ. */
 status cell_or_opposite(const square *s, size_t i, size_t j, value *cell, report *r);

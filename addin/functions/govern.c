@@ -25,12 +25,22 @@ static status say(const char *text, value *out)
     return text ? OK : NO_MEMORY;
 }
 
+static bool only_faults(const value *result)
+{
+    const table *t = &result->table;
+    for (size_t i = 0; result->is == IS_TABLE && i < t->rows * t->cols; i++)
+        if (fault_in(t->at[i]) == OK && !marks_gap(t->at[i])) return false;
+    return result->is == IS_TABLE && !t->words && fault_in(t->at[0]) != OK;
+}
+
 /* "fine", with the facts. The size is told since one cell shows only the first of a result. */
 static status say_fine(const value *result, report *inner, value *out)
 {
     const table *t = &result->table;
     if (result->is == IS_TABLE && (t->rows > 1 || t->cols > 1))
         remark(inner, "the result is %zu x %zu cells", t->rows, t->cols);
+    if (only_faults(result))
+        return say(text_from(inner->pool, "no cell has a value: %s", inner->facts), out);
     return say(text_from(inner->pool, *inner->facts ? "fine: %s" : "fine", inner->facts), out);
 }
 

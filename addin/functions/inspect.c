@@ -46,8 +46,12 @@ static status cell_feasible(const argument *in, value *out, report *r)
     }
     bool feasible;
     tidy_matrix(matrix, d);
+    double lowest;
     status s = matrix_feasible(matrix, d, in[1].number, &feasible, r->pool);
-    return s ? s : answer(out, feasible);
+    if (!s) s = lowest_eigenvalue(matrix, d, &lowest, r->pool);
+    if (s) return s;
+    remark(r, "the lowest eigenvalue is %g", lowest);
+    return answer(out, feasible);
 }
 
 /* A line's place in the matrix. */
@@ -96,7 +100,9 @@ static status remark_clashes(const double *matrix, size_t d, size_t all, report 
     }
     bool feasible;
     status s = matrix_feasible(matrix, d, 0, &feasible, r->pool);
-    if (!s && !feasible) remark(r, "each triple can stand, but the matrix as a whole cannot");
+    if (!s)
+        remark(r, feasible ? "no triple clashes, and the matrix is feasible"
+                           : "each triple can stand, but the matrix as a whole cannot");
     return s;
 }
 

@@ -157,6 +157,13 @@ static status pair_figure(void *pairs, size_t i, size_t j, double *x)
     return p->figure == COUNT ? OK : tau_b(&c, x);
 }
 
+static size_t above_zero(const double *weight, size_t n)
+{
+    size_t count = 0;
+    for (size_t i = 0; i < n; i++) count += weight[i] > 0;
+    return count;
+}
+
 static status cell_taugrid(const argument *in, value *out, report *r)
 {
     static const char *const names[] = { "tau", "error", "count", "low", "high" };
@@ -172,7 +179,11 @@ static status cell_taugrid(const argument *in, value *out, report *r)
     if (s == OK) s = make_ready(&p, r);
     if (s == OK) s = symmetric_grid(p.data.cols, pair_figure, &p, out, r);
     if (s != OK) return s;
-    remark_grid_rows(by_rows, p.data.rows, in[DATA_COLUMNS].filled, r);
+    if (by_rows && p.weights)
+        remark_rows(above_zero(p.weights, p.data.rows), in[DATA_COLUMNS].filled,
+                    "gaps or weight 0", r);
+    else
+        remark_grid_rows(by_rows, p.data.rows, in[DATA_COLUMNS].filled, r);
     return OK;
 }
 

@@ -1,6 +1,7 @@
 /* measure_tail.c - dependence in the tails, and the Kendall distribution of data. */
 #include "../function.h"
 #include "../measures.h"
+#include "../words.h"
 #include "../../src/kendall_curve.h"
 #include "../../src/tail_dependence.h"
 
@@ -33,7 +34,8 @@ static status cell_tail(const argument *in, value *out, report *r)
     put_number(out, 0, 0, t.lambda);
     if (!is_gap(t.error)) put_number(out, 0, 1, t.error);
     put_number(out, 0, 2, (double)t.joint);
-    remark(r, "%zu rows in the tail of each column", k);
+    remark(r, "the tail has room for %zu row%s of each column", k, plural(k));
+    if (t.joint > k) remark(r, "ties put %zu rows into it, so that the figure is above 1", t.joint);
     return OK;
 }
 
@@ -87,8 +89,9 @@ const function measure_tail_functions[] = {
             "least 1, and mid-ranks R and S: upper is #(R > n-k and S > n-k)/k, lower #(R <= k "
             "and S <= k)/k. The standard error is that of Schmidt & Stadtmueller (2006) for a "
             "tail copula that is alike in both columns, sqrt(L (1 - L)(1 - L/2)/k); it stays "
-            "empty under ten joint observations, where it would say nothing. #N/A with fewer than "
-            "two rows.",
+            "empty under ten joint observations, where it would say nothing, and where ties "
+            "put more than k rows into the tail, which makes the figure exceed 1. #N/A with fewer "
+            "than two rows.",
         .examples = {
             { "TAIL({1|2|3|4|5|6|7|8};{1|2|3|4|5|6|8|7};\"upper\";0.25)", "1" },
             { "TAIL({1|2|3|4|5|6|7|8};{1|8|3|4|5|6|2|7};\"lower\";0.25)", "0.5" },

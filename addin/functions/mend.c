@@ -1,5 +1,6 @@
 /* mend.c - mending correlation matrices. */
 #include "../correlations.h"
+#include "../read.h"
 #include "../square.h"
 #include "../words.h"
 #include "../../src/duality.h"
@@ -18,28 +19,41 @@ static const char FIRMNESS_HELP[] =
 
 enum { GIVEN, FLOOR, FIRMNESS };
 
+/* A cell's own fault, whatever stands opposite. */
+static status check_firmness(const square *s, size_t i, size_t j, report *r)
+{
+    size_t row = s->row + i, column = s->column + j;
+    const char *word = word_at(s->cells, row, column);
+    double x = s->cells->at[row * s->cells->cols + column];
+    if (word && !same_word(word, "hold"))
+        return refuse(r, BAD_KIND, "firmness has the text \"%s\" in row %zu, column %zu, but must "
+                      "have a number, hold or nothing", word, row + 1, column + 1);
+    if (!word && isfinite(x) && !(x > 0))
+        return refuse(r, OUT_OF_DOMAIN, "firmness is %g in row %zu, column %zu, but must be above "
+                      "0", x, row + 1, column + 1);
+    return OK;
+}
+
 static status firmness_of(const square *s, size_t i, size_t j, double *firmness, report *r)
 {
     value cell;
-    status read = cell_or_opposite(s, i, j, &cell, r);
+    status read = check_firmness(s, i, j, r);
+    if (!read) read = check_firmness(s, j, i, r);
+    if (!read) read = cell_or_opposite(s, i, j, &cell, r);
     if (read) return read;
-    size_t row = s->row + i + 1, column = s->column + j + 1;
-    bool word = cell.is == IS_TEXT;
-    if (word && !same_word(cell.text, "hold"))
-        return refuse(r, BAD_KIND, "firmness has the text \"%s\" for row %zu, column %zu, but must "
-                      "have a number, hold or nothing", cell.text, row, column);
-    *firmness = word ? INFINITY : cell.is == IS_NOTHING ? 1 : cell.number;
-    if (word || (*firmness > 0 && isfinite(*firmness))) return OK;
-    return refuse(r, OUT_OF_DOMAIN, "firmness is %g for row %zu, column %zu, but must be above 0",
-                  *firmness, row, column);
+    *firmness = cell.is == IS_TEXT ? INFINITY : cell.is == IS_NOTHING ? 1 : cell.number;
+    return OK;
 }
 
 /* Firmness of each entry, INFINITY where it is held. *alike: the same everywhere, and nothing held.
  */
-static status read_firmness(const value *v, size_t d, double **firmness, bool *alike, report *r)
+static status read_firmness(const value *v, const samples *matrix, double **firmness, bool *alike,
+                            report *r)
 {
     square cells;
+    size_t d = matrix->cols;
     status s = square_of_size("firmness", v, d, &cells, r);
+    if (!s && matrix->names) s = check_names(&cells, matrix->names, "matrix", r);
     if (s) return s;
     double *w = *firmness = pool_take_zeroed(r->pool, d, d * sizeof *w);
     if (!w) return NO_MEMORY;
@@ -54,7 +68,7 @@ static status read_firmness(const value *v, size_t d, double **firmness, bool *a
 }
 
 /* Names the lines that the proof of a clash (firm_repair.h) rests on most. */
-static status refuse_holds(const argument *a, const double *proof, report *r)
+static status refuse_holds(const argument *a, double floor, const double *proof, report *r)
 {
     enum { MOST_NAMED = 8 };
     size_t d = a->data.cols, named = 0;
@@ -66,6 +80,10 @@ static status refuse_holds(const argument *a, const double *proof, report *r)
         lines = text_from(r->pool, named++ ? "%s, %zu" : "%s%zu", lines, i + 1);
         if (!lines) return NO_MEMORY;
     }
+    if (floor > 0)
+        return refuse(r, OUT_OF_DOMAIN, "the entries held in firmness cannot stand together with "
+                      "the floor %g; look at those among lines %s, or lower the floor", floor,
+                      lines);
     return refuse(r, OUT_OF_DOMAIN, "the entries held in firmness cannot stand together; look at "
                   "those among lines %s", lines);
 }
@@ -84,7 +102,7 @@ static status mend_firmly(const argument *in, const double *given, struct mended
     if (!m->proof) return NO_MEMORY;
     status s = nearest_firm(given, m->firmness, d, in[FLOOR].number, m->nearest, m->proof, &clash,
                             &m->how, r->pool);
-    if (s == OUT_OF_DOMAIN && clash) return refuse_holds(&in[GIVEN], m->proof, r);
+    if (s == OUT_OF_DOMAIN && clash) return refuse_holds(&in[GIVEN], in[FLOOR].number, m->proof, r);
     if (s == NOT_SETTLED)
         return refuse(r, s, "the repair did not settle; entries held that leave no room, and "
                       "firmness of very different size, can be the reason");
@@ -97,7 +115,8 @@ static status mend(const argument *in, const double *given, struct mended *m, re
     size_t d = in[GIVEN].data.cols;
     bool alike = true;
     status s = OK;
-    if (in[FIRMNESS].given) s = read_firmness(in[FIRMNESS].raw, d, &m->firmness, &alike, r);
+    if (in[FIRMNESS].given)
+        s = read_firmness(in[FIRMNESS].raw, &in[GIVEN].data, &m->firmness, &alike, r);
     if (s) return s;
     if (!alike) return mend_firmly(in, given, m, r);
     m->firmness = NULL;

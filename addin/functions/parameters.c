@@ -28,9 +28,10 @@ static bool any_below(const value *out, double low)
 
 static void remark_pairs_only(const family *f, const value *out, report *r)
 {
-    if (any_below(out, f->theta_low_beyond_pairs))
-        remark(r, "theta below %g is for pairs only; rotation 90 of a positive theta is another "
-               "way to negative dependence", f->theta_low_beyond_pairs);
+    if (!any_below(out, f->theta_low_beyond_pairs)) return;
+    remark(r, "theta below %g is for pairs only", f->theta_low_beyond_pairs);
+    if (f->tail(1, NAN, LOWER) != f->tail(1, NAN, UPPER))
+        remark(r, "rotation 90 of a positive theta is another negative dependence of a pair");
 }
 
 static status refuse_reach(const char *what, const argument *a, const char *range,
@@ -196,7 +197,7 @@ static status take_matrix(const argument *in, copula *c, double **matrix, report
     if (in[DIMENSION].given && c->dimension != m.cols)
         return refuse(r, BAD_KIND, "dimension is %zu, but parameter is a matrix of %zu columns",
                       c->dimension, m.cols);
-    if (a.header) remark(r, "header of parameter skipped");
+    if (m.names) remark(r, "lines named as parameter names them");
     c->dimension = m.cols;
     c->lines = m.names;
     return take_correlations(&a, matrix, r);

@@ -213,7 +213,7 @@ const function points_functions[] = {
             { "CDF(MODEL(\"gumbel\";2);{0.5;1.5})", "#NUM!" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
             { .name = "points",
               .help = "One point a row, one column for each of the model, from 0 to 1.",
@@ -239,7 +239,7 @@ const function points_functions[] = {
             { "DENSITY(MODEL(\"gaussian\";1);{0.5;0.5})", "#NUM!" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
             { .name = "points",
               .help = "One point a row, one column for each of the model, between 0 and 1.",
@@ -264,7 +264,7 @@ const function points_functions[] = {
             { "INDEX(CONDITIONAL(MODEL(\"independent\");{0.3;0.8});1;2)", "0.8" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
             { .name = "points",
               .help = "One point a row, one column for each of the model, between 0 and 1.",
@@ -289,7 +289,7 @@ const function points_functions[] = {
               "0.877620530654097" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
             { .name = "points",
               .help = "One row of uniforms for each row wanted, between 0 and 1.", .kind = DATA },
@@ -312,7 +312,7 @@ const function points_functions[] = {
             { "KENDALLOF(MODEL(\"clayton\";1);0.5)", "0.75" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL or FIT returns it.",
+            { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
             { .name = "w", .help = "From 0 to 1, a number or a range of them.", .kind = NUMBERS,
               .low = 0, .high = 1 },

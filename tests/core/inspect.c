@@ -41,15 +41,15 @@ static void assert_feasible(const char *matrix, double floor, double want, const
 static void feasible_says_why_not(void **unused)
 {
     (void)unused;
-    assert_feasible("1,0.9;0.9,1", 0, 1, "");
-    assert_feasible("1,0.9;0.9,1", 0.2, 0, "");
-    assert_feasible("1,0.9,0;0.9,1,0.9;0,0.9,1", 0, 0, "");
+    assert_feasible("1,0.9;0.9,1", 0, 1, "the lowest eigenvalue is 0.1");
+    assert_feasible("1,0.9;0.9,1", 0.2, 0, "the lowest eigenvalue is 0.1");
+    assert_feasible("1,0.9,0;0.9,1,0.9;0,0.9,1", 0, 0, "the lowest eigenvalue is -0.272792");
     assert_feasible("1,0.9;0.8,1", 0, 0, "matrix is not symmetric: 0.9 stands in row 1, column 2, "
                                          "but 0.8 in the opposite cell");
     assert_feasible("1,2;2,1", 0, 0, "matrix has 2 in row 1, column 2, outside [-1;1]");
     assert_feasible(",a,b;a,1,0;b,0,2", 0, 0,
-                    "header of matrix skipped (\"a\", ...); matrix has 2 on its diagonal, in row 3, column 3, "
-                    "where 1 must stand");
+                    "header of matrix skipped (\"a\", ...); matrix has 2 on its diagonal, in row 3, "
+                    "column 3, where 1 must stand");
 }
 
 /* The limits for 0.5 and 0.7 of Stanley & Wang (1969), as printed to eight digits. */

@@ -52,10 +52,17 @@ static void refusals_name_the_cell(void **unused)
             "matrix has -3 in row 2, column 3, outside [-1;1]");
     refused(CHAIN, 0, "1,2;2,1", BAD_KIND,
             "firmness is 2 x 2 cells, but must be 3 x 3 like the matrix");
-    refused(CHAIN, 0, ",held,;,,;,,", BAD_KIND, "firmness has the text \"held\" for row 1, column "
+    refused(CHAIN, 0, ",held,;,,;,,", BAD_KIND, "firmness has the text \"held\" in row 1, column "
                                                 "2, but must have a number, hold or nothing");
     refused(CHAIN, 0, ",,0;,,;,,", OUT_OF_DOMAIN,
-            "firmness is 0 for row 1, column 3, but must be above 0");
+            "firmness is 0 in row 1, column 3, but must be above 0");
+    refused(CHAIN, 0, ",,;,,;,helt,", BAD_KIND, "firmness has the text \"helt\" in row 3, column "
+                                                "2, but must have a number, hold or nothing");
+    refused("a,b;1,0.5;0.5,1", 0, "b,a;,hold;,", BAD_KIND,
+            "firmness names line 1 \"b\" in row 1, column 1, but matrix names it \"a\"");
+    refused("1,0.9;0.9,1", 0.2, ",hold;,", OUT_OF_DOMAIN,
+            "the entries held in firmness cannot stand together with the floor 0.2; look at those "
+            "among lines 1, 2, or lower the floor");
     refused(CHAIN, 0, ",2,;3,,;,,", BAD_KIND, "firmness has different entries in row 1, column 2 "
                                               "and in the opposite cell");
     refused(CHAIN, 0, ",hold,hold;,,hold;,,", OUT_OF_DOMAIN, "the entries held in firmness cannot "

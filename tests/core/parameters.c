@@ -97,7 +97,7 @@ static void negative_theta(void **state)
     assert_close(c.out.number, -1.0 / 3, 1e-15);
     assert_string_equal(c.report.facts,
                         "theta below 0 is for pairs only; rotation 90 of a positive theta is "
-                        "another way to negative dependence");
+                        "another negative dependence of a pair");
     call(&c, "theta", 2, (value[]){ text("clayton"), number(0.2) });
     assert_string_equal(c.report.facts, "");
     call(&c, "theta", 2, (value[]){ text("gaussian"), number(-0.2) });
