@@ -384,7 +384,7 @@ const function price_functions[] = {
               .help = TERMS_HELP },
             AGGREGATE_PARAMETER,
             { .name = "settings", .kind = SETTINGS, .words = setting_words, .optional = true,
-              .help = "Labels and values." },
+              .help = "Labels and values; a blank value means the default." },
             { .name = "samples", .kind = FULL_DATA, .optional = true,
               .help = "Losses for the distribution sample, one column for each such line." },
         },
