@@ -4,20 +4,29 @@
 #include "../shape.h"
 #include "../words.h"
 #include "../../src/evaluate.h"
+#include "../../src/evaluation_work.h"
 
 #include <math.h>
 
 enum { ASKED, POINTS };
 
+static const double LONGEST = 20;         /* seconds that a call may keep the office waiting */
+
 /* What came out, and what WHY is to say of it. */
 struct answers {
     samples s;
     double error;             /* the largest that a row has */
-    size_t empty;             /* rows with a gap */
+    size_t empty, too_far;    /* rows with a gap, and those that a grouped t says nothing of */
 };
 
 /* One row of points; the answer goes into `to`. */
 typedef status answer_row(const struct evaluation *e, const double *u, double *to, double *error);
+
+/* How a row is answered, and about how long that takes. */
+struct way {
+    answer_row *of;
+    seconds_at *takes;
+};
 
 static status names_agree(const copula *c, const samples *points, report *r)
 {
@@ -57,11 +66,43 @@ static bool take_row(const samples *points, size_t i, double *u)
     return whole;
 }
 
+static status within_time(double seconds, size_t n, const char *what, report *r)
+{
+    if (seconds <= LONGEST) return OK;
+    return refuse(r, OUT_OF_DOMAIN, "%zu %s%s of this model would take about %g s%s", n, what,
+                  plural(n), round(seconds), n > 1 ? ": ask for fewer at a time" : "");
+}
+
+/* Less quasi-Monte Carlo for many rows; refuses what would freeze the office all the same. */
+static status check_time(const argument *in, const struct evaluation *e, seconds_at *takes,
+                         report *r)
+{
+    const samples *points = &in[POINTS].data;
+    double *u = pool_take(r->pool, points->cols, sizeof *u), seconds = 0;
+    size_t whole = 0;
+    if (!u) return NO_MEMORY;
+    for (size_t i = 0; i < in[POINTS].filled; i++)
+        if (take_row(points, i, u)) {
+            seconds += takes(e, u);
+            whole++;
+        }
+    if (takes == cdf_seconds_at) seconds = with_fewer_box_points(e, seconds);
+    return within_time(seconds, whole, "point", r);
+}
+
+static bool is_grouped(const copula *c)
+{
+    for (size_t j = 1; c->df && j < c->dimension; j++)
+        if (c->df[j] != c->df[0]) return true;
+    return false;
+}
+
 static status each_row(const argument *in, const struct evaluation *e, answer_row *of,
                        struct answers *a, report *r)
 {
     const samples *points = &in[POINTS].data;
     double *u = pool_take(r->pool, points->cols, 2 * sizeof *u), *to = u + points->cols;
+    bool grouped = is_grouped(in[ASKED].model);
     if (!u) return NO_MEMORY;
     for (size_t i = 0; i < a->s.rows; i++) {
         double error = 0;
@@ -69,6 +110,7 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
         status s = whole ? of(e, u, to, &error) : OK;
         if (s == NO_MEMORY) return s;
         if (!whole) a->empty++;
+        if (grouped && s == OUT_OF_DOMAIN) a->too_far++;
         if (s == OK && whole) a->error = fmax(a->error, error);
         for (size_t j = 0; j < a->s.cols; j++)
             column(&a->s, j)[i] = !whole ? gap() : s != OK ? fault(s)
@@ -77,8 +119,18 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
     return OK;
 }
 
+static void remark_on_rows(const struct answers *a, report *r)
+{
+    if (a->empty)
+        remark(r, "%zu row%s of points with gaps left empty", a->empty, plural(a->empty));
+    if (a->too_far)
+        remark(r, "%zu row%s too far out for a grouped t: u within 1e-13 of 0 or 1, a quantile "
+               "beyond 1e308, or columns that together put the chi-squares some 8 standard "
+               "deviations out", a->too_far, plural(a->too_far));
+}
+
 /* `cols` answers a row. */
-static status ask_all(const argument *in, enum question q, size_t cols, answer_row *of,
+static status ask_all(const argument *in, enum question q, size_t cols, struct way way,
                       struct answers *a, struct evaluation *e, report *r)
 {
     status s = check_points(in, q == ASK_CDF, r);
@@ -86,12 +138,13 @@ static status ask_all(const argument *in, enum question q, size_t cols, answer_r
     if (s != OK) return s;
     const char *limit = evaluation_limit(e, q);
     if (limit) return refuse(r, OUT_OF_DOMAIN, "model %s", limit);
+    s = check_time(in, e, way.takes, r);
+    if (s != OK) return s;
     *a = (struct answers){ .s = { .rows = in[POINTS].filled, .cols = cols } };
     a->s.at = pool_take(r->pool, a->s.rows, cols * sizeof *a->s.at);
     if (!a->s.at) return NO_MEMORY;
-    s = each_row(in, e, of, a, r);
-    if (s == OK && a->empty)
-        remark(r, "%zu row%s of points with gaps left empty", a->empty, plural(a->empty));
+    s = each_row(in, e, way.of, a, r);
+    if (s == OK) remark_on_rows(a, r);
     return s;
 }
 
@@ -116,9 +169,11 @@ static status cell_cdf(const argument *in, value *out, report *r)
 {
     struct answers a;
     struct evaluation e;
-    status s = ask_all(in, ASK_CDF, 1, row_cdf, &a, &e, r);
+    struct way way = { row_cdf, cdf_seconds_at };
+    status s = ask_all(in, ASK_CDF, 1, way, &a, &e, r);
     if (s == OK && a.error > 0 && e.rotation == 0)
-        remark(r, "by quasi-Monte Carlo, with a standard error of at most %g", a.error);
+        remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %g",
+               box_points(&e), a.error);
     if (s == OK && a.error > 0 && e.rotation != 0)
         remark(r, "rounding may have cost up to %g", a.error);
     return s == OK ? one_column(in, &a, "cdf", out, r) : s;
@@ -137,7 +192,8 @@ static status cell_density(const argument *in, value *out, report *r)
 {
     struct answers a;
     struct evaluation e;
-    status s = ask_all(in, ASK_DENSITY, 1, row_density, &a, &e, r);
+    struct way way = { row_density, density_seconds_at };
+    status s = ask_all(in, ASK_DENSITY, 1, way, &a, &e, r);
     return s == OK ? one_column(in, &a, "density", out, r) : s;
 }
 
@@ -153,7 +209,8 @@ static status cell_conditional(const argument *in, value *out, report *r)
     struct answers a;
     struct evaluation e;
     size_t d = in[ASKED].model->dimension;
-    status s = ask_all(in, ASK_CONDITIONAL, d, row_conditional, &a, &e, r);
+    struct way way = { row_conditional, conditional_seconds_at };
+    status s = ask_all(in, ASK_CONDITIONAL, d, way, &a, &e, r);
     return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
 }
 
@@ -169,7 +226,8 @@ static status cell_fromconditional(const argument *in, value *out, report *r)
     struct answers a;
     struct evaluation e;
     size_t d = in[ASKED].model->dimension;
-    status s = ask_all(in, ASK_CONDITIONAL, d, row_from_conditional, &a, &e, r);
+    struct way way = { row_from_conditional, from_conditional_seconds_at };
+    status s = ask_all(in, ASK_CONDITIONAL, d, way, &a, &e, r);
     return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
 }
 
@@ -179,6 +237,14 @@ static status kendall_of(double w, const void *with, double *k)
     return kendall_at(e, w, k);
 }
 
+static size_t numbers_in(const argument *a)
+{
+    const samples *in = &a->data;
+    size_t n = 0;
+    for (size_t i = 0; i < in->rows * in->cols; i++) n += !is_gap(in->at[i]);
+    return n;
+}
+
 static status cell_kendallof(const argument *in, value *out, report *r)
 {
     struct evaluation e;
@@ -186,6 +252,9 @@ static status cell_kendallof(const argument *in, value *out, report *r)
     if (s != OK) return s;
     const char *limit = evaluation_limit(&e, ASK_KENDALL);
     if (limit) return refuse(r, OUT_OF_DOMAIN, "model %s", limit);
+    size_t n = numbers_in(&in[1]);
+    s = within_time((double)n * kendall_seconds(&e), n, "value", r);
+    if (s != OK) return s;
     return each_number(&in[1], kendall_of, &e, out, r);
 }
 
