@@ -101,6 +101,11 @@ static void too_few_degrees(void **state)
         assert_int_equal(evaluation_of(elliptical(&s, "t", 2, 0.5, 0.001), &e, &p), OK);
         assert_null(evaluation_limit(&e, q));
     }
+    assert_int_equal(evaluation_of(elliptical(&s, "t", 3, 0.5, 0.04), &e, &p), OK);
+    assert_non_null(evaluation_limit(&e, ASK_CDF));
+    assert_null(evaluation_limit(&e, ASK_DENSITY));
+    assert_int_equal(evaluation_of(elliptical(&s, "t", 3, 0.5, 0.05), &e, &p), OK);
+    assert_null(evaluation_limit(&e, ASK_CDF));
     pool_empty(&p);
 }
 
@@ -146,7 +151,7 @@ static void boxes_of_pairs(void **state)
     uint64_t r = 8;
     for (size_t i = 0; i < effort(20); i++) {
         struct sample_copula three, two;
-        double df = 1 + 9 * random_uniform(&r), error;
+        double df = pow(10, 2 * random_uniform(&r) - 1.3), error;
         bool normal = random_below(&r, 2);
         const char *word = normal ? "gaussian" : "t";
         copula *c = elliptical(&three, word, 3, 0.6, df);
