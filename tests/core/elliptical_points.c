@@ -85,6 +85,13 @@ static void perfect_dependence(void **state)
     assert_int_equal(log_density_at(&e, u, x), OUT_OF_DOMAIN);
     assert_int_equal(conditional_at(&e, u, x), OUT_OF_DOMAIN);
     assert_null(evaluation_limit(&e, ASK_CDF));
+    /* with several df these are not perfectly dependent, so that min(u, v) is not the answer */
+    assert_int_equal(evaluation_of(elliptical(&s, "t", 2, 1, 4), &e, &p), OK);
+    assert_null(evaluation_limit(&e, ASK_CDF));
+    s.df[0] = 9;
+    assert_int_equal(evaluation_of(&s.c, &e, &p), OK);
+    assert_non_null(evaluation_limit(&e, ASK_CDF));
+    assert_int_equal(cdf_at(&e, u, x, x + 1), OUT_OF_DOMAIN);
     pool_empty(&p);
 }
 
