@@ -75,8 +75,7 @@ static double at_point(struct box *b, size_t row)
     double product = 1;
     if (m->df || row == 0) take_scales(b, m->df ? b->u[m->d - 1][row] : 0.5);
     for (size_t j = 0; j < m->d && product > 0; j++) {
-        double rest = isinf(b->x[j]) ? b->x[j] : b->x[j] * b->scale[j];
-        double pivot = m->factor[j * m->d + j];
+        double rest = b->x[j] * b->scale[j], pivot = m->factor[j * m->d + j];
         for (size_t k = 0; k < j; k++) rest -= m->factor[j * m->d + k] * b->y[k];
         double below = pivot > 0 ? normal_probability(rest / pivot) : rest >= 0 ? 1 : 0;
         product *= below;
