@@ -16,7 +16,14 @@
 
 #include <math.h>
 
-enum { SEEDS = 8, BLOCKS = 16 };
+enum { SEEDS = 8, MOST_ROWS = 4096, FEWEST_ROWS = 64 };
+
+/* What every question shares. */
+struct box_points {
+    struct sobol under[SEEDS];
+    size_t rows;                              /* under each seed */
+    double (*u)[ROWS_AT_ONCE];
+};
 
 struct box {
     const struct elliptical_points *m;
@@ -24,6 +31,30 @@ struct box {
     double scale[MOST_IN_BOX], y[MOST_IN_BOX];
     double (*u)[ROWS_AT_ONCE];
 };
+
+status elliptical_box_prepare(struct elliptical_points *m, pool *p)
+{
+    struct box_points *box = m->box = pool_take(p, 1, sizeof *box);
+    if (!box) return NO_MEMORY;
+    box->rows = MOST_ROWS;
+    box->u = pool_take(p, m->d, sizeof *box->u);
+    status s = box->u ? OK : NO_MEMORY;
+    for (int k = 0; s == OK && k < SEEDS; k++)
+        s = sobol_prepare(&box->under[k], m->d, (uint64_t)k, p);
+    return s;
+}
+
+size_t elliptical_box_points(const struct elliptical_points *m)
+{
+    return SEEDS * m->box->rows;
+}
+
+bool elliptical_box_halve(struct elliptical_points *m)
+{
+    if (m->box->rows == FEWEST_ROWS) return false;
+    m->box->rows /= 2;
+    return true;
+}
 
 /* Weights the limits with sqrt(chi-square/df), by the last coordinate. */
 static void take_scales(struct box *b, double v)
@@ -38,7 +69,7 @@ static void take_scales(struct box *b, double v)
     for (size_t j = 0; j < m->d; j++) b->scale[j] = s;
 }
 
-static double at_point(struct box *b, int row)
+static double at_point(struct box *b, size_t row)
 {
     const struct elliptical_points *m = b->m;
     double product = 1;
@@ -59,40 +90,23 @@ static double at_point(struct box *b, int row)
 static double mean_under_seed(struct box *b, const struct sobol *points)
 {
     double sum = 0;
-    for (int block = 0; block < BLOCKS; block++) {
-        for (size_t j = 0; j < points->dimensions; j++)
-            sobol_of_rows(points, j, (uint64_t)block * ROWS_AT_ONCE, b->u[j]);
-        for (int row = 0; row < ROWS_AT_ONCE; row++) sum += at_point(b, row);
+    size_t rows = b->m->box->rows;
+    for (size_t first = 0; first < rows; first += ROWS_AT_ONCE) {
+        for (size_t j = 0; j < points->dimensions; j++) sobol_of_rows(points, j, first, b->u[j]);
+        for (size_t i = 0; i < ROWS_AT_ONCE && first + i < rows; i++) sum += at_point(b, i);
     }
-    return sum / (BLOCKS * ROWS_AT_ONCE);
-}
-
-static status mean_and_error(struct box *b, pool *p, double *value, double *error)
-{
-    double mean[SEEDS], sum = 0, squares = 0;
-    for (int k = 0; k < SEEDS; k++) {
-        struct sobol points;
-        struct block *mark = p->last;
-        status s = sobol_prepare(&points, b->m->d, (uint64_t)k, p);
-        if (s == OK) mean[k] = mean_under_seed(b, &points);
-        pool_back_to(p, mark);
-        if (s != OK) return s;
-        sum += mean[k];
-    }
-    *value = sum / SEEDS;
-    for (int k = 0; k < SEEDS; k++) squares += (mean[k] - *value) * (mean[k] - *value);
-    *error = sqrt(squares / (SEEDS * (SEEDS - 1)));
-    return OK;
+    return sum / (double)rows;
 }
 
 status elliptical_box(const struct elliptical_points *m, const double *x, double *value,
                       double *error)
 {
-    struct box b = { .m = m, .x = x };
-    struct block *mark = m->pool->last;
-    if (m->d > MOST_IN_BOX) return OUT_OF_DOMAIN;
-    b.u = pool_take(m->pool, m->d, sizeof *b.u);
-    status s = b.u ? mean_and_error(&b, m->pool, value, error) : NO_MEMORY;
-    pool_back_to(m->pool, mark);
-    return s;
+    if (!m->box) return OUT_OF_DOMAIN;
+    struct box b = { .m = m, .x = x, .u = m->box->u };
+    double mean[SEEDS], sum = 0, squares = 0;
+    for (int k = 0; k < SEEDS; k++) sum += mean[k] = mean_under_seed(&b, &m->box->under[k]);
+    *value = sum / SEEDS;
+    for (int k = 0; k < SEEDS; k++) squares += (mean[k] - *value) * (mean[k] - *value);
+    *error = sqrt(squares / (SEEDS * (SEEDS - 1)));
+    return OK;
 }

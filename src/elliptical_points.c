@@ -23,6 +23,7 @@
 
 static const double FARTHEST = 300;           /* sinh of more is taken apart */
 static const double LOWEST_DF = 1e-3;         /* of student_tail.h */
+static const double LOWEST_DF_IN_BOX = 0.05;  /* less overflows for u not even near 0 and 1 */
 
 static bool are_grouped(const copula *c)
 {
@@ -57,7 +58,7 @@ static status prepare(struct evaluation *e, pool *p)
     struct elliptical_points *m = pool_take_zeroed(p, 1, sizeof *m);
     if (!m) return NO_MEMORY;
     *m = (struct elliptical_points){ .d = d, .df = c->family->has_df ? c->df : NULL,
-                                     .grouped = are_grouped(c), .pool = p };
+                                     .grouped = are_grouped(c) };
     m->matrix = pool_take(p, d * d, sizeof *m->matrix);
     m->factor = pool_take_zeroed(p, d * d, sizeof *m->factor);
     if (!m->matrix || !m->factor) return NO_MEMORY;
@@ -67,6 +68,8 @@ static status prepare(struct evaluation *e, pool *p)
     m->singular = factor_is_singular(m->factor, d);
     if (!m->singular) set_constant(m);
     e->prepared = m;
+    if (d > 2 && d <= MOST_IN_BOX) s = elliptical_box_prepare(m, p);
+    if (s != OK) return s;
     if (m->grouped) return grouped_prepare(m, p);
     if (!m->df) return OK;
     m->table = pool_take(p, 1, sizeof *m->table);
@@ -86,10 +89,10 @@ static double mean_of(const double *factor, size_t d, size_t j, const double *y)
 static status pair_by_limits(const struct elliptical_points *m, const double *u, double *value)
 {
     double correlation = m->matrix[1];
-    if (fabs(correlation) == 1) {
+    if (m->grouped) {
+        return m->singular ? OUT_OF_DOMAIN : grouped_pair_cdf(m, u, value);
+    } else if (fabs(correlation) == 1) {
         *value = correlation > 0 ? fmin(u[0], u[1]) : fmax(0, u[0] - (1 - u[1]));
-    } else if (m->grouped) {
-        return grouped_pair_cdf(m, u, value);
     } else if (m->df) {
         double df = m->df[0];
         *value = student_pair_probability(student_quantile(u[0], df), student_quantile(u[1], df),
@@ -247,6 +250,16 @@ static const char *limit(const struct evaluation *e, enum question q)
     for (size_t j = 0; m->df && j < m->d; j++)
         if (m->df[j] < LOWEST_DF)
             return "has less than 0.001 degrees of freedom, too few to compute with";
+    for (size_t j = 0; q == ASK_CDF && m->d > 2 && m->df && j < m->d; j++)
+        if (m->df[j] < LOWEST_DF_IN_BOX)
+            return "has less than 0.05 degrees of freedom, too few for its distribution function "
+                   "beyond pairs";
+    if (q == ASK_KENDALL && m->grouped)
+        return "has several degrees of freedom: its Kendall distribution has no formula, and the "
+               "integral would take too long";
+    if (q == ASK_CDF && m->grouped && m->d == 2 && m->singular)
+        return "has several degrees of freedom and a correlation of 1 or -1: the distribution "
+               "function of such a pair has no integral that settles";
     if (q == ASK_CDF && m->d > MOST_IN_BOX)
         return "has too many columns: its distribution function can have at most 128";
     if ((q == ASK_DENSITY || q == ASK_CONDITIONAL) && m->singular)

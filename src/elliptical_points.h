@@ -19,7 +19,7 @@ struct elliptical_points {
     double log_constant;          /* of the density */
     struct grouped_points *groups;
     struct student *table;        /* t with one df: of the chi-square, for pairs of t with df + 1 */
-    pool *pool;                   /* for elliptical_box() */
+    struct box_points *box;       /* for elliptical_box(); NULL if that has no answer */
 };
 
 /* ---- elliptical_pair.c ---- */
@@ -34,9 +34,17 @@ double student_pair_probability(double a, double b, double correlation, double d
 
 /* ---- elliptical_box.c ---- */
 
+/* Makes the points of elliptical_box(), 2 < d <= MOST_IN_BOX. NO_MEMORY. */
+status elliptical_box_prepare(struct elliptical_points *m, pool *p);
+
+/* How many a probability takes, 32,768 at first; half as many from now on, if there are more than
+ * 512. */
+size_t elliptical_box_points(const struct elliptical_points *m);
+bool elliptical_box_halve(struct elliptical_points *m);
+
 /* P(X_1 <= x_1, ..., X_d <= x_d) and its standard error by quasi-Monte Carlo; x are the normal
  * scores, or for t the points where a column is sqrt(df / chi-square) times a normal number.
- * OUT_OF_DOMAIN for more than MOST_IN_BOX columns. Source: Genz (1992), Genz & Bretz (2002). */
+ * OUT_OF_DOMAIN without elliptical_box_prepare(). Source: Genz (1992), Genz & Bretz (2002). */
 status elliptical_box(const struct elliptical_points *m, const double *x, double *value,
                       double *error);
 
@@ -46,11 +54,15 @@ struct grouped_points;
 
 status grouped_prepare(struct elliptical_points *m, pool *p);
 
+/* steps of the integrals */
+size_t grouped_nodes(const struct elliptical_points *m);
+
 /* The points where the columns are sqrt(df/chi-square) times a normal number. */
 void grouped_scores(const struct elliptical_points *m, const double *u, double *x);
 
-/* Integrals over the uniform. OUT_OF_DOMAIN where u is within 1e-13 of 0 or 1, or several columns
- * are so extreme together that the uniform given them may be. */
+/* Integrals over the uniform. OUT_OF_DOMAIN where u is within 1e-13 of 0 or 1, or its quantile
+ * overflows, or the columns together make a uniform within 1e-15 of 0 or 1 likely: with 3 and 8
+ * degrees of freedom already (1e-9, 0.3). */
 status grouped_pair_cdf(const struct elliptical_points *m, const double *u, double *value);
 status grouped_log_density(const struct elliptical_points *m, const double *u, double *value);
 status grouped_conditional(const struct elliptical_points *m, const double *u, double *w);

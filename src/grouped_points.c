@@ -8,8 +8,9 @@
  *   Weideman 2014). The inverse is a root in asinh(x/sqrt(df)).
  *
  * Special cases
- *   z runs from -8 to 8: what is within 1e-13 of 0 or 1 is refused, and columns so extreme together
- *   that z given them may lie beyond.
+ *   z runs from -8 to 8, as far as the chi-squares are tabulated: what is within 1e-13 of 0 or 1 is
+ *   refused, and columns that z given them may lie beyond. One column may do: with 3 and 8 degrees
+ *   of freedom (1e-9, 0.3) is refused.
  *
  * Accuracy
  *   Absolute 1e-10 for probabilities of pairs, 1e-8 for log-densities and conditional ones;
@@ -95,6 +96,11 @@ status grouped_prepare(struct elliptical_points *m, pool *p)
     status s = OK;
     for (size_t j = 0; s == OK && j < m->d; j++) s = table_of_column(m, j, p);
     return s;
+}
+
+size_t grouped_nodes(const struct elliptical_points *m)
+{
+    return m->groups->nodes;
 }
 
 void grouped_scales(const struct elliptical_points *m, double v, double *scale)

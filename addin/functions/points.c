@@ -4,20 +4,29 @@
 #include "../shape.h"
 #include "../words.h"
 #include "../../src/evaluate.h"
+#include "../../src/evaluation_work.h"
 
 #include <math.h>
 
 enum { ASKED, POINTS };
 
+static const double LONGEST = 20;         /* seconds that a call may keep the office waiting */
+
 /* What came out, and what WHY is to say of it. */
 struct answers {
     samples s;
     double error;             /* the largest that a row has */
-    size_t empty;             /* rows with a gap */
+    size_t empty, too_far;    /* rows with a gap, and those that a grouped t says nothing of */
 };
 
 /* One row of points; the answer goes into `to`. */
 typedef status answer_row(const struct evaluation *e, const double *u, double *to, double *error);
+
+/* How a row is answered, and about how long that takes. */
+struct way {
+    answer_row *of;
+    seconds_at *takes;
+};
 
 static status names_agree(const copula *c, const samples *points, report *r)
 {
@@ -57,11 +66,43 @@ static bool take_row(const samples *points, size_t i, double *u)
     return whole;
 }
 
+static status within_time(double seconds, size_t n, const char *what, report *r)
+{
+    if (seconds <= LONGEST) return OK;
+    return refuse(r, OUT_OF_DOMAIN, "%zu %s%s of this model would take about %g s%s", n, what,
+                  plural(n), round(seconds), n > 1 ? ": ask for fewer at a time" : "");
+}
+
+/* Less quasi-Monte Carlo for many rows; refuses what would freeze the office all the same. */
+static status check_time(const argument *in, const struct evaluation *e, seconds_at *takes,
+                         report *r)
+{
+    const samples *points = &in[POINTS].data;
+    double *u = pool_take(r->pool, points->cols, sizeof *u), seconds = 0;
+    size_t whole = 0;
+    if (!u) return NO_MEMORY;
+    for (size_t i = 0; i < in[POINTS].filled; i++)
+        if (take_row(points, i, u)) {
+            seconds += takes(e, u);
+            whole++;
+        }
+    if (takes == cdf_seconds_at) seconds = with_fewer_box_points(e, seconds);
+    return within_time(seconds, whole, "point", r);
+}
+
+static bool is_grouped(const copula *c)
+{
+    for (size_t j = 1; c->df && j < c->dimension; j++)
+        if (c->df[j] != c->df[0]) return true;
+    return false;
+}
+
 static status each_row(const argument *in, const struct evaluation *e, answer_row *of,
                        struct answers *a, report *r)
 {
     const samples *points = &in[POINTS].data;
     double *u = pool_take(r->pool, points->cols, 2 * sizeof *u), *to = u + points->cols;
+    bool grouped = is_grouped(in[ASKED].model);
     if (!u) return NO_MEMORY;
     for (size_t i = 0; i < a->s.rows; i++) {
         double error = 0;
@@ -69,6 +110,7 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
         status s = whole ? of(e, u, to, &error) : OK;
         if (s == NO_MEMORY) return s;
         if (!whole) a->empty++;
+        if (grouped && s == OUT_OF_DOMAIN) a->too_far++;
         if (s == OK && whole) a->error = fmax(a->error, error);
         for (size_t j = 0; j < a->s.cols; j++)
             column(&a->s, j)[i] = !whole ? gap() : s != OK ? fault(s)
@@ -77,8 +119,18 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
     return OK;
 }
 
+static void remark_on_rows(const struct answers *a, report *r)
+{
+    if (a->empty)
+        remark(r, "%zu row%s of points with gaps left empty", a->empty, plural(a->empty));
+    if (a->too_far)
+        remark(r, "%zu row%s too far out for a grouped t: u within 1e-13 of 0 or 1, a quantile "
+               "beyond 1e308, or columns that together put the chi-squares some 8 standard "
+               "deviations out", a->too_far, plural(a->too_far));
+}
+
 /* `cols` answers a row. */
-static status ask_all(const argument *in, enum question q, size_t cols, answer_row *of,
+static status ask_all(const argument *in, enum question q, size_t cols, struct way way,
                       struct answers *a, struct evaluation *e, report *r)
 {
     status s = check_points(in, q == ASK_CDF, r);
@@ -86,12 +138,13 @@ static status ask_all(const argument *in, enum question q, size_t cols, answer_r
     if (s != OK) return s;
     const char *limit = evaluation_limit(e, q);
     if (limit) return refuse(r, OUT_OF_DOMAIN, "model %s", limit);
+    s = check_time(in, e, way.takes, r);
+    if (s != OK) return s;
     *a = (struct answers){ .s = { .rows = in[POINTS].filled, .cols = cols } };
     a->s.at = pool_take(r->pool, a->s.rows, cols * sizeof *a->s.at);
     if (!a->s.at) return NO_MEMORY;
-    s = each_row(in, e, of, a, r);
-    if (s == OK && a->empty)
-        remark(r, "%zu row%s of points with gaps left empty", a->empty, plural(a->empty));
+    s = each_row(in, e, way.of, a, r);
+    if (s == OK) remark_on_rows(a, r);
     return s;
 }
 
@@ -116,9 +169,11 @@ static status cell_cdf(const argument *in, value *out, report *r)
 {
     struct answers a;
     struct evaluation e;
-    status s = ask_all(in, ASK_CDF, 1, row_cdf, &a, &e, r);
+    struct way way = { row_cdf, cdf_seconds_at };
+    status s = ask_all(in, ASK_CDF, 1, way, &a, &e, r);
     if (s == OK && a.error > 0 && e.rotation == 0)
-        remark(r, "by quasi-Monte Carlo, with a standard error of at most %g", a.error);
+        remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %g",
+               box_points(&e), a.error);
     if (s == OK && a.error > 0 && e.rotation != 0)
         remark(r, "rounding may have cost up to %g", a.error);
     return s == OK ? one_column(in, &a, "cdf", out, r) : s;
@@ -137,7 +192,8 @@ static status cell_density(const argument *in, value *out, report *r)
 {
     struct answers a;
     struct evaluation e;
-    status s = ask_all(in, ASK_DENSITY, 1, row_density, &a, &e, r);
+    struct way way = { row_density, density_seconds_at };
+    status s = ask_all(in, ASK_DENSITY, 1, way, &a, &e, r);
     return s == OK ? one_column(in, &a, "density", out, r) : s;
 }
 
@@ -153,7 +209,8 @@ static status cell_conditional(const argument *in, value *out, report *r)
     struct answers a;
     struct evaluation e;
     size_t d = in[ASKED].model->dimension;
-    status s = ask_all(in, ASK_CONDITIONAL, d, row_conditional, &a, &e, r);
+    struct way way = { row_conditional, conditional_seconds_at };
+    status s = ask_all(in, ASK_CONDITIONAL, d, way, &a, &e, r);
     return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
 }
 
@@ -169,7 +226,8 @@ static status cell_fromconditional(const argument *in, value *out, report *r)
     struct answers a;
     struct evaluation e;
     size_t d = in[ASKED].model->dimension;
-    status s = ask_all(in, ASK_CONDITIONAL, d, row_from_conditional, &a, &e, r);
+    struct way way = { row_from_conditional, from_conditional_seconds_at };
+    status s = ask_all(in, ASK_CONDITIONAL, d, way, &a, &e, r);
     return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
 }
 
@@ -179,6 +237,14 @@ static status kendall_of(double w, const void *with, double *k)
     return kendall_at(e, w, k);
 }
 
+static size_t numbers_in(const argument *a)
+{
+    const samples *in = &a->data;
+    size_t n = 0;
+    for (size_t i = 0; i < in->rows * in->cols; i++) n += !is_gap(in->at[i]);
+    return n;
+}
+
 static status cell_kendallof(const argument *in, value *out, report *r)
 {
     struct evaluation e;
@@ -186,6 +252,9 @@ static status cell_kendallof(const argument *in, value *out, report *r)
     if (s != OK) return s;
     const char *limit = evaluation_limit(&e, ASK_KENDALL);
     if (limit) return refuse(r, OUT_OF_DOMAIN, "model %s", limit);
+    size_t n = numbers_in(&in[1]);
+    s = within_time((double)n * kendall_seconds(&e), n, "value", r);
+    if (s != OK) return s;
     return each_number(&in[1], kendall_of, &e, out, r);
 }
 
@@ -216,7 +285,9 @@ const function points_functions[] = {
             { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
             { .name = "points",
-              .help = "One point a row, one column for each of the model, from 0 to 1.",
+              .help = "One point a row, one column for each of the model, from 0 to 1. Below a "
+                      "header the result begins with the word cdf. Many rows get fewer points of "
+                      "quasi-Monte Carlo each, down to 512, and more than about 20 s are refused.",
               .kind = DATA },
         },
         .call = cell_cdf,
@@ -229,10 +300,12 @@ const function points_functions[] = {
         .detail =
             "Archimedean families in any dimension by the derivatives of their generator (Hofert, "
             "Maechler & McNeil 2012), gumbel, frank and joe for up to 1,024 columns; a grouped t "
-            "by "
-            "an integral over its chi-squares, for u from 1e-13 to 1 - 1e-13. A singular matrix "
-            "and perfect dependence have no density: #NUM!. So has a density beyond 1e308. A row "
-            "with a gap gives an empty cell.",
+            "by an integral over its chi-squares, for u from 1e-13 to 1 - 1e-13 unless the columns "
+            "together put the chi-squares some 8 standard deviations out, as with df 3 and 8 "
+            "{1e-9;0.3} does: #NUM!, and WHY says so. A singular matrix and perfect dependence "
+            "have no density: #NUM!. So has a density beyond 1e308. A row with a gap gives an "
+            "empty cell; below a header the result begins with the word density. What would take "
+            "more than about 20 s is refused.",
         .examples = {
             { "DENSITY(MODEL(\"gaussian\";0.5);{0.5;0.5})", "1.15470053837925" },
             { "DENSITY(MODEL(\"clayton\";1;;;3);{0.5;0.5;0.5})", "1.5" },
@@ -258,7 +331,8 @@ const function points_functions[] = {
             "model the result is uniform and independent, which is a way to look where a model "
             "does not fit. gumbel, frank and joe for up to 200 columns; a grouped t as in DENSITY. "
             "A singular matrix and perfect dependence are #NUM!. A row with a gap gives empty "
-            "cells.",
+            "cells. What would take more than about 20 s is refused: 10,000 rows of gumbel take "
+            "that in some 120 columns, of a grouped t in some 90.",
         .examples = {
             { "INDEX(CONDITIONAL(MODEL(\"clayton\";1);{0.5;0.5});1;2)", "0.444444444444444" },
             { "INDEX(CONDITIONAL(MODEL(\"independent\");{0.3;0.8});1;2)", "0.8" },
@@ -282,7 +356,8 @@ const function points_functions[] = {
             "columns before. It makes rows of a model from uniforms of one's own, or moves one "
             "line along its conditional distribution for a stress: with 0.99 in column 2 it "
             "answers what line 2 has in one of a hundred cases in which line 1 has what is in "
-            "column 1. Limits as in CONDITIONAL. Numbers beyond 1 - 2^-53 become that.",
+            "column 1. Limits as in CONDITIONAL, but it takes some twelve times as long. "
+            "Numbers beyond 1 - 2^-53 become that.",
         .examples = {
             { "INDEX(FROMCONDITIONAL(MODEL(\"clayton\";1);{0.5;0.444444444444444});1;2)", "0.5" },
             { "INDEX(FROMCONDITIONAL(MODEL(\"gaussian\";0.5);{0.99;0.5});1;2)",
@@ -304,9 +379,11 @@ const function points_functions[] = {
         .detail =
             "Archimedean families by their generator in any dimension (Barbe, Genest, Ghoudi & "
             "Remillard 1996), other pairs and rotated ones by an integral along the curve on which "
-            "the distribution function is w, to 1e-9; a pair of a grouped t takes some seconds a "
-            "value. gaussian and t in more than two dimensions have no formula: #NUM!. Of a pair "
-            "tau is 3 - 4 times the area below it (Genest & Rivest 1993).",
+            "the distribution function is w, to 1e-9, for tau beyond 0.95 or -0.95 to 1e-7. No "
+            "formula and #NUM!: gaussian, t and rotation 180 in more than two dimensions, and a "
+            "grouped t. Without a formula a value of a t takes some 0.02 s; what would take more "
+            "than about 20 s is refused. Of a pair tau is 3 - 4 times the area "
+            "below it (Genest & Rivest 1993).",
         .examples = {
             { "KENDALLOF(MODEL(\"independent\");0.5)", "0.846573590279973" },
             { "KENDALLOF(MODEL(\"clayton\";1);0.5)", "0.75" },

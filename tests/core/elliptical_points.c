@@ -85,6 +85,13 @@ static void perfect_dependence(void **state)
     assert_int_equal(log_density_at(&e, u, x), OUT_OF_DOMAIN);
     assert_int_equal(conditional_at(&e, u, x), OUT_OF_DOMAIN);
     assert_null(evaluation_limit(&e, ASK_CDF));
+    /* with several df these are not perfectly dependent, so that min(u, v) is not the answer */
+    assert_int_equal(evaluation_of(elliptical(&s, "t", 2, 1, 4), &e, &p), OK);
+    assert_null(evaluation_limit(&e, ASK_CDF));
+    s.df[0] = 9;
+    assert_int_equal(evaluation_of(&s.c, &e, &p), OK);
+    assert_non_null(evaluation_limit(&e, ASK_CDF));
+    assert_int_equal(cdf_at(&e, u, x, x + 1), OUT_OF_DOMAIN);
     pool_empty(&p);
 }
 
@@ -101,6 +108,11 @@ static void too_few_degrees(void **state)
         assert_int_equal(evaluation_of(elliptical(&s, "t", 2, 0.5, 0.001), &e, &p), OK);
         assert_null(evaluation_limit(&e, q));
     }
+    assert_int_equal(evaluation_of(elliptical(&s, "t", 3, 0.5, 0.04), &e, &p), OK);
+    assert_non_null(evaluation_limit(&e, ASK_CDF));
+    assert_null(evaluation_limit(&e, ASK_DENSITY));
+    assert_int_equal(evaluation_of(elliptical(&s, "t", 3, 0.5, 0.05), &e, &p), OK);
+    assert_null(evaluation_limit(&e, ASK_CDF));
     pool_empty(&p);
 }
 
@@ -146,7 +158,7 @@ static void boxes_of_pairs(void **state)
     uint64_t r = 8;
     for (size_t i = 0; i < effort(20); i++) {
         struct sample_copula three, two;
-        double df = 1 + 9 * random_uniform(&r), error;
+        double df = pow(10, 2 * random_uniform(&r) - 1.3), error;
         bool normal = random_below(&r, 2);
         const char *word = normal ? "gaussian" : "t";
         copula *c = elliptical(&three, word, 3, 0.6, df);

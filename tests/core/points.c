@@ -92,11 +92,60 @@ static void errors_are_told(void **state)
     value three = model(&c, "gaussian", 0.5, 0, 0, 3), survival = model(&c, "gumbel", 2, 0, 180, 3);
     call(&c, "CDF", 2, (value[]){ three, cells(&c.pool, "0.5,0.5,0.5") });
     assert_within(cell(&c, 0, 0), 0.25, 1e-5);
-    assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo, with a standard error of at most "));
+    assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo with 32768 points, with a "
+                                           "standard error of at most "));
     call(&c, "CDF", 2, (value[]){ survival, cells(&c.pool, "0.5,0.5,0.5") });
     assert_true(cell(&c, 0, 0) > 0.25);
     assert_non_null(strstr(c.report.facts, "rounding may have cost up to "));
     pool_empty(&c.pool);
+}
+
+static value halves(pool *p, size_t rows, size_t cols)
+{
+    value v = { .is = IS_TABLE, .table = { rows, cols, pool_take(p, rows * cols, sizeof(double)),
+                                           NULL } };
+    for (size_t i = 0; i < rows * cols; i++) v.table.at[i] = 0.5;
+    return v;
+}
+
+/* Many rows: fewer points each, and an error that says so; too many are refused. */
+static void takes_too_long(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    pool *p = &c.pool;
+    value three = model(&c, "gaussian", 0.5, 0, 0, 3), wide = model(&c, "gaussian", 0.5, 0, 0, 128);
+    value gumbel = model(&c, "gumbel", 2, 0, 0, 150), t = model(&c, "t", 0.5, 4, 0, 2);
+    call(&c, "CDF", 2, (value[]){ three, halves(p, 700, 3) });
+    assert_within(cell(&c, 699, 0), 0.25, 1e-4);
+    assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo with 16384 points, with a standard"));
+    refused("CDF", wide, halves(p, 10000, 128), OUT_OF_DOMAIN,
+            "10000 points of this model would take about 55 s: ask for fewer at a time");
+    refused("FROMCONDITIONAL", gumbel, halves(p, 1000, 150), OUT_OF_DOMAIN,
+            "1000 points of this model would take about 45 s: ask for fewer at a time");
+    refused("KENDALLOF", t, halves(p, 100, 20), OUT_OF_DOMAIN,
+            "2000 values of this model would take about 40 s: ask for fewer at a time");
+    pool_empty(p);
+}
+
+/* What a grouped t cannot say: df 3 and 8 at (1e-9, 0.3), and its Kendall distribution. */
+static void grouped_t(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    pool *p = &c.pool;
+    call(&c, "MODEL", 3, (value[]){ text("t"), number(0.5), cells(p, "3,8") });
+    value t = c.out;
+    call(&c, "CONDITIONAL", 2, (value[]){ t, cells(p, "0.2,0.3;1e-9,0.3") });
+    assert_true(cell(&c, 0, 1) > 0);
+    assert_int_equal(fault_in(cell(&c, 1, 1)), OUT_OF_DOMAIN);
+    assert_non_null(strstr(c.report.facts, "1 row too far out for a grouped t"));
+    call(&c, "CONDITIONAL", 2, (value[]){ t, cells(p, "0.2,0.3") });
+    assert_null(strstr(c.report.facts, "too far out"));
+    refused("KENDALLOF", t, number(0.4), OUT_OF_DOMAIN,
+            "model has several degrees of freedom: its Kendall distribution has no formula, and "
+            "the integral would take too long");
+    pool_empty(p);
 }
 
 static void refusals(void **state)
@@ -189,7 +238,9 @@ int main(void)
     gsl_set_error_handler_off();                             /* as the add-in does at load */
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(values), cmocka_unit_test(errors_are_told), cmocka_unit_test(refusals),
-        cmocka_unit_test(bands), cmocka_unit_test(every_take_can_fail),
+        cmocka_unit_test(bands),
+        cmocka_unit_test(takes_too_long), cmocka_unit_test(grouped_t),
+        cmocka_unit_test(every_take_can_fail),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

@@ -1,0 +1,27 @@
+/* evaluation_work.h - about how long questions about a copula take.
+ *
+ * Seconds of one core near 3 GHz, rarely off by more than a factor of 3: steps counted, times
+ * what a step was measured to take. The same question always comes to the same number.
+ */
+#ifndef EVALUATION_WORK_H
+#define EVALUATION_WORK_H
+
+#include "evaluate.h"
+
+/* For one point of evaluate.h. */
+typedef double seconds_at(const struct evaluation *e, const double *u);
+
+seconds_at cdf_seconds_at, density_seconds_at, conditional_seconds_at,
+           from_conditional_seconds_at;
+
+/* For one value of kendall_at(). */
+double kendall_seconds(const struct evaluation *e);
+
+/* Quasi-Monte Carlo points that a probability is made of; 0 where it is not made so. */
+size_t box_points(const struct evaluation *e);
+
+/* Where probabilities that take so many seconds in all are by quasi-Monte Carlo: halves the number
+ * of points, down to 512, until they take about 3. Returns what they take then. */
+double with_fewer_box_points(const struct evaluation *e, double seconds);
+
+#endif

@@ -1,0 +1,100 @@
+/* How long questions are said to take, and quasi-Monte Carlo with fewer points. */
+#include "asked.h"
+
+#include "../../src/evaluation_work.h"
+
+#include <gsl/gsl_errno.h>
+
+static void ready(struct evaluation *e, const copula *c, pool *p)
+{
+    assert_int_equal(evaluation_of(c, e, p), OK);
+}
+
+/* David (1953): 1/4 at correlation 1/2 in three columns; a standard error grows with fewer. */
+static void fewer_points(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    struct evaluation e;
+    pool p = { 0 };
+    const double half[3] = { 0.5, 0.5, 0.5 };
+    double all, value, error;
+    ready(&e, elliptical(&s, "gaussian", 3, 0.5, 0), &p);
+    assert_int_equal(box_points(&e), 32768);
+    assert_same(with_fewer_box_points(&e, 2), 2);
+    assert_int_equal(box_points(&e), 32768);
+    assert_int_equal(cdf_at(&e, half, &value, &all), OK);
+    double seconds = cdf_seconds_at(&e, half);
+    assert_same(with_fewer_box_points(&e, 96), 3);
+    assert_int_equal(box_points(&e), 1024);
+    assert_same(cdf_seconds_at(&e, half), seconds / 32);
+    assert_int_equal(cdf_at(&e, half, &value, &error), OK);
+    assert_true(error > 4 * all && error < 5e-3);
+    assert_within(value, 0.25, 5 * error);
+    assert_same(with_fewer_box_points(&e, 1e6), 5e5);
+    assert_int_equal(box_points(&e), 512);
+    assert_int_equal(cdf_at(&e, half, &value, &error), OK);
+    assert_within(value, 0.25, 5 * error);
+    pool_empty(&p);
+}
+
+/* Nothing to take fewer of. */
+static void other_ways(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    struct evaluation e;
+    pool p = { 0 };
+    ready(&e, elliptical(&s, "t", 2, 0.5, 4), &p);
+    assert_int_equal(box_points(&e), 0);
+    assert_same(with_fewer_box_points(&e, 100), 100);
+    ready(&e, one_parameter(&s, "gumbel", 5, 2), &p);
+    assert_int_equal(box_points(&e), 0);
+    assert_same(with_fewer_box_points(&e, 100), 100);
+    pool_empty(&p);
+}
+
+/* Of 10,000 rows each, in the order that was measured: seconds, or minutes. */
+static void short_and_long(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    struct evaluation e;
+    pool p = { 0 };
+    double u[200];
+    for (size_t j = 0; j < 200; j++) u[j] = 0.5;
+    ready(&e, one_parameter(&s, "gumbel", 200, 2), &p);
+    assert_true(1e4 * cdf_seconds_at(&e, u) < 1);
+    assert_true(1e4 * density_seconds_at(&e, u) < 3);
+    assert_true(1e4 * conditional_seconds_at(&e, u) > 30);
+    assert_true(1e4 * from_conditional_seconds_at(&e, u) > 300);
+    ready(&e, one_parameter(&s, "clayton", 200, 2), &p);
+    assert_true(1e4 * conditional_seconds_at(&e, u) < 10);
+    copula *c = one_parameter(&s, "joe", 16, 2);
+    c->rotation = 180;
+    ready(&e, c, &p);
+    assert_true(1e4 * cdf_seconds_at(&e, u) > 100);
+    c = one_parameter(&s, "frank", 2, 20);
+    c->rotation = 270;
+    ready(&e, c, &p);
+    assert_true(1e4 * cdf_seconds_at(&e, u) < 1);
+    assert_true(1e4 * cdf_seconds_at(&e, (double[]){ 0.999, 5e-4 }) > 20);
+    c = elliptical(&s, "t", 2, 0.5, 4);
+    ready(&e, c, &p);
+    assert_true(1e4 * cdf_seconds_at(&e, u) < 3);
+    assert_true(1e4 * kendall_seconds(&e) > 60);
+    s.df[1] = 0.05;
+    ready(&e, c, &p);
+    assert_true(1e4 * cdf_seconds_at(&e, u) > 60);
+    pool_empty(&p);
+}
+
+int main(void)
+{
+    gsl_set_error_handler_off();
+    const struct CMUnitTest tests[] = {
+        cmocka_unit_test(fewer_points), cmocka_unit_test(other_ways),
+        cmocka_unit_test(short_and_long),
+    };
+    return cmocka_run_group_tests(tests, NULL, NULL);
+}
