@@ -4,8 +4,8 @@
  *   The columns that the rotation turns are replaced by 1 - u before, and where the answer is about
  *   that column after, asking the unrotated copula. For the probability of a pair
  *     90: v - C(1-u, v),  180: u + v - 1 + C(1-u, 1-v),  270: u - C(u, 1-v),
- *   and where these cancel, the integral over the first column of a conditional probability, which
- *   is positive. Beyond pairs rotation 180 is a sum over all subsets of the columns.
+ *   and where these cancel, the integral over a column of a conditional probability, which is
+ *   positive: the one of these with the smallest bound on its error. Beyond pairs rotation 180 is a sum over all subsets of the columns.
  *
  * Special cases
  *   A probability with some u = 0 is 0; with one u below 1 it is that u.
@@ -51,18 +51,34 @@ status evaluation_of(const copula *c, struct evaluation *e, pool *p)
 
 /* ---- probabilities of rotated pairs ---- */
 
-struct strip {
-    const struct evaluation *e;
-    double v;
+/* A value and a bound on its error. */
+struct bounded {
+    double value, error;
 };
 
-/* P(V <= v | U = x) of the rotated copula, as its first column x comes */
+/* The conditional probability that one column is at most something, given that the other is x. All
+ * families with a rotation here are exchangeable, so that either column may be the first, and it
+ * rises or falls in x (Nelsen 2006, section 5.2.3). */
+struct strip {
+    const struct evaluation *e;
+    double asked;             /* the second argument of the unrotated copula */
+    double end;               /* x is from 0 to here */
+    bool turn_x, turn_w;      /* whether 1 - x is the first argument, and 1 - w the answer */
+};
+
+static const double
+    TURNED = 0x1p-53,         /* 1 - u in a double is so far from 1 - u */
+    CANCELLED = 4e-16,        /* a sum of numbers up to 1 is so far from what it stands for */
+    WANTED = 1e-10;           /* relative */
+
 static double strip_at(double x, const void *with)
 {
     const struct strip *s = with;
+    const double u[2] = { s->turn_x ? turned(x) : x, s->asked };
     double w[2];
-    const double u[2] = { x, s->v };
-    return conditional_at(s->e, u, w) == OK ? w[1] : NAN;
+    if (s->e->by->conditional(s->e, u, w) != OK || isnan(w[1])) return NAN;
+    double within = fmin(1, fmax(0, w[1]));
+    return s->turn_w ? 1 - within : within;
 }
 
 static status unrotated_cdf(const struct evaluation *e, double u, double v, double *value)
@@ -72,36 +88,87 @@ static status unrotated_cdf(const struct evaluation *e, double u, double v, doub
     return e->by->cdf(e, point, value, &error);
 }
 
+/* Between the bounds of Frechet and Hoeffding. */
+static double within_bounds(double u, double v, double value)
+{
+    double least = u < v ? v - (1 - u) : u - (1 - v);
+    return fmin(fmin(u, v), fmax(fmax(0, least), value));
+}
+
 /* As it stands; what cancels leaves 1e-16. */
 static status cancelling_cdf(const struct evaluation *e, double u, double v, double *value)
 {
     double x = turns(e->rotation, 0) ? 1 - u : u, y = turns(e->rotation, 1) ? 1 - v : v, c = 0;
     status s = x > 0 && y > 0 ? unrotated_cdf(e, x, y, &c) : OK;
-    if (e->rotation == 180) *value = fmax(0, (u - y) + c);
-    else *value = fmax(0, (e->rotation == 90 ? v : u) - c);
+    if (e->rotation == 180) *value = (u - y) + c;
+    else *value = (e->rotation == 90 ? v : u) - c;
+    *value = within_bounds(u, v, *value);
     return s;
 }
 
-/* Panels of the integral shrink towards u = 0, where it may be steep. */
-static double strip_integral(const struct evaluation *e, double u, double v)
+/* What rounding may cost the integral along a strip: a monotone integrand whose argument is off by
+ * TURNED changes it by that times its range, 1 - w by CANCELLED everywhere; then `asked` was
+ * turned too, where the slope is the conditional probability along the other column. */
+static double strip_rounding(const struct strip *s, const struct strip *other, double highest)
 {
-    struct strip strip = { e, v };
-    double sum = 0;
-    for (double to = u; to > 0 && sum >= 0; to /= 8) {
-        double part = adapted_integral(strip_at, &strip, to / 8, to, 1e-16 * sum);
-        sum += part;
-        if (to < 1e-17 * u || part < 1e-16 * sum) break;
+    double rounding = s->turn_w ? CANCELLED * s->end : 0;
+    if (s->turn_x) rounding += TURNED * highest;
+    if (s->turn_w) rounding += TURNED * strip_at(other->end, other);
+    return rounding;
+}
+
+/* Panels shrink towards x = 0 and x = 1, where it may be steep, until what is left is nothing: it
+ * is at most its length times the larger of its ends. */
+static struct bounded strip_integral(const struct strip *s, const struct strip *other)
+{
+    double start = strip_at(1e-300, s), highest = fmax(start, strip_at(s->end, s));
+    double rounding = strip_rounding(s, other, highest);
+    struct bounded sum = { 0, rounding };
+    for (double to = s->end, from; to > 1e-300; to = from) {
+        from = to > 0.5 ? fmax(0.5, 1 - 8 * (1 - to)) : to / 8;
+        double enough = fmax(rounding, 1e-13 * sum.value);
+        sum.value += adapted_integral(strip_at, s, from, to, enough, &sum.error);
+        double rest = from * fmax(start, strip_at(from, s));
+        if (isnan(sum.value + start + rest)) return (struct bounded){ NAN, NAN };
+        if (rest > 0.1 * rounding && rest > 1e-13 * sum.value) continue;
+        sum.error += rest;
+        break;
     }
     return sum;
 }
 
-/* Without a density what cancelled stands. */
-static status rotated_pair_cdf(const struct evaluation *e, double u, double v, double *value)
+/* The two strips of which each makes up the probability, the shorter one first. Rotation 270 is 90
+ * of exchanged columns. */
+static void strips_of(const struct evaluation *e, double u, double v, struct strip two[2])
+{
+    bool both = e->rotation == 180;
+    if (e->rotation == 270) {
+        double exchanged = u;
+        u = v, v = exchanged;
+    }
+    struct strip along_u = { e, both ? turned(v) : v, u, true, both };
+    struct strip along_v = { e, turned(u), v, both, true };
+    two[u < v ? 0 : 1] = along_u;
+    two[u < v ? 1 : 0] = along_v;
+}
+
+/* What cancelled, unless an integral of a conditional probability, which is positive, has the
+ * smaller bound and agrees with it. Without a density what cancelled stands. */
+static status rotated_pair_cdf(const struct evaluation *e, double u, double v, double *value,
+                               double *error)
 {
     status s = cancelling_cdf(e, u, v, value);
-    if (s != OK || *value > 1e-3) return s;
-    double sum = strip_integral(e, u, v);
-    if (!isnan(sum)) *value = sum;
+    if (s != OK) return s;
+    struct bounded best = { *value, CANCELLED };
+    struct strip two[2];
+    strips_of(e, u, v, two);
+    for (int i = 0; i < 2 && best.error > WANTED * best.value; i++) {
+        struct bounded sum = strip_integral(&two[i], &two[1 - i]);
+        bool agrees = fabs(sum.value - *value) <= sum.error + CANCELLED;
+        if (agrees && sum.error < best.error) best = sum;
+    }
+    *value = within_bounds(u, v, best.value);
+    *error = best.error > WANTED * best.value ? best.error : 0;
     return OK;
 }
 
@@ -144,7 +211,8 @@ status cdf_at(const struct evaluation *e, const double *u, double *value, double
     *value = below_one ? u[one] : 1;
     if (below_one < 2) return OK;
     if (e->rotation == 0) return e->by->cdf(e, u, value, error);
-    return d == 2 ? rotated_pair_cdf(e, u[0], u[1], value) : subsets_cdf(e, u, value, error);
+    return d == 2 ? rotated_pair_cdf(e, u[0], u[1], value, error)
+                  : subsets_cdf(e, u, value, error);
 }
 
 status pair_cdf_roughly_at(const struct evaluation *e, const double *u, double *value)
