@@ -117,22 +117,40 @@ static double strip_rounding(const struct strip *s, const struct strip *other, d
     return rounding;
 }
 
-/* Panels shrink towards x = 0 and x = 1, where it may be steep, until what is left is nothing: it
- * is at most its length times the larger of its ends. */
+/* From the middle of an interval to its end, over panels that shrink towards the end, until what is
+ * left is known: it is its length times something between its ends. */
+static void add_half(const struct strip *s, double from, double end, double rounding,
+                     struct bounded *sum)
+{
+    double at_end = strip_at(fmax(end, 1e-300), s);
+    for (;;) {
+        double rest = fabs(end - from), at = strip_at(from, s);
+        double apart = rest * fabs(at_end - at) / 2, little = 1e-13 * sum->value;
+        if (!(apart > fmax(0.1 * rounding, little))) {
+            sum->value += rest * (at_end + at) / 2;
+            sum->error += apart;
+            return;
+        }
+        double to = end + (from - end) / 8, enough = fmax(rounding, little);
+        sum->value += fabs(adapted_integral(strip_at, s, from, to, enough, &sum->error));
+        from = to;
+    }
+}
+
+/* Intervals between 0, the end, and where the columns agree or are opposite, near which strong
+ * dependence has its mass. */
 static struct bounded strip_integral(const struct strip *s, const struct strip *other)
 {
-    double start = strip_at(1e-300, s), highest = fmax(start, strip_at(s->end, s));
+    double highest = fmax(strip_at(1e-300, s), strip_at(s->end, s));
     double rounding = strip_rounding(s, other, highest);
+    double low = fmin(s->asked, 1 - s->asked), high = fmax(s->asked, 1 - s->asked);
+    const double cuts[] = { 0, fmin(low, s->end), fmin(high, s->end), s->end };
     struct bounded sum = { 0, rounding };
-    for (double to = s->end, from; to > 1e-300; to = from) {
-        from = to > 0.5 ? fmax(0.5, 1 - 8 * (1 - to)) : to / 8;
-        double enough = fmax(rounding, 1e-13 * sum.value);
-        sum.value += adapted_integral(strip_at, s, from, to, enough, &sum.error);
-        double rest = from * fmax(start, strip_at(from, s));
-        if (isnan(sum.value + start + rest)) return (struct bounded){ NAN, NAN };
-        if (rest > 0.1 * rounding && rest > 1e-13 * sum.value) continue;
-        sum.error += rest;
-        break;
+    for (int k = 3; k > 0; k--) {
+        if (cuts[k] <= cuts[k - 1]) continue;
+        double middle = cuts[k - 1] + (cuts[k] - cuts[k - 1]) / 2;
+        add_half(s, middle, cuts[k], rounding, &sum);
+        add_half(s, middle, cuts[k - 1], rounding, &sum);
     }
     return sum;
 }
