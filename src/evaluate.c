@@ -13,6 +13,7 @@
 #include "evaluate.h"
 #include "quadrature.h"
 
+#include <float.h>
 #include <math.h>
 
 enum { MOST_IN_SUBSETS = 16 };
@@ -69,6 +70,7 @@ struct strip {
 static const double
     TURNED = 0x1p-53,         /* 1 - u in a double is so far from 1 - u */
     CANCELLED = 4e-16,        /* a sum of numbers up to 1 is so far from what it stands for */
+    NEAR_ONE = 4e-15,         /* a conditional probability near 1 is so far from it */
     WANTED = 1e-10;           /* relative */
 
 static double strip_at(double x, const void *with)
@@ -91,7 +93,7 @@ static status unrotated_cdf(const struct evaluation *e, double u, double v, doub
 /* Between the bounds of Frechet and Hoeffding. */
 static double within_bounds(double u, double v, double value)
 {
-    double least = u < v ? v - (1 - u) : u - (1 - v);
+    double least = u < v ? u - (1 - v) : v - (1 - u);         /* exact where it is positive */
     return fmin(fmin(u, v), fmax(fmax(0, least), value));
 }
 
@@ -107,11 +109,11 @@ static status cancelling_cdf(const struct evaluation *e, double u, double v, dou
 }
 
 /* What rounding may cost the integral along a strip: a monotone integrand whose argument is off by
- * TURNED changes it by that times its range, 1 - w by CANCELLED everywhere; then `asked` was
+ * TURNED changes it by that times its range, 1 - w by NEAR_ONE everywhere; then `asked` was
  * turned too, where the slope is the conditional probability along the other column. */
 static double strip_rounding(const struct strip *s, const struct strip *other, double highest)
 {
-    double rounding = s->turn_w ? CANCELLED * s->end : 0;
+    double rounding = s->turn_w ? NEAR_ONE * s->end : 0;
     if (s->turn_x) rounding += TURNED * highest;
     if (s->turn_w) rounding += TURNED * strip_at(other->end, other);
     return rounding;
@@ -185,7 +187,7 @@ static status rotated_pair_cdf(const struct evaluation *e, double u, double v, d
         bool agrees = fabs(sum.value - *value) <= sum.error + CANCELLED;
         if (agrees && sum.error < best.error) best = sum;
     }
-    *value = within_bounds(u, v, best.value);
+    *value = best.value;
     *error = best.error > WANTED * best.value ? best.error : 0;
     return OK;
 }
@@ -214,7 +216,7 @@ static status subsets_cdf(const struct evaluation *e, const double *u, double *v
     }
     *value = sum < 0 ? 0 : sum;
     *error = 2e-16 * sizes;
-    return OK;
+    return *error > 1e-3 * *value ? NOT_SETTLED : OK;
 }
 
 status cdf_at(const struct evaluation *e, const double *u, double *value, double *error)
@@ -228,9 +230,11 @@ status cdf_at(const struct evaluation *e, const double *u, double *value, double
     }
     *value = below_one ? u[one] : 1;
     if (below_one < 2) return OK;
-    if (e->rotation == 0) return e->by->cdf(e, u, value, error);
-    return d == 2 ? rotated_pair_cdf(e, u[0], u[1], value, error)
-                  : subsets_cdf(e, u, value, error);
+    status s = e->rotation == 0 ? e->by->cdf(e, u, value, error)
+             : d == 2 ? rotated_pair_cdf(e, u[0], u[1], value, error)
+                      : subsets_cdf(e, u, value, error);
+    if (s == OK && d == 2 && !isnan(*value)) *value = within_bounds(u[0], u[1], *value);
+    return s;
 }
 
 status pair_cdf_roughly_at(const struct evaluation *e, const double *u, double *value)
@@ -244,12 +248,18 @@ status log_density_at(const struct evaluation *e, const double *u, double *value
     return e->by->log_density(e, turn_all(e, u), value);
 }
 
+/* Within (0;1), so that it may be asked again; NaN stays. */
+static double inside(double u)
+{
+    return u < DBL_MIN ? DBL_MIN : u > 1 - 0x1p-53 ? 1 - 0x1p-53 : u;
+}
+
 status conditional_at(const struct evaluation *e, const double *u, double *w)
 {
     double first = u[0];
     status s = e->by->conditional(e, turn_all(e, u), w);
     for (size_t j = 1; s == OK && j < e->c->dimension; j++)
-        if (turns(e->rotation, j)) w[j] = 1 - w[j];
+        w[j] = inside(turns(e->rotation, j) ? 1 - w[j] : w[j]);
     w[0] = first;
     return s;
 }
@@ -259,7 +269,7 @@ status from_conditional_at(const struct evaluation *e, const double *w, double *
     double first = w[0];
     status s = e->by->from_conditional(e, turn_all(e, w), u);
     for (size_t j = 1; s == OK && j < e->c->dimension; j++)
-        if (turns(e->rotation, j)) u[j] = 1 - u[j];
+        u[j] = inside(turns(e->rotation, j) ? 1 - u[j] : u[j]);
     u[0] = first;
     return s;
 }

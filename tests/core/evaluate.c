@@ -1,6 +1,7 @@
 /* What copulas say at points, against published definitions at 60 and more digits. */
 #include "asked.h"
 
+#include <float.h>
 #include <gsl/gsl_errno.h>
 
 static copula *copula_of(struct sample_copula *s, const struct csv *t, size_t i)
@@ -27,10 +28,11 @@ static void check(const struct csv *t, size_t i, const char *column, double got)
 {
     char what[200];
     double want = csv_number(t, i, column);
+    double least = column[0] == 'd' && column[1] == 'C' ? DBL_MIN : 0;     /* it keeps above 0 */
     snprintf(what, sizeof what, "%s, row %zu: %s %s %s at %s %s", column, i + 2,
              csv_text(t, i, "family"), csv_text(t, i, "parameter_or_rho"), csv_text(t, i, "nu"),
              csv_text(t, i, "u"), csv_text(t, i, "v"));
-    close_or_fail(got, want, tolerance_of(t, i, want), what, __FILE__, __LINE__);
+    close_or_fail(got, fmax(want, least), tolerance_of(t, i, want), what, __FILE__, __LINE__);
 }
 
 /* What a decimal has beyond its double, seen from 1: "0.999999" is 1 - 1e-6, its double is not. */
@@ -183,13 +185,15 @@ static copula *hard_pair(struct sample_copula *s, size_t k)
          : one_parameter(s, hard[k].word, 2, hard[k].theta);
 }
 
-/* Whether the family has mass nowhere near this point: then the log-density may be -infinity. */
+/* Whether the unrotated family has mass nowhere near this point: then the log-density may be
+ * -infinity. fgm and amh vanish in two corners, at the ends of their parameter. */
 static bool may_vanish(const copula *c, double u, double v)
 {
     double theta = c->theta;
     if (!strcmp(c->family->word, "clayton"))
         return theta < 0 && pow(u, -theta) + pow(v, -theta) <= 1 + 1e-10;
-    return !strcmp(c->family->word, "fgm") || !strcmp(c->family->word, "amh");
+    bool ends = fabs(theta) == 1 && fmin(u, 1 - u) < 1e-15 && fmin(v, 1 - v) < 1e-15;
+    return ends && (!strcmp(c->family->word, "fgm") || !strcmp(c->family->word, "amh"));
 }
 
 /* Finite log-densities within 1e-12 of the corners and edges, and at 1e-300. */
@@ -205,7 +209,8 @@ static void log_densities_are_finite(void **state)
                 copula *c = hard_pair(&s, k);
                 c->rotation = rotation;
                 double u = at[i / AT], v = at[i % AT], x = ask_pair(c, LOG_DENSITY, u, v);
-                bool vanishes = rotation || may_vanish(c, u, v);
+                bool vanishes = may_vanish(c, rotation == 90 || rotation == 180 ? 1 - u : u,
+                                           rotation >= 180 ? 1 - v : v);
                 if (!isfinite(x) && !(vanishes && x == -INFINITY))
                     fail_msg("%s %g, rotation %d at %g %g: %g", hard[k].word, hard[k].theta,
                              rotation, u, v, x);
@@ -225,11 +230,11 @@ static void within_bounds(void **state)
             double u = random_uniform(&r), v = random_uniform(&r), h;
             if (random_below(&r, 2)) u *= u * u * u * u;
             if (random_below(&r, 2)) v = u * (1 + 1e-3 * random_uniform(&r)) / 1.001;
-            double value = ask_pair(c, CDF, u, v), small = 1e-12 * fmin(u, v);
+            double value = ask_pair(c, CDF, u, v), small = 1e-15 * fmin(u, v);
             assert_true(value >= fmax(0, u - (1 - v)) - small - 1e-15);
             assert_true(value <= fmin(u, v) + small);
             h = ask_pair(c, CONDITIONAL, u, v);
-            assert_true(h >= 0 && h <= 1);
+            assert_true(h > 0 && h < 1);
         }
 }
 
