@@ -131,7 +131,8 @@ static void joint_exceedances(void **state)
 }
 
 /* rotated_cdf.csv: the definitions at 400 digits. What is not within the tolerance of its row says
- * how far off it may be, which is never more than 4e-16. */
+ * how far off it may be, which is no more than 1e-16 and a little in a turned column, and 5e-15 in a
+ * conditional probability near 1, may cost. */
 static void rotated_pairs(void **state)
 {
     (void)state;
@@ -148,12 +149,14 @@ static void rotated_pairs(void **state)
         assert_int_equal(evaluation_of(c, &e, &p), OK);
         assert_int_equal(cdf_at(&e, u, &got, &error), OK);
         snprintf(what, sizeof what, "rotated_cdf.csv, line %zu, error %g", i + 2, error);
-        assert_true(error >= 0 && error <= 4e-16);
+        double least = fmin(u[0], u[1]);
+        double rounding = 2e-21 + 1e-9 * want + 5e-15 * least + 4e-16 * fmin(1, want / least);
+        assert_true(error >= 0 && error <= fmin(rounding, 4e-16));
         double tolerance = fmax(error, tolerance_of(t, i, want));
         close_or_fail(got, want, tolerance, what, __FILE__, __LINE__);
         pool_empty(&p);
     }
-    assert_int_equal(t->rows, 16 * 3 * 24 + 11);
+    assert_int_equal(t->rows, 16 * 3 * 24 + 13);
     csv_free(t);
 }
 
@@ -253,7 +256,7 @@ static void check_inside(const copula *c, enum asked what, const double *u)
 static void conditionals_stay_inside(void **state)
 {
     (void)state;
-    static const double at[] = { 1e-200, 1e-16, 1e-3, 0.5, 0.75, 1 - 0x1p-52, 1 - 0x1p-53 };
+    static const double at[] = { 1e-100, 1e-16, 1e-3, 0.5, 0.75, 1 - 0x1p-52, 1 - 0x1p-53 };
     enum { AT = sizeof at / sizeof *at };
     for (size_t k = 0; k < HARD; k++)
         for (size_t i = 0; i < 4 * AT * AT; i++) {
