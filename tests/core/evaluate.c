@@ -131,8 +131,8 @@ static void joint_exceedances(void **state)
 }
 
 /* rotated_cdf.csv: the definitions at 400 digits. What is not within the tolerance of its row says
- * how far off it may be, which is no more than 1e-16 and a little in a turned column, and 5e-15 in a
- * conditional probability near 1, may cost. */
+ * how far off it may be, which is no more than what 1e-16 in a turned column and 5e-15 in a
+ * conditional probability near 1 may cost. */
 static void rotated_pairs(void **state)
 {
     (void)state;
