@@ -9,8 +9,8 @@
  *   sum over all subsets of the columns.
  *
  * Accuracy
- *   A double 1 - u has lost what u had below 1e-16, so that near 0 the answer for a turned column is
- *   off by about 1e-16 / u relative whatever the method; the bound says so.
+ *   A double 1 - u has lost what u had below 1e-16, so that near 0 the answer for a turned column
+ *   is off by about 1e-16 / u relative whatever the method; the bound says so.
  *
  * Special cases
  *   A probability with some u = 0 is 0; with one u below 1 it is that u.

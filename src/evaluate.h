@@ -74,9 +74,9 @@ status conditional_at(const struct evaluation *e, const double *u, double *w);
 /* Its inverse, from w to u, kept within the same bounds. */
 status from_conditional_at(const struct evaluation *e, const double *w, double *u);
 
-/* K(w) = P(C(U) <= w), 0 <= w <= 1, to 1e-9, to 1e-7 where |tau| is above 0.95: Barbe, Genest, Ghoudi & Remillard (1996) for
- * Archimedean copulas in any dimension, for other pairs an integral along the curve where C is w.
- * NOT_SETTLED when a point of that curve is not found. */
+/* K(w) = P(C(U) <= w), 0 <= w <= 1, to 1e-9, to 1e-7 where |tau| is above 0.95: Barbe, Genest,
+ * Ghoudi & Remillard (1996) for Archimedean copulas in any dimension, for other pairs an integral
+ * along the curve where C is w. NOT_SETTLED when a point of that curve is not found. */
 status kendall_at(const struct evaluation *e, double w, double *k);
 
 #endif
