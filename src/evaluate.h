@@ -1,7 +1,8 @@
 /* evaluate.h - what a copula says at points: probability, density, conditional distributions.
  *
  * A point is `dimension` numbers, all strictly between 0 and 1 unless it says otherwise; everything
- * is about the rotated copula. A point is turned by 1 - u, kept at or below 1 - 2^-53.
+ * is about the rotated copula. A point is turned by 1 - u, kept at or below 1 - 2^-53, so that what
+ * is said near 0 of a column that a rotation turns is good to about 1e-16 / u relative.
  */
 #ifndef EVALUATE_H
 #define EVALUATE_H
@@ -52,8 +53,9 @@ const char *evaluation_limit(const struct evaluation *e, enum question q);
 
 /* P(U_1 <= u_1, ..., U_d <= u_d), 0 and 1 allowed. *error is 0, or the standard error of a value by
  * quasi-Monte Carlo, or a bound on what cancellation may have left. Pairs to 1e-10 relative, those
- * of a grouped t to 1e-10. OUT_OF_DOMAIN as evaluation_limit() says, and for a grouped t pair
- * within 1e-13 of 0 or 1. */
+ * of a grouped t to 1e-10, rotated ones to *error, at most 4e-16, where that is more. OUT_OF_DOMAIN
+ * as evaluation_limit() says, and for a grouped t pair within 1e-13 of 0 or 1; NOT_SETTLED where
+ * beyond pairs a rotation leaves less than three digits. */
 status cdf_at(const struct evaluation *e, const double *u, double *value, double *error);
 
 /* The same of a pair, 0 < u < 1, to 1e-15 absolute: much faster where a rotation makes it
@@ -65,10 +67,11 @@ status pair_cdf_roughly_at(const struct evaluation *e, const double *u, double *
 status log_density_at(const struct evaluation *e, const double *u, double *value);
 
 /* w_1 = u_1, w_j = P(U_j <= u_j | U_1 = u_1, ..., U_(j-1) = u_(j-1)): independent uniforms when u
- * is from the copula (Rosenblatt 1952). OUT_OF_DOMAIN likewise. */
+ * is from the copula (Rosenblatt 1952), from the smallest normal double to 1 - 2^-53. OUT_OF_DOMAIN
+ * likewise. */
 status conditional_at(const struct evaluation *e, const double *u, double *w);
 
-/* Its inverse, from w to u. */
+/* Its inverse, from w to u, kept within the same bounds. */
 status from_conditional_at(const struct evaluation *e, const double *w, double *u);
 
 /* K(w) = P(C(U) <= w), 0 <= w <= 1, to 1e-9, for tau beyond 0.95 or -0.95 to 1e-7: Barbe, Genest,

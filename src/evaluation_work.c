@@ -55,8 +55,8 @@ static double rotated_pair_seconds(const struct evaluation *e, const double *u)
 {
     double value = 0, most = fmax(u[0], u[1]);
     if (fmin(u[0], u[1]) == 0 || most == 1) return 0;
-    if (pair_cdf_roughly_at(e, u, &value) != OK || value > 1e-3) return 1e-6;
-    if (e->by == &pair_evaluator) return 1e-4;
+    if (pair_cdf_roughly_at(e, u, &value) != OK || value > 1e-5) return 1e-6;
+    if (e->by == &pair_evaluator) return 4e-4;
     return most > 0.9 ? 5e-3 : 5e-4;
 }
 

@@ -54,6 +54,7 @@ struct adapting {
     const void *with;
     double enough;
     int left;                /* halvings that may still be made: noise in f never agrees */
+    double error;            /* how far apart the rules were where it stopped */
 };
 
 static double halved(struct adapting *a, double from, double to, double whole, int depth)
@@ -62,27 +63,33 @@ static double halved(struct adapting *a, double from, double to, double whole, i
     double left = integral_of(a->f, a->with, from, middle);
     double right = integral_of(a->f, a->with, middle, to), apart = fabs(left + right - whole);
     bool settled = !(apart > 1e-12 * fabs(left + right) && apart > a->enough);
-    if (settled || depth == 0 || a->left == 0) return left + right;
+    if (settled || depth == 0 || a->left == 0) {
+        a->error += apart;
+        return left + right;
+    }
     a->left--;
     left = halved(a, from, middle, left, depth - 1);
     return left + halved(a, middle, to, right, depth - 1);
 }
 
 double adapted_integral(double (*f)(double x, const void *with), const void *with, double from,
-                        double to, double enough)
+                        double to, double enough, double *error)
 {
     enum { DEEPEST = 44, MOST_HALVINGS = 200 };
-    struct adapting a = { f, with, enough, MOST_HALVINGS };
-    return halved(&a, from, to, integral_of(f, with, from, to), DEEPEST);
+    struct adapting a = { f, with, enough, MOST_HALVINGS, 0 };
+    double sum = halved(&a, from, to, integral_of(f, with, from, to), DEEPEST);
+    *error += a.error;
+    return sum;
 }
 
 double outward_integral(double (*f)(double x, const void *with), const void *with, double from,
                         double length)
 {
     enum { MOST_PANELS = 60 };
-    double sum = 0;
+    double sum = 0, ignored = 0;
     for (int panel = 0; panel < MOST_PANELS; panel++) {
-        double part = fabs(adapted_integral(f, with, from, from + length, 1e-16 * sum));
+        double enough = 1e-16 * sum;
+        double part = fabs(adapted_integral(f, with, from, from + length, enough, &ignored));
         sum += part;
         if (part <= 1e-17 * sum && (sum > 0 || panel > 8)) break;
         from += length;

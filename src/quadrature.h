@@ -17,9 +17,9 @@ double integral_of(double (*f)(double x, const void *with), const void *with, do
 
 /* The integral over an interval that is halved until both halves agree with the whole, to 1e-12 of
  * their sum or to `enough`, or have been halved 200 times: about 1e-14 relative for a positive f
- * that bends anywhere. */
+ * that bends anywhere. *error grows by how far apart they still are. */
 double adapted_integral(double (*f)(double x, const void *with), const void *with, double from,
-                        double to, double enough);
+                        double to, double enough, double *error);
 
 /* The integral of a positive f from `from` to infinity (length > 0) or minus infinity (length < 0),
  * over panels the first of which has this length and each next twice that of the one before, until

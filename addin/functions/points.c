@@ -268,12 +268,17 @@ const function points_functions[] = {
         .detail =
             "Pairs to 1e-10 relative, in the tails too: for gaussian and t the integral of a "
             "conditional probability, which is positive, and likewise where a rotation would make "
-            "numbers cancel; a pair of a grouped t to 1e-10 absolute. gaussian and t beyond pairs "
-            "by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with 32,768 points, for up to 128 "
+            "numbers cancel; a pair of a grouped t to 1e-10 absolute. A rotation asks the "
+            "unrotated copula at 1 - u, which ends at 1e-16: near u = 0 no more than about "
+            "1e-16 / u relative is left. Where that is worse than 1e-10, WHY states by how much, "
+            "which is never above 4e-16. gaussian and t beyond pairs by quasi-Monte Carlo (Genz "
+            "1992; Genz & Bretz 2002) with 32,768 points, fewer for many rows, for up to 128 "
             "columns; WHY states the standard error. Archimedean families in any dimension by "
             "their generator, rotated by 180 beyond pairs as a sum over all subsets of columns, "
-            "for up to 16; WHY states what rounding may have cost. A row with a gap gives an empty "
-            "cell. A probability that all columns are above a point is that of the model with "
+            "for up to 16; WHY states what rounding may have cost, and where that is above a "
+            "thousandth of the answer the cell is Err:523. A row with a gap gives an empty "
+            "cell; points with a header give a column with the header cdf. A probability that all "
+            "columns are above a point is that of the model with "
             "rotation 180 at 1 - u.",
         .examples = {
             { "CDF(MODEL(\"gaussian\";0.5);{0.5;0.5})", "0.333333333333333" },

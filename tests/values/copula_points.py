@@ -1,7 +1,8 @@
 #!/usr/bin/python3
-"""Writes student_tail.csv, student_pair.csv and archimedean_points.csv with mpmath: probabilities of Student's t by
+"""Writes student_tail.csv, student_pair.csv, archimedean_points.csv and rotated_cdf.csv with mpmath: probabilities of Student's t by
 integrals of its density, those of a t pair by the arcsine-angle integral (in the correlation from -1 on), Archimedean
-copulas by Taylor coefficients of their generators at 400 digits."""
+copulas by Taylor coefficients of their generators at 400 digits, rotated pairs by the definitions of the families and
+of the rotations at 400 digits, at the doubles nearest to u and v."""
 import csv
 import os
 import sys
@@ -105,8 +106,54 @@ def archimedean_points():
                 yield (family, theta, point) + archimedean(family, theta, point) + ('1e-11',)
 
 
+def plackett(u, v, a):
+    s = 1 + (a - 1) * (u + v)
+    return (s - sqrt(s * s - 4 * u * v * a * (a - 1))) / (2 * (a - 1))
+
+
+PAIRS = {
+    'clayton': lambda u, v, a: max(mpf(0), u ** -a + v ** -a - 1) ** (-1 / a),
+    'gumbel': lambda u, v, a: exp(-((-log(u)) ** a + (-log(v)) ** a) ** (1 / a)),
+    'frank': lambda u, v, a: -log1p(expm1(-a * u) * expm1(-a * v) / expm1(-a)) / a,
+    'joe': lambda u, v, a: 1 - ((1 - u) ** a + (1 - v) ** a - (1 - u) ** a * (1 - v) ** a) ** (1 / a),
+    'amh': lambda u, v, a: u * v / (1 - a * (1 - u) * (1 - v)),
+    'plackett': plackett,
+    'fgm': lambda u, v, a: u * v * (1 + a * (1 - u) * (1 - v)),
+}
+
+ROTATED = [('clayton', '1'), ('clayton', '1000'), ('clayton', '-0.9'), ('gumbel', '1.5'), ('gumbel', '2'),
+           ('gumbel', '5'), ('frank', '20'), ('frank', '-5'), ('joe', '2'), ('joe', '5'), ('amh', '0.9'),
+           ('amh', '-1'), ('plackett', '1e4'), ('plackett', '1e-4'), ('fgm', '1'), ('fgm', '-0.8')]
+
+MORE = [('clayton', '1000', 90, '0.999999996', '0.00066'), ('clayton', '-0.9', 90, '0.384831', '0.000304478'),
+        ('gumbel', '5', 270, '0.99999', '0.0009'), ('joe', '5', 270, '0.9998', '0.0007'),
+        ('gumbel', '2', 180, '0.0001', '0.0001'), ('gumbel', '2', 180, '1e-8', '1e-8'),
+        ('gumbel', '2', 90, '1e-6', '1e-6'), ('joe', '2', 270, '1e-4', '0.001'), ('frank', '20', 90, '0.3', '0.2'),
+        ('plackett', '1e4', 90, '0.4', '0.3'), ('gumbel', '2', 180, '3e-17', '3e-18'),
+        ('gumbel', '10000', 270, '0.9999999828163686', '1.7163467413520618e-08'),
+        ('clayton', '19998', 90, '0.993249998355257', '0.006742191818910982')]
+
+
+def rotated(family, parameter, rotation, u, v):
+    mp.dps = 400
+    a, u, v, c = mpf(float(parameter)), mpf(float(u)), mpf(float(v)), PAIRS[family]
+    return {90: lambda: v - c(1 - u, v, a), 180: lambda: u + v - 1 + c(1 - u, 1 - v, a),
+            270: lambda: u - c(u, 1 - v, a)}[rotation]()
+
+
+def rotated_pairs():
+    near_one, near_zero = ('0.99', '0.995', '0.999', '0.9999'), ('9e-4', '5e-4', '1e-5')
+    grid = [(u, v) for u in near_one for v in near_zero]
+    cases = [(f, a, rotation) + at for f, a in ROTATED for rotation in (90, 180, 270)
+             for at in grid + [(v, u) for u, v in grid]]
+    for case in cases + MORE:
+        value = rotated(*case)
+        small = value < mpf('1e-290')
+        yield case + ('0', 'absolute 1e-290') if small else case + (nstr(value, 20), '1e-10 relative')
+
+
 def main():
-    which = sys.argv[1:] or ['tail', 'pair', 'archimedean']
+    which = sys.argv[1:] or ['tail', 'pair', 'archimedean', 'rotated']
     if 'tail' in which:
         write('student_tail.csv', ['df', 't', 'y', 'tail', 'tolerance'], student_tails())
     if 'pair' in which:
@@ -114,6 +161,8 @@ def main():
     if 'archimedean' in which:
         write('archimedean_points.csv', ['family', 'theta', 'u', 'C', 'log_density', 'conditional', 'tolerance'],
               archimedean_points())
+    if 'rotated' in which:
+        write('rotated_cdf.csv', ['family', 'parameter', 'rotation', 'u', 'v', 'C', 'tolerance'], rotated_pairs())
 
 
 if __name__ == '__main__':
