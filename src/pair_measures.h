@@ -5,8 +5,8 @@
 #include "family.h"
 
 /* Kendall's tau and Spearman's rho of columns i and j, with rotation and grouped degrees of freedom
- * taken into account. tau to 1e-12 relative; rho as its family has it; both to 1e-9 for a grouped t.
- * NO_MEMORY; OUT_OF_DOMAIN when there is no number (df too extreme for a table). */
+ * taken into account. tau to 1e-12 relative; rho as its family has it; both to 1e-9 for a grouped
+ * t. NO_MEMORY; OUT_OF_DOMAIN when there is no number (df too extreme for a table). */
 status tau_of_pair(const copula *c, size_t i, size_t j, double *tau, pool *p);
 status rho_of_pair(const copula *c, size_t i, size_t j, double *rho, pool *p);
 

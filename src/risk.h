@@ -68,8 +68,8 @@ size_t exceedance_points(size_t n, size_t points);
 
 /* Losses, rising, with the share of observations at or above each: the smallest and the
  * largest, and between them order statistics at geometrically spaced ranks, so that the tail
- * is drawn as finely as the rest; where losses are tied a point can come again. n >= 1, points >= 2; both arrays take exceedance_points().
- * NO_MEMORY. */
+ * is drawn as finely as the rest; where losses are tied a point can come again. n >= 1, points >=
+ * 2; both arrays take exceedance_points(). NO_MEMORY. */
 status exceedance_curve(const double *loss, size_t n, size_t points, pool *p, double *at,
                         double *probability);
 

@@ -60,7 +60,7 @@ const function measure_tau_functions[] = {
             "1924). fisherz is tanh(atanh(tau) -/+ z sqrt(0.437/(n - 4))) (Fieller, Hartley & "
             "Pearson 1957), its error by the delta method, and needs five rows. jackknife leaves "
             "out each row in turn. bootstrap gives percentiles and standard deviation of 2,000 "
-            "resamples that the seed draws; the office waits for it, about a second for 10,000 rows "
+            "resamples that the seed draws; the office waits, about a second for 10,000 rows "
             "and 10 to 15 for 100,000, where free is as good. Limits are kept within [-1;1]. Rows "
             "with a gap in x or y are left out. #N/A with fewer than three rows, #DIV/0! when a "
             "column does not vary.",
