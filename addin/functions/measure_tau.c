@@ -61,7 +61,10 @@ const function measure_tau_functions[] = {
             "Pearson 1957), its error by the delta method, and needs five rows. jackknife leaves "
             "out each row in turn. bootstrap gives percentiles and standard deviation of 2,000 "
             "resamples that the seed draws; the office waits, about a second for 10,000 rows "
-            "and 10 to 15 for 100,000, where free is as good. Limits are kept within [-1;1]. Rows "
+            "and 10 to 15 for 100,000, where free is as good. Take free unless there is a reason "
+            "not to; jackknife is its check and covers a little less at few rows; fisherz and "
+            "binormal rest on a normal pair and serve for comparison; bootstrap where limits "
+            "should not lie evenly about tau. Limits are kept within [-1;1]. Rows "
             "with a gap in x or y are left out. #N/A with fewer than three rows, #DIV/0! when a "
             "column does not vary.",
         .examples = {

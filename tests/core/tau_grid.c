@@ -119,10 +119,41 @@ static void budget(void **state)
     free(at);
 }
 
+/* The ranks of four lines over six years, and the tau of each pair as recomputed with mpmath: the
+ * taus that greiner_needs_repair.csv starts from. */
+static void ranks_of_four_lines(void **state)
+{
+    (void)state;
+    struct csv *data = csv_read("greiner_needs_repair_data.csv");
+    struct csv *want = csv_read("greiner_needs_repair.csv");
+    double at[24];
+    samples s = { .rows = data->rows, .cols = 4, .at = at };
+    assert_int_equal(s.rows, 6);
+    for (size_t j = 0; j < 4; j++)
+        for (size_t i = 0; i < 6; i++)
+            column(&s, j)[i] = csv_number(data, i, data->cells[j + 1]);
+    pool p = { 0 };
+    struct tau_grid *grid;
+    assert_int_equal(new_tau_grid(&s, COUNT_AS_SUITS, &grid, &p), OK);
+    for (size_t k = 0; k < want->rows; k++) {
+        struct tau_counts c;
+        double tau;
+        tau_grid_counts(grid, (size_t)csv_number(want, k, "i") - 1,
+                        (size_t)csv_number(want, k, "j") - 1, &c);
+        assert_int_equal(tau_b(&c, &tau), OK);
+        assert_within(tau, csv_number(want, k, "tau"), 1e-15);
+    }
+    assert_int_equal(want->rows, 6);
+    pool_empty(&p);
+    csv_free(data);
+    csv_free(want);
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(equals_definition), cmocka_unit_test(ways_agree),
+        cmocka_unit_test(ranks_of_four_lines),
         cmocka_unit_test(spoiled_columns), cmocka_unit_test(memory), cmocka_unit_test(budget),
     };
     return cmocka_run_group_tests_name("tau_grid", tests, NULL, NULL);
