@@ -28,23 +28,10 @@ struct way {
     seconds_at *takes;
 };
 
-static status names_agree(const copula *c, const samples *points, report *r)
-{
-    for (size_t j = 0; c->lines && points->names && j < c->dimension; j++)
-        if (*c->lines[j] && *points->names[j] && !same_word(c->lines[j], points->names[j]))
-            return refuse(r, BAD_KIND, "points has the name \"%s\" above column %zu, but the model "
-                          "calls that line \"%s\"", points->names[j], j + 1, c->lines[j]);
-    return OK;
-}
-
-/* Rows of as many columns as the model has, each number within (0;1), or [0;1] if closed. */
+/* Each number within (0;1), or [0;1] if closed. */
 static status check_points(const argument *in, bool closed, report *r)
 {
     const samples *points = &in[POINTS].data;
-    const copula *c = in[ASKED].model;
-    if (points->cols != c->dimension)
-        return refuse(r, BAD_KIND, "points has %zu columns, but the model has %zu", points->cols,
-                      c->dimension);
     for (size_t j = 0; j < points->cols; j++)
         for (size_t i = 0; i < in[POINTS].filled; i++) {
             double u = column(points, j)[i];
@@ -53,7 +40,7 @@ static status check_points(const argument *in, bool closed, report *r)
                           "points has %g in row %zu, column %zu, but must be between 0 and 1%s", u,
                           row_in_range(&in[POINTS], i), j + 1, closed ? "" : ", ends excluded");
         }
-    return names_agree(c, points, r);
+    return OK;
 }
 
 static bool take_row(const samples *points, size_t i, double *u)
@@ -289,7 +276,7 @@ const function points_functions[] = {
         .params = {
             { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
-            { .name = "points",
+            { .name = "points", .fits = "model",
               .help = "One point a row, one column for each of the model, from 0 to 1. Below a "
                       "header the result begins with the word cdf. Many rows get fewer points of "
                       "quasi-Monte Carlo each, down to 512, and more than about 20 s are refused.",
@@ -319,7 +306,7 @@ const function points_functions[] = {
         .params = {
             { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
-            { .name = "points",
+            { .name = "points", .fits = "model",
               .help = "One point a row, one column for each of the model, between 0 and 1.",
               .kind = DATA },
         },
@@ -345,7 +332,7 @@ const function points_functions[] = {
         .params = {
             { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
-            { .name = "points",
+            { .name = "points", .fits = "model",
               .help = "One point a row, one column for each of the model, between 0 and 1.",
               .kind = DATA },
         },
@@ -371,7 +358,7 @@ const function points_functions[] = {
         .params = {
             { .name = "model", .help = "A model block, as MODEL returns it.",
               .kind = MODEL },
-            { .name = "points",
+            { .name = "points", .fits = "model",
               .help = "One row of uniforms for each row wanted, between 0 and 1.", .kind = DATA },
         },
         .call = cell_fromconditional,

@@ -94,11 +94,6 @@ static status put_heading(value *out, report *r)
     return s;
 }
 
-static void put_known(value *out, size_t row, size_t col, double x)
-{
-    if (!isnan(x)) put_number(out, row, col, x);
-}
-
 static status put_figures(const pricing *price, const char **names, value *out, report *r)
 {
     status s = put_heading(out, r);

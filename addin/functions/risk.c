@@ -7,12 +7,6 @@
 
 static const char group[] = "Price";
 
-/* An error that the sample is too small to tell stays empty. */
-static void put_known(value *out, size_t row, size_t col, double x)
-{
-    if (!isnan(x)) put_number(out, row, col, x);
-}
-
 static status sums_of(const argument *losses, const double **sums, report *r)
 {
     if (losses->data.cols > 1)

@@ -157,7 +157,7 @@ static void refusals(void **state)
     value opposite = model(&c, "clayton", -1, 0, 0, 2), many = model(&c, "frank", 2, 0, 0, 300);
     value three = model(&c, "t", 0.5, 3, 0, 3), survival = model(&c, "joe", 2, 0, 180, 17);
     refused("CDF", gumbel, cells(p, "0.5,0.5,0.5"), BAD_KIND,
-            "points has 3 columns, but the model has 2");
+            "points has 3 lines, but model has 2");
     refused("CDF", gumbel, cells(p, "a,b;0.5,0.5;0.5,1.5"), OUT_OF_DOMAIN,
             "points has 1.5 in row 3, column 2, but must be between 0 and 1");
     refused("DENSITY", gumbel, cells(p, "0.5,1"), OUT_OF_DOMAIN,
@@ -181,7 +181,7 @@ static void refusals(void **state)
             "columns: there can be at most 16");
     call(&c, "MODEL", 2, (value[]){ text("gaussian"), cells(p, "motor,cargo;1,0.5;0.5,1") });
     refused("CDF", c.out, cells(p, "motor,fire;0.5,0.5"), BAD_KIND,
-            "points has the name \"fire\" above column 2, but the model calls that line \"cargo\"");
+            "points names line 2 \"fire\", but model names it \"cargo\"");
     pool_empty(p);
 }
 
