@@ -39,7 +39,7 @@ static inline void put_number(value *out, size_t row, size_t col, double x)
     out->table.at[row * out->table.cols + col] = x;
 }
 
-/* A number that is undefined, such as an error that the sample is too small to tell, stays empty. */
+/* An undefined number, such as an error that the sample is too small to tell, stays empty. */
 static inline void put_known(value *out, size_t row, size_t col, double x)
 {
     if (x == x) put_number(out, row, col, x);
