@@ -1,6 +1,7 @@
 /* measure.c - dependence in data: ranks, and Kendall's tau of a pair and of all pairs. */
 #include "../function.h"
 #include "../measures.h"
+#include "../params.h"
 #include "../shape.h"
 #include "../words.h"
 #include "../../src/ranks.h"
@@ -272,9 +273,7 @@ const function measure_functions[] = {
             { "TAU({1|2|3};{7|7|7})", "#DIV/0!" },
         },
         .params = {
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
+            PAIR_OF_COLUMNS,
             { .name = "weights",
               .help = "The importance of each row, at least 0; all alike when left out.",
               .kind = COLUMN, .optional = true, .fits = "x" },

@@ -1,6 +1,7 @@
 /* measure_rho.c - Spearman's rho and the correlation of normal scores. */
 #include "../function.h"
 #include "../measures.h"
+#include "../params.h"
 #include "../../src/rho.h"
 
 typedef status measure(const ranking *x, const ranking *y, double *result, size_t *used,
@@ -92,9 +93,7 @@ const function measure_rho_functions[] = {
             { "RHO({1|2|3};{7|7|7})", "#DIV/0!" },
         },
         .params = {
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
+            PAIR_OF_COLUMNS,
         },
         .call = cell_rho,
     },

@@ -1,6 +1,7 @@
 /* measure_tail.c - dependence in the tails, and the Kendall distribution of data. */
 #include "../function.h"
 #include "../measures.h"
+#include "../params.h"
 #include "../words.h"
 #include "../../src/kendall_curve.h"
 #include "../../src/tail_dependence.h"
@@ -99,9 +100,7 @@ const function measure_tail_functions[] = {
             { "TAIL({1|2|3};{1|2|3};\"upper\";2)", "#NUM!" },
         },
         .params = {
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
+            PAIR_OF_COLUMNS,
             { .name = "corner", .help = "upper or lower.", .kind = WORD, .words = "upper lower" },
             { .name = "fraction", .help = "The share of rows that is the tail, above 0 to 1.",
               .kind = NUMBER, .low = 0, .high = 1, .open = LOW_OPEN },
@@ -122,9 +121,7 @@ const function measure_tail_functions[] = {
             { "INDEX(TAILCURVE({1|2|3|4};{1|2|4|3};2);1;3)", "0" },
         },
         .params = {
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
+            PAIR_OF_COLUMNS,
             { .name = "points", .help = "How many fractions.", .kind = WHOLE, .low = 1,
               .high = 10000, .optional = true, .otherwise = 50 },
         },
@@ -145,9 +142,7 @@ const function measure_tail_functions[] = {
             { "ROWS(KENDALLCURVE({1|2|3|4};{1|3|2|4}))", "50" },
         },
         .params = {
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
+            PAIR_OF_COLUMNS,
             { .name = "points", .help = "How many steps.", .kind = WHOLE, .low = 1,
               .high = 10000, .optional = true, .otherwise = 50 },
         },

@@ -1,6 +1,7 @@
 /* measure_tau.c - how far Kendall's tau may be trusted: intervals and a test. */
 #include "../function.h"
 #include "../measures.h"
+#include "../params.h"
 #include "../../src/tau_band.h"
 #include "../../src/tau_test.h"
 
@@ -76,17 +77,8 @@ const function measure_tau_functions[] = {
             { "TAUBAND({1|2};{1|2})", "#N/A" },
         },
         .params = {
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
-            { .name = "coverage", .help = "How often the interval is to hold the true tau.",
-              .kind = NUMBER, .low = 0, .high = 1, .open = BOTH_OPEN, .optional = true,
-              .otherwise = 0.95 },
-            { .name = "method", .help = "free, binormal, fisherz, jackknife or bootstrap.",
-              .kind = WORD, .words = "free binormal fisherz jackknife bootstrap",
-              .optional = true },
-            { .name = "seed", .help = "For the bootstrap: a whole number from 0.", .kind = WHOLE,
-              .low = 0, .high = 9007199254740992, .optional = true, .otherwise = 1 },
+            PAIR_OF_COLUMNS,
+            BAND_SETTINGS("tau"),
         },
         .costly = true,
         .call = cell_tauband,
@@ -108,9 +100,7 @@ const function measure_tau_functions[] = {
             { "TAUTEST({1|2|3|4};{1|2|3|4};\"above\")", "0.041666666666666667" },
         },
         .params = {
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
+            PAIR_OF_COLUMNS,
             { .name = "side", .help = "both, above (tau > 0) or below (tau < 0).", .kind = WORD,
               .words = "both above below", .optional = true },
         },

@@ -2,6 +2,7 @@
 #include "../family_texts.h"
 #include "../function.h"
 #include "../measures.h"
+#include "../params.h"
 #include "../../src/theta_band.h"
 
 #include <math.h>
@@ -83,17 +84,8 @@ const function parameter_band_functions[] = {
         .params = {
             { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
               .kind = WORD, .words = family_words },
-            { .name = "x", .help = "One column or row of observations.", .kind = COLUMN },
-            { .name = "y", .help = "As many observations of another line.", .kind = COLUMN,
-              .fits = "x" },
-            { .name = "coverage", .help = "How often the interval is to hold the true theta.",
-              .kind = NUMBER, .low = 0, .high = 1, .open = BOTH_OPEN, .optional = true,
-              .otherwise = 0.95 },
-            { .name = "method", .help = "free, binormal, fisherz, jackknife or bootstrap.",
-              .kind = WORD, .words = "free binormal fisherz jackknife bootstrap",
-              .optional = true },
-            { .name = "seed", .help = "For the bootstrap: a whole number from 0.", .kind = WHOLE,
-              .low = 0, .high = 9007199254740992, .optional = true, .otherwise = 1 },
+            PAIR_OF_COLUMNS,
+            BAND_SETTINGS("theta"),
         },
         .costly = true,
         .call = cell_thetaband,
