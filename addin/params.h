@@ -9,6 +9,13 @@
     { .name = "x", .help = "One column or row of observations.", .kind = COLUMN }, \
     { .name = "y", .help = "As many observations of another line.", .kind = COLUMN, .fits = "x" }
 
+#define OBSERVATIONS \
+    { .name = "data", .help = "Observations in rows, lines in columns.", .kind = DATA }
+
+#define GAPS_OF_PAIRS \
+    { .name = "gaps", .help = "pairs: each pair uses the rows it has; rows: complete rows only.", \
+      .kind = WORD, .words = "pairs rows", .optional = true }
+
 /* coverage, method and seed; the words are in the order of band_method in src/tau_band.h */
 #define BAND_SETTINGS(what) \
     { .name = "coverage", .help = "How often the interval is to hold the true " what ".", \

@@ -245,7 +245,7 @@ const function measure_functions[] = {
             { "RANKS({5|5|9};\"random\")", "#VALUE!" },
         },
         .params = {
-            { .name = "data", .help = "Observations in rows, lines in columns.", .kind = DATA },
+            OBSERVATIONS,
             { .name = "ties", .help = "What tied observations get: average, low, high or random.",
               .kind = WORD, .words = "average low high random", .optional = true },
             { .name = "seed", .help = "For random ties: a whole number from 0.",
@@ -301,10 +301,8 @@ const function measure_functions[] = {
             { "INDEX(TAUGRID({1;7|2;7|3;7});1;2)", "#DIV/0!" },
         },
         .params = {
-            { .name = "data", .help = "Observations in rows, lines in columns.", .kind = DATA },
-            { .name = "gaps",
-              .help = "pairs: each pair uses the rows it has; rows: complete rows only.",
-              .kind = WORD, .words = "pairs rows", .optional = true },
+            OBSERVATIONS,
+            GAPS_OF_PAIRS,
             { .name = "weights",
               .help = "The importance of each row, at least 0; all alike when left out.",
               .kind = COLUMN, .optional = true, .fits = "data" },

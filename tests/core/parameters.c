@@ -1,26 +1,10 @@
 /* The functions that turn measured dependence into parameters, as a cell calls them. */
-#include "cells.h"
+#include "call.h"
 
 #include "../../addin/models.h"
 #include "../../src/family.h"
 
 #include <gsl/gsl_errno.h>
-
-struct call {
-    pool pool;
-    report report;
-    value out;
-    status s;
-};
-
-static struct call *call(struct call *c, const char *name, size_t n, const value *in)
-{
-    const function *f = function_named(name);
-    assert_non_null(f);
-    c->report = (report){ .pool = &c->pool };
-    c->s = call_function(f, in, n, &c->out, &c->report);
-    return c;
-}
 
 static double number_of(const char *name, size_t n, const value *in)
 {

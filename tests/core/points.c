@@ -1,23 +1,7 @@
 /* CDF, DENSITY, CONDITIONAL, FROMCONDITIONAL, KENDALLOF and THETABAND, as a cell calls them. */
-#include "cells.h"
+#include "call.h"
 
 #include <gsl/gsl_errno.h>
-
-struct call {
-    pool pool;
-    report report;
-    value out;
-    status s;
-};
-
-static struct call *call(struct call *c, const char *name, size_t n, const value *in)
-{
-    const function *f = function_named(name);
-    assert_non_null(f);
-    c->report = (report){ .pool = &c->pool };
-    c->s = call_function(f, in, n, &c->out, &c->report);
-    return c;
-}
 
 /* MODEL of a family, its parameter, df, rotation and dimension; 0 where left out */
 static value model(struct call *c, const char *word, double parameter, double df, double rotation,

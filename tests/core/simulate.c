@@ -1,15 +1,8 @@
 /* DRAW as a cell calls it. */
-#include "cells.h"
+#include "call.h"
 #include "draws.h"
 
 #include "../../src/scheme.h"
-
-struct call {
-    pool pool;
-    report report;
-    value out;
-    status s;
-};
 
 static const char t_block[] = "copula,t,; dimension,2,; df,4,; matrix,1,0.5; ,0.5,1";
 static const char gumbel_block[] = "copula,gumbel; theta,2; dimension,3; rotation,180";
@@ -19,13 +12,9 @@ static struct call *draw_of(struct call *c, const char *block, double rows, doub
                             const char *how, double skip)
 {
     *c = (struct call){ 0 };
-    c->report.pool = &c->pool;
     value in[] = { cells(&c->pool, block), number(rows), number(seed), how ? text(how) : nothing(),
                    skip < 0 ? nothing() : number(skip) };
-    const function *f = function_named("DRAW");
-    assert_non_null(f);
-    c->s = call_function(f, in, 5, &c->out, &c->report);
-    return c;
+    return call(c, "DRAW", 5, in);
 }
 
 static void refused(const char *block, double rows, double seed, const char *how, double skip,
