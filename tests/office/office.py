@@ -41,11 +41,13 @@ def profile_argument(profile):
 
 
 def unopkg(profile, *arguments, user=()):
-    """Runs unopkg on a profile; raises with what it said when it fails."""
+    """Runs unopkg on a profile; raises with what it said when it fails. It changes to the folder it
+    was started in, which nobody may not be allowed to enter: the root's own home, for one.
+    """
     command = [*user, os.path.join(PROGRAM, 'unopkg'), arguments[0], profile_argument(profile),
                *arguments[1:]]
     done = subprocess.run(command, stdin=subprocess.DEVNULL, stdout=subprocess.PIPE,
-                          stderr=subprocess.STDOUT, text=True, timeout=180)
+                          stderr=subprocess.STDOUT, text=True, timeout=180, cwd='/')
     if done.returncode != 0:
         raise OfficeError('%s failed with %d: %s'
                           % (' '.join(command), done.returncode, done.stdout))
@@ -61,7 +63,7 @@ def add_extension(profile, package, *more):
     """Leaves a profile in which the packages are installed, made anew unless it is the user's."""
     if os.geteuid() != 0:
         for each in (package, *more):
-            unopkg(profile, 'add', '-f', each)
+            unopkg(profile, 'add', '-f', os.path.abspath(each))
         return
     place = tempfile.mkdtemp(prefix='jointsheet-')
     try:
