@@ -90,7 +90,7 @@ double density_seconds_at(const struct evaluation *e, const double *u)
     (void)u;
     size_t d = e->c->dimension;
     return elliptical_of(e) ? elliptical_seconds(elliptical_of(e))
-                            : 2e-7 * (double)d + derivative_seconds(e, d, false);
+                            : 1.2e-7 * (double)d + derivative_seconds(e, d, false);
 }
 
 double conditional_seconds_at(const struct evaluation *e, const double *u)
