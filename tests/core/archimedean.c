@@ -197,13 +197,33 @@ static void survival(void **state)
     assert_within(ask(c, CDF, u), 1 - v[0] - v[1] - v[2] + pairs - triple, 1e-15);
 }
 
+static void every_take_can_fail(void **state)
+{
+    (void)state;
+    static const char *const words[] = { "clayton", "gumbel", "frank", "joe" };
+    for (int k = 0; k < 8; k++)
+        for (size_t fail_at = 1;; fail_at++) {
+            struct sample_copula s;
+            struct evaluation e;
+            pool p = { .fail_at = fail_at };
+            copula *c = one_parameter(&s, words[k / 2], k % 2 ? 2100 : 3, 2);
+            status got = evaluation_of(c, &e, &p);
+            bool failed = p.taken >= fail_at;
+            pool_empty(&p);
+            assert_int_equal(got, failed ? NO_MEMORY : OK);
+            if (!failed) break;
+        }
+}
+
 int main(void)
 {
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(published_points), cmocka_unit_test(published_derivatives), cmocka_unit_test(any_sequence),
+        cmocka_unit_test(published_points), cmocka_unit_test(published_derivatives),
+        cmocka_unit_test(any_sequence),
         cmocka_unit_test(many_columns), cmocka_unit_test(near_zero), cmocka_unit_test(independence),
         cmocka_unit_test(transforms_of_many), cmocka_unit_test(survival),
+        cmocka_unit_test(every_take_can_fail),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
