@@ -9,7 +9,7 @@ import multiprocessing
 import os
 import sys
 
-from mpmath import mp, mpf, cos, exp, expjpi, expm1, factorial, log, log1p, nstr
+from mpmath import mp, mpf, exp, expjpi, expm1, factorial, log, log1p, nstr
 
 HERE = os.path.dirname(os.path.abspath(__file__))
 
@@ -33,7 +33,7 @@ def distance(family, t, a):
 def circle(family, m, a, n):
     """The logarithm of the bound is convex in log r."""
     def bound(e):
-        r = 1 - exp(e) if e < -0.05 else -expm1(e)
+        r = -expm1(e)
         return log(abs(PSI[family](m, r, a))) - n * log(r)
     low, high = mpf(-7), mpf(-1) / mpf(10) ** 9
     for _ in range(60):
