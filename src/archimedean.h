@@ -13,10 +13,14 @@ struct generator {
     /* log of psi^-1(u), -infinity at u = 1 */
     double (*log_inverse)(double u, double theta);
 
-    /* log of |psi^(order)|, order >= 1, at exp(log_t) */
-    double (*log_derivative)(size_t order, double log_t, double theta);
+    /* What log_derivative() takes, for orders up to `highest`, from the pool; NO_MEMORY. */
+    status (*prepare)(double theta, size_t highest, pool *p, void **prepared);
 
-    bool by_sums;             /* each derivative costs its order squared: see evaluation_limit() */
+    /* log of |psi^(order)|, order >= 1, at exp(log_t) */
+    double (*log_derivative)(void *prepared, size_t order, double log_t, double theta);
+
+    /* About how long that takes; `next`: where the order before was asked at the same t. */
+    double (*derivative_seconds)(size_t order, bool next);
 };
 
 /* Works for every row with a generator and a psi. */
@@ -27,17 +31,5 @@ double log_added(double a, double b);
 
 /* log(1 - exp(-t)) from log t */
 double log_one_minus_exp(double log_t);
-
-enum { MOST_TERMS = 1024 };   /* the highest order of the sums; NAN beyond */
-
-/* The log of the sum over k of r_k, from r_1 = x = exp(log_x) and order - 1 steps of
- *     r_k <- k r_k + (k - 2 + rest) x r_(k-1)
- * where rest is in [0;1]. Derivatives of frank (rest = 1) and joe (rest = 1 - 1/theta). */
-double log_sum_rising(size_t order, double log_x, double rest);
-
-/* The same from r_1 = part x, and in step n = 1 ... order - 1
- *     r_k <- (n - k + k rest) r_k + part x r_(k-1),    rest = 1 - part.
- * Derivatives of gumbel (part = 1/theta). */
-double log_sum_of_powers(size_t order, double log_x, double part, double rest);
 
 #endif

@@ -2,7 +2,7 @@
  *
  * Method
  *   The loops of elliptical_box.c, grouped_points.c, archimedean.c and evaluate.c, counted, times
- *   seconds measured for one turn of each.
+ *   seconds measured for one turn of each, and those that a generator says its derivatives take.
  *
  * Special cases
  *   Of a rotated pair the integral is needed only where the value cancels, so it counts only there.
@@ -23,11 +23,19 @@ static struct elliptical_points *elliptical_of(const struct evaluation *e)
     return e->by == &gaussian_evaluator || e->by == &t_evaluator ? e->prepared : NULL;
 }
 
-/* How many columns' derivatives take their order squared. */
-static double columns_by_sums(const struct evaluation *e)
+/* A derivative of this order, beside what is always to do. */
+static double derivative_seconds(const struct evaluation *e, size_t order, bool next)
 {
-    bool sums = e->by == &archimedean_evaluator && e->c->family->generator->by_sums;
-    return sums ? (double)e->c->dimension : 0;
+    bool derived = e->by == &archimedean_evaluator;
+    return derived ? e->c->family->generator->derivative_seconds(order, next) : 0;
+}
+
+/* Derivatives of every order below the dimension, at the same t or each at its own. */
+static double derivatives_seconds(const struct evaluation *e, bool next)
+{
+    double sum = 0;
+    for (size_t n = 1; n < e->c->dimension; n++) sum += derivative_seconds(e, n, next);
+    return sum;
 }
 
 size_t box_points(const struct evaluation *e)
@@ -80,17 +88,17 @@ static double elliptical_seconds(const struct elliptical_points *m)
 double density_seconds_at(const struct evaluation *e, const double *u)
 {
     (void)u;
-    double n = columns_by_sums(e);
+    size_t d = e->c->dimension;
     return elliptical_of(e) ? elliptical_seconds(elliptical_of(e))
-                            : 2e-7 * (double)e->c->dimension + 1.5e-9 * n * n;
+                            : 1.2e-7 * (double)d + derivative_seconds(e, d, false);
 }
 
 double conditional_seconds_at(const struct evaluation *e, const double *u)
 {
     (void)u;
-    double d = (double)e->c->dimension, n = columns_by_sums(e);
-    return elliptical_of(e) ? elliptical_seconds(elliptical_of(e))
-                            : d * (4e-7 + 5e-9 * d) + 1.05e-9 * n * n * n;
+    if (elliptical_of(e)) return elliptical_seconds(elliptical_of(e));
+    return 2e-7 * (double)e->c->dimension + derivatives_seconds(e, false)
+           + derivatives_seconds(e, true);
 }
 
 double from_conditional_seconds_at(const struct evaluation *e, const double *u)
@@ -104,7 +112,7 @@ double from_conditional_seconds_at(const struct evaluation *e, const double *u)
 double kendall_seconds(const struct evaluation *e)
 {
     const struct elliptical_points *m = elliptical_of(e);
-    double d = (double)e->c->dimension, n = columns_by_sums(e);
-    if (e->rotation == 0 && e->by->kendall) return 5e-7 + 2.5e-9 * d * d + 5e-10 * n * n * n;
+    bool formula = e->rotation == 0 && e->by->kendall;
+    if (formula) return 5e-7 + 1e-9 * (double)e->c->dimension + derivatives_seconds(e, true);
     return !m ? 2e-4 : m->df ? 2e-2 : 6e-3;
 }

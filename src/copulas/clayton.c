@@ -122,11 +122,23 @@ static double log_inverse(double u, double theta)
     return x > 1 ? x + log1p(-exp(-x)) : log(expm1(x));
 }
 
-static double log_derivative(size_t order, double log_t, double theta)
+/* For each order the log of 1 (1 + theta) ... (1 + (order-1) theta) / theta^order. */
+static status prepare(double theta, size_t highest, pool *p, void **prepared)
 {
-    double a = positive(theta), sum = -(double)order * log(a);
-    for (size_t i = 1; i < order; i++) sum += log1p((double)i * a);
-    return sum - (1 / a + (double)order) * portable_log1pexp(log_t);
+    double a = positive(theta), sum = 0, *factors = pool_take(p, highest + 1, sizeof *factors);
+    if (!factors) return NO_MEMORY;
+    for (size_t n = 1; n <= highest; n++) {
+        factors[n] = sum - (double)n * log(a);
+        sum += log1p((double)n * a);
+    }
+    *prepared = factors;
+    return OK;
+}
+
+static double log_derivative(void *prepared, size_t order, double log_t, double theta)
+{
+    const double *factors = prepared;
+    return factors[order] - (1 / positive(theta) + (double)order) * portable_log1pexp(log_t);
 }
 
 /* For theta in (-1;0), a = -theta: log(u^a + v^a - 1) / a, -infinity where nothing lies. */
@@ -161,7 +173,15 @@ static double pair_quantile(double u, double w, double theta)
     return theta == -1 ? NAN : conditional_quantile(u, w, theta);
 }
 
-static const struct generator generator = { log_inverse, log_derivative, false };
+static double derivative_seconds(size_t order, bool next)
+{
+    (void)order;
+    (void)next;
+    return 4e-8;
+}
+
+static const struct generator generator = { log_inverse, prepare, log_derivative,
+                                            derivative_seconds };
 static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
                                             pair_quantile };
 

@@ -20,6 +20,7 @@
 #include "../archimedean.h"
 #include "../elementary.h"
 #include "../frailty.h"
+#include "../power_sums.h"
 #include "../root.h"
 
 #include <math.h>
@@ -158,11 +159,19 @@ static double log_inverse(double u, double theta)
     return log(log_q < -0.7 ? -log1p(-exp(log_q)) : -log(one_minus / -expm1(-a)));
 }
 
-/* With w = z/(1-z) it is 1/theta times a polynomial in w. */
-static double log_derivative(size_t order, double log_t, double theta)
+/* -log z is t and -log(1 - exp(-theta)), which is exp(-theta) where that is small. */
+static status prepare(double theta, size_t highest, pool *p, void **prepared)
 {
-    double a = positive(theta), log_z = portable_log1mexp(-a) - exp(log_t);
-    return log_sum_rising(order, log_z - log_rest_of(log_t, a), 1) - log(a);
+    struct power_sums *sums;
+    double a = positive(theta), shift = -portable_log1mexp(-a);
+    status s = power_sums_of(0, 1, shift, a > 40 ? -a : log(shift), highest, p, &sums);
+    *prepared = sums;
+    return s;
+}
+
+static double log_derivative(void *prepared, size_t order, double log_t, double theta)
+{
+    return log_power_sum(prepared, order, log_t) - log(positive(theta));
 }
 
 /* A pair with theta = -s < 0: with E(x) = exp(s x) - 1, exp(s C) - 1 = E(u) E(v) / E(1). */
@@ -203,7 +212,8 @@ static double pair_quantile(double u, double w, double theta)
     return portable_log1pexp(log(w) + log_e(1, s) - bottom) / s;
 }
 
-static const struct generator generator = { log_inverse, log_derivative, true };
+static const struct generator generator = { log_inverse, prepare, log_derivative,
+                                            power_sum_seconds };
 static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
                                             pair_quantile };
 

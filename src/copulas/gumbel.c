@@ -17,6 +17,7 @@
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../quadrature.h"
+#include "../stable_sums.h"
 
 #include <math.h>
 
@@ -78,15 +79,23 @@ static double log_inverse(double u, double theta)
     return theta * log(-log(u));
 }
 
-/* psi(t) / t^order times a polynomial in t^(1/theta) with positive coefficients */
-static double log_derivative(size_t order, double log_t, double theta)
+static status prepare(double theta, size_t highest, pool *p, void **prepared)
 {
-    double log_x = log_t / theta;
-    return log_sum_of_powers(order, log_x, 1 / theta, (theta - 1) / theta) - exp(log_x)
-           - (double)order * log_t;
+    struct stable_sums *sums;
+    status s = stable_sums_of(1 / theta, (theta - 1) / theta, highest, p, &sums);
+    *prepared = sums;
+    return s;
 }
 
-static const struct generator generator = { log_inverse, log_derivative, true };
+/* psi(t) / t^order times a polynomial in t^(1/theta) with positive coefficients */
+static double log_derivative(void *prepared, size_t order, double log_t, double theta)
+{
+    double log_x = log_t / theta;
+    return log_stable_sum(prepared, order, log_x) - exp(log_x) - (double)order * log_t;
+}
+
+static const struct generator generator = { log_inverse, prepare, log_derivative,
+                                            stable_sum_seconds };
 
 const family gumbel_family = {
     .word = "gumbel",

@@ -24,6 +24,7 @@
 #include "../archimedean.h"
 #include "../elementary.h"
 #include "../frailty.h"
+#include "../power_sums.h"
 #include "../root.h"
 #include "../slow_series.h"
 #include "../strong_rho.h"
@@ -167,14 +168,21 @@ static double log_inverse(double u, double theta)
     return log(log_rest < -0.7 ? -log1p(-exp(log_rest)) : -log(-expm1(log_rest)));
 }
 
-/* With y = exp(-t), w = y/(1-y) it is (1-y)^(1/theta)/theta times a polynomial in w. */
-static double log_derivative(size_t order, double log_t, double theta)
+static status prepare(double theta, size_t highest, pool *p, void **prepared)
 {
-    double log_rest = log_one_minus_exp(log_t), log_w = -exp(log_t) - log_rest;
-    return log_sum_rising(order, log_w, (theta - 1) / theta) + log_rest / theta - log(theta);
+    struct power_sums *sums;
+    status s = power_sums_of(1 / theta, (theta - 1) / theta, 0, -HUGE_VAL, highest, p, &sums);
+    *prepared = sums;
+    return s;
 }
 
-static const struct generator generator = { log_inverse, log_derivative, true };
+static double log_derivative(void *prepared, size_t order, double log_t, double theta)
+{
+    return log_power_sum(prepared, order, log_t) - log(theta);
+}
+
+static const struct generator generator = { log_inverse, prepare, log_derivative,
+                                            power_sum_seconds };
 
 const family joe_family = {
     .word = "joe",
