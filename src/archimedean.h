@@ -13,10 +13,14 @@ struct generator {
     /* log of psi^-1(u), -infinity at u = 1 */
     double (*log_inverse)(double u, double theta);
 
+    /* log of psi^-1(1 - u), as good for small u, infinity at u = 1 */
+    double (*log_inverse_turned)(double u, double theta);
+
     /* log of |psi^(order)|, order >= 1, at exp(log_t) */
     double (*log_derivative)(size_t order, double log_t, double theta);
 
     bool by_sums;             /* each derivative costs its order squared: see evaluation_limit() */
+    struct turned_pair turned;
 };
 
 /* Works for every row with a generator and a psi. */

@@ -158,6 +158,14 @@ static double log_inverse(double u, double theta)
     return log(log_q < -0.7 ? -log1p(-exp(log_q)) : -log(one_minus / -expm1(-a)));
 }
 
+/* At 1 - u it is q = (exp(theta u) - 1) / (exp(theta) - 1), at most 1/2 for u below it. */
+static double log_inverse_turned(double u, double theta)
+{
+    if (u >= 0.5) return log_inverse(1 - u, theta);
+    double a = positive(theta), log_q = log(expm1(-a * u) / expm1(-a)) - a * (1 - u);
+    return log_q < -40 ? log_q : log(-log1p(-exp(log_q)));
+}
+
 /* With w = z/(1-z) it is 1/theta times a polynomial in w. */
 static double log_derivative(size_t order, double log_t, double theta)
 {
@@ -203,9 +211,22 @@ static double pair_quantile(double u, double w, double theta)
     return portable_log1pexp(log(w) + log_e(1, s) - bottom) / s;
 }
 
-static const struct generator generator = { log_inverse, log_derivative, true };
+/* With (U, V) from theta (1-U, V) is from -theta, and (1-U, 1-V) again from theta. */
+static double cdf(double u, double v, double theta)
+{
+    return theta < 0 ? pair_cdf(u, v, theta)
+                     : psi(log_added(log_inverse(u, theta), log_inverse(v, theta)), theta);
+}
+
+static double one_turned(double u, double v, double theta)
+{
+    return theta < 0 ? cdf(u, v, -theta) : pair_cdf(u, v, -positive(theta));
+}
+
+static const struct generator generator = { log_inverse, log_inverse_turned, log_derivative, true,
+                                            { one_turned, cdf } };
 static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
-                                            pair_quantile };
+                                            pair_quantile, { one_turned, cdf } };
 
 /* The draw for -theta with its second column turned round. */
 static status draw_negative(const copula *c, const struct draw_rows *where, pool *p)
