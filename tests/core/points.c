@@ -218,8 +218,9 @@ static void every_take_can_fail(void **state)
     for (int k = 0; k < 12; k++)
         for (size_t fail_at = 1;; fail_at++) {
             struct call c = { 0 };
-            value m = k < 4 ? model(&c, "gumbel", 2, 0, 180, 3) : k < 8 ? model(&c, "t", 0.5, 4, 0, 3)
-                                                             : model(&c, "amh", 0.5, 0, 90, 2);
+            value m = k < 4 ? model(&c, "gumbel", 2, 0, 180, 3)
+                    : k < 8 ? model(&c, "t", 0.5, 4, 0, 3)
+                            : model(&c, "amh", 0.5, 0, 90, 2);
             value points = cells(&c.pool, k < 8 ? "a,b,c;0.5,0.2,0.3" : "a,b;0.5,0.2");
             c.pool.fail_at = c.pool.taken + fail_at;
             call(&c, names[k % 4], 2, (value[]){ m, points });
