@@ -13,6 +13,9 @@ struct generator {
     /* log of psi^-1(u), -infinity at u = 1 */
     double (*log_inverse)(double u, double theta);
 
+    /* log of psi^-1(1 - u), as good for small u, infinity at u = 1 */
+    double (*log_inverse_turned)(double u, double theta);
+
     /* What log_derivative() takes, for orders up to `highest`, from the pool; NO_MEMORY. */
     status (*prepare)(double theta, size_t highest, pool *p, void **prepared);
 
@@ -21,6 +24,8 @@ struct generator {
 
     /* About how long that takes; `next`: where the order before was asked at the same t. */
     double (*derivative_seconds)(size_t order, bool next);
+
+    struct turned_pair turned;  /* of a pair, theta in the range beyond pairs */
 };
 
 /* Works for every row with a generator and a psi. */

@@ -3,9 +3,9 @@
  * Method
  *   Genz (1992): with X = L Y the probability is an integral over the unit cube, column by column
  *   of the conditional probability given those drawn before; for t one more coordinate drives the
- *   chi-squares (Genz & Bretz 2002). Scrambled Sobol' points under eight seeds: the mean, and its
- *   standard error from how the eight differ. The seeds are fixed, so that the same question has
- *   the same answer.
+ *   chi-squares (Genz & Bretz 2002). Scrambled Sobol' points under eight seeds, in the columns
+ *   beyond IN_SOBOL random numbers under the same: the mean, and its standard error from how the
+ *   eight differ. The seeds are fixed, so that the same question has the same answer.
  *
  * Special cases
  *   Where a pivot is zero the column is decided by those before it.
@@ -16,20 +16,20 @@
 
 #include <math.h>
 
-enum { SEEDS = 8, MOST_ROWS = 4096, FEWEST_ROWS = 64 };
+enum { SEEDS = 8, MOST_ROWS = 4096, FEWEST_ROWS = 64, IN_SOBOL = 128 };
 
 /* What every question shares. */
 struct box_points {
     struct sobol under[SEEDS];
     size_t rows;                              /* under each seed */
-    double (*u)[ROWS_AT_ONCE];
+    double (*u)[ROWS_AT_ONCE];                /* by column, that of the chi-squares last */
+    double *scale, *y;                        /* of the columns at one point */
 };
 
 struct box {
     const struct elliptical_points *m;
     const double *x;
-    double scale[MOST_IN_BOX], y[MOST_IN_BOX];
-    double (*u)[ROWS_AT_ONCE];
+    double *scale, *y, (*u)[ROWS_AT_ONCE];
 };
 
 status elliptical_box_prepare(struct elliptical_points *m, pool *p)
@@ -38,9 +38,12 @@ status elliptical_box_prepare(struct elliptical_points *m, pool *p)
     if (!box) return NO_MEMORY;
     box->rows = MOST_ROWS;
     box->u = pool_take(p, m->d, sizeof *box->u);
-    status s = box->u ? OK : NO_MEMORY;
+    box->scale = pool_take(p, m->d, sizeof *box->scale);
+    box->y = pool_take(p, m->d, sizeof *box->y);
+    status s = box->u && box->scale && box->y ? OK : NO_MEMORY;
+    size_t in_sobol = m->d < IN_SOBOL ? m->d : IN_SOBOL;
     for (int k = 0; s == OK && k < SEEDS; k++)
-        s = sobol_prepare(&box->under[k], m->d, (uint64_t)k, p);
+        s = sobol_prepare(&box->under[k], in_sobol, (uint64_t)k, p);
     return s;
 }
 
@@ -87,12 +90,25 @@ static double at_point(struct box *b, size_t row)
     return product;
 }
 
-static double mean_under_seed(struct box *b, const struct sobol *points)
+/* The last of Sobol's dimensions is that of the chi-squares, which matter to every column. */
+static void take_points(const struct box *b, size_t seed, size_t first)
+{
+    const struct sobol *points = &b->m->box->under[seed];
+    size_t last = points->dimensions - 1, random = b->m->d - points->dimensions;
+    double unused[ROWS_AT_ONCE];
+    for (size_t j = 0; j < last; j++) sobol_of_rows(points, j, first, b->u[j]);
+    sobol_of_rows(points, last, first, b->u[b->m->d - 1]);
+    for (size_t j = 0; j < random; j += 2)
+        uniforms_of_rows(seed, FOR_BOX, first, (uint32_t)(j / 2), b->u[last + j],
+                         j + 1 < random ? b->u[last + j + 1] : unused);
+}
+
+static double mean_under_seed(struct box *b, size_t seed)
 {
     double sum = 0;
     size_t rows = b->m->box->rows;
     for (size_t first = 0; first < rows; first += ROWS_AT_ONCE) {
-        for (size_t j = 0; j < points->dimensions; j++) sobol_of_rows(points, j, first, b->u[j]);
+        take_points(b, seed, first);
         for (size_t i = 0; i < ROWS_AT_ONCE && first + i < rows; i++) sum += at_point(b, i);
     }
     return sum / (double)rows;
@@ -102,11 +118,11 @@ status elliptical_box(const struct elliptical_points *m, const double *x, double
                       double *error)
 {
     if (!m->box) return OUT_OF_DOMAIN;
-    struct box b = { .m = m, .x = x, .u = m->box->u };
+    struct box b = { m, x, m->box->scale, m->box->y, m->box->u };
     double mean[SEEDS], sum = 0, squares = 0;
-    for (int k = 0; k < SEEDS; k++) sum += mean[k] = mean_under_seed(&b, &m->box->under[k]);
+    for (size_t k = 0; k < SEEDS; k++) sum += mean[k] = mean_under_seed(&b, k);
     *value = sum / SEEDS;
-    for (int k = 0; k < SEEDS; k++) squares += (mean[k] - *value) * (mean[k] - *value);
+    for (size_t k = 0; k < SEEDS; k++) squares += (mean[k] - *value) * (mean[k] - *value);
     *error = sqrt(squares / (SEEDS * (SEEDS - 1)));
     return OK;
 }

@@ -68,7 +68,7 @@ static status prepare(struct evaluation *e, pool *p)
     m->singular = factor_is_singular(m->factor, d);
     if (!m->singular) set_constant(m);
     e->prepared = m;
-    if (d > 2 && d <= MOST_IN_BOX) s = elliptical_box_prepare(m, p);
+    if (d > 2) s = elliptical_box_prepare(m, p);
     if (s != OK) return s;
     if (m->grouped) return grouped_prepare(m, p);
     if (!m->df) return OK;
@@ -260,8 +260,6 @@ static const char *limit(const struct evaluation *e, enum question q)
     if (q == ASK_CDF && m->grouped && m->d == 2 && m->singular)
         return "has several degrees of freedom and a correlation of 1 or -1: the distribution "
                "function of such a pair has no integral that settles";
-    if (q == ASK_CDF && m->d > MOST_IN_BOX)
-        return "has too many columns: its distribution function can have at most 128";
     if ((q == ASK_DENSITY || q == ASK_CONDITIONAL) && m->singular)
         return "has a singular matrix: it has no density and some columns no conditional "
                "distribution";

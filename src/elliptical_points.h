@@ -8,8 +8,6 @@
 /* Both take the rotation in, by the signs of correlations. */
 extern const struct evaluator gaussian_evaluator, t_evaluator;
 
-enum { MOST_IN_BOX = 128 };      /* columns of elliptical_box() */
-
 /* What they keep. */
 struct elliptical_points {
     size_t d;
@@ -34,7 +32,7 @@ double student_pair_probability(double a, double b, double correlation, double d
 
 /* ---- elliptical_box.c ---- */
 
-/* Makes the points of elliptical_box(), 2 < d <= MOST_IN_BOX. NO_MEMORY. */
+/* Makes the points of elliptical_box(), d > 2. NO_MEMORY. */
 status elliptical_box_prepare(struct elliptical_points *m, pool *p);
 
 /* How many a probability takes, 32,768 at first; half as many from now on, if there are more than

@@ -1,8 +1,9 @@
 /* evaluate.h - what a copula says at points: probability, density, conditional distributions.
  *
  * A point is `dimension` numbers, all strictly between 0 and 1 unless it says otherwise; everything
- * is about the rotated copula. A point is turned by 1 - u, kept at or below 1 - 2^-53, so that what
- * is said near 0 of a column that a rotation turns is good to about 1e-16 / u relative.
+ * is about the rotated copula. For densities and conditional distributions a point is turned by
+ * 1 - u, kept at or below 1 - 2^-53, so that near 0 of a column that a rotation turns they are good
+ * to about 1e-16 / u relative.
  */
 #ifndef EVALUATE_H
 #define EVALUATE_H
@@ -19,6 +20,7 @@ struct evaluation {
     int rotation;             /* what the evaluator did not take in */
     void *prepared;           /* the evaluator's own */
     double *turned, *room;    /* dimension and 4 x dimension numbers */
+    struct frailty_mean *mean;          /* where that is not 0, beyond pairs */
 };
 
 /* The kinds of copula; each for the unrotated one unless it takes the rotation in. */
@@ -35,12 +37,20 @@ struct evaluator {
 
 extern const struct evaluator independent_evaluator, pair_evaluator;
 
+/* Probabilities of a rotated pair, 0 < u, v < 1, by forms in which nothing cancels. All families
+ * with a rotation here are exchangeable, so that 270 is 90 of exchanged columns. */
+struct turned_pair {
+    double (*one)(double u, double v, double theta);                  /* rotation 90 */
+    double (*both)(double u, double v, double theta);                 /* 180 */
+};
+
 /* A pair without rotation, 0 < u, v < 1, theta in the family's range. */
 struct pair_functions {
     double (*cdf)(double u, double v, double theta);
     double (*log_density)(double u, double v, double theta);          /* -infinity where it is 0 */
     double (*conditional)(double u, double v, double theta);          /* P(V <= v | U = u) */
     double (*conditional_quantile)(double u, double w, double theta); /* v at which that is w */
+    struct turned_pair turned;
 };
 
 /* From the pool, which must stay until the last question. NO_MEMORY; OUT_OF_DOMAIN when a matrix is
@@ -52,14 +62,13 @@ status evaluation_of(const copula *c, struct evaluation *e, pool *p);
 const char *evaluation_limit(const struct evaluation *e, enum question q);
 
 /* P(U_1 <= u_1, ..., U_d <= u_d), 0 and 1 allowed. *error is 0, or the standard error of a value by
- * quasi-Monte Carlo, or a bound on what cancellation may have left. Pairs to 1e-10 relative, those
- * of a grouped t to 1e-10, rotated ones to *error, at most 4e-16, where that is more. OUT_OF_DOMAIN
- * as evaluation_limit() says, and for a grouped t pair within 1e-13 of 0 or 1; NOT_SETTLED where
- * beyond pairs a rotation leaves less than three digits. */
+ * quasi-Monte Carlo; what is not by that to 1e-10 relative, in the tails and rotated too, pairs of
+ * a grouped t to 1e-10. OUT_OF_DOMAIN as evaluation_limit() says, and for a grouped t pair within
+ * 1e-13 of 0 or 1. */
 status cdf_at(const struct evaluation *e, const double *u, double *value, double *error);
 
-/* The same of a pair, 0 < u < 1, to 1e-15 absolute: much faster where a rotation makes it
- * cancel. */
+/* The same of a pair, 0 < u < 1, to 1e-15 absolute: without the integral that rotation 180 may
+ * take. */
 status pair_cdf_roughly_at(const struct evaluation *e, const double *u, double *value);
 
 /* The log of the density, -infinity where that is 0. OUT_OF_DOMAIN where there is none: a singular

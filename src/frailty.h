@@ -9,6 +9,7 @@
 #ifndef FRAILTY_H
 #define FRAILTY_H
 
+#include "frailty_mean.h"
 #include "random.h"
 #include "student.h"
 
@@ -32,6 +33,8 @@ struct frailty {
 
     /* log t of ROWS_AT_ONCE rows becomes psi(t), see laplace.h */
     void (*transforms)(double *restrict log_t, double theta);
+
+    log_mean_of_product *log_mean;
 };
 
 /* clayton, theta > 0: gamma with shape 1/theta and scale 1, by inversion */

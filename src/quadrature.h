@@ -21,6 +21,11 @@ double integral_of(double (*f)(double x, const void *with), const void *with, do
 double adapted_integral(double (*f)(double x, const void *with), const void *with, double from,
                         double to, double enough, double *error);
 
+/* The integral from 0 to `end`, to 1e-12 of itself, of a positive bounded f that may behave like a
+ * power or a logarithm of x at 0 and change within some `bend` of the end. */
+double integral_to_bend(double (*f)(double x, const void *with), const void *with, double end,
+                        double bend);
+
 /* The integral of a positive f from `from` to infinity (length > 0) or minus infinity (length < 0),
  * over panels the first of which has this length and each next twice that of the one before, until
  * one adds nothing. f must not rise again once it has fallen to nothing. */

@@ -21,7 +21,8 @@ enum purpose {
     FOR_REORDER = 4,
     FOR_REPLICATES = 5,      /* seeds of whole replicated draws */
     FOR_SCRAMBLING = 6,
-    FOR_STRATA = 7           /* places within the strata of a latin hypercube */
+    FOR_STRATA = 7,          /* places within the strata of a latin hypercube */
+    FOR_BOX = 8              /* probabilities in more columns than Sobol' points have */
 };
 
 /* The numbers of one row. */

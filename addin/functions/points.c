@@ -158,11 +158,9 @@ static status cell_cdf(const argument *in, value *out, report *r)
     struct evaluation e;
     struct way way = { row_cdf, cdf_seconds_at };
     status s = ask_all(in, ASK_CDF, 1, way, &a, &e, r);
-    if (s == OK && a.error > 0 && e.rotation == 0)
+    if (s == OK && a.error > 0)
         remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %g",
                box_points(&e), a.error);
-    if (s == OK && a.error > 0 && e.rotation != 0)
-        remark(r, "rounding may have cost up to %g", a.error);
     return s == OK ? one_column(in, &a, "cdf", out, r) : s;
 }
 
@@ -254,19 +252,16 @@ const function points_functions[] = {
         .help = "The probability that all lines are at most what a row of points says.",
         .detail =
             "Pairs to 1e-10 relative, in the tails too: for gaussian and t the integral of a "
-            "conditional probability, which is positive, and likewise where a rotation would make "
-            "numbers cancel; a pair of a grouped t to 1e-10 absolute. A rotation asks the "
-            "unrotated copula at 1 - u, which ends at 1e-16: near u = 0 no more than about "
-            "1e-16 / u relative is left. Where that is worse than 1e-10, WHY states by how much, "
-            "which is never above 4e-16. gaussian and t beyond pairs by quasi-Monte Carlo (Genz "
-            "1992; Genz & Bretz 2002) with 32,768 points, fewer for many rows, for up to 128 "
-            "columns; WHY states the standard error. Archimedean families in any dimension by "
-            "their generator, rotated by 180 beyond pairs as a sum over all subsets of columns, "
-            "for up to 16; WHY states what rounding may have cost, and where that is above a "
-            "thousandth of the answer the cell is Err:523. A row with a gap gives an empty "
-            "cell; points with a header give a column with the header cdf. A probability that all "
-            "columns are above a point is that of the model with "
-            "rotation 180 at 1 - u.",
+            "conditional probability, which is positive, and rotated ones of all families by forms "
+            "in which nothing cancels; a pair of a grouped t to 1e-10 absolute. gaussian and t "
+            "beyond pairs by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with 32,768 points, "
+            "fewer for many rows, of which columns beyond the 128th are random numbers; WHY states "
+            "the standard error. Archimedean families in any dimension by their generator, rotated "
+            "by 180 as the mean over their frailty (Marshall & Olkin 1988) of the product of what "
+            "the columns then do by themselves, to 1e-10 relative too. A row with a gap gives an "
+            "empty cell; points with a header give a column with the header cdf. The probability "
+            "that all columns are above a point is that of the model with rotation 180 at 1 - u; "
+            "give that as it is, 1e-20 where u is 1 - 1e-20.",
         .examples = {
             { "CDF(MODEL(\"gaussian\";0.5);{0.5;0.5})", "0.333333333333333" },
             { "CDF(MODEL(\"clayton\";1);{0.5;0.5|0.2;0.9})", "0.333333333333333" },

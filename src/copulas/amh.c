@@ -146,7 +146,29 @@ static status draw_amh(const copula *c, const struct draw_rows *where, pool *p)
     return draw_by_conditional(c, where, conditional_quantile);
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile };
+/* 1 - theta x, for theta > 0 from its positive parts */
+static double one_minus(double theta, double x, double one_minus_x)
+{
+    return theta > 0 ? (1 - theta) + theta * one_minus_x : 1 - theta * x;
+}
+
+/* v - C(1-u, v) */
+static double one_turned(double u, double v, double theta)
+{
+    double top = one_minus(theta, 1 - v, v);
+    return u * (top / one_minus(theta, u * (1 - v), (1 - u) + u * v)) * v;
+}
+
+/* u + v - 1 + C(1-u, 1-v) */
+static double both_turned(double u, double v, double theta)
+{
+    double top = theta > 0 ? (1 - theta) + theta * ((1 - u) + (1 - v))
+                           : (1 + theta) - theta * (u + v);
+    return u * (top / one_minus(theta, u * v, (1 - u) + u * (1 - v))) * v;
+}
+
+static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile,
+                                            { one_turned, both_turned } };
 
 const family amh_family = {
     .word = "amh",

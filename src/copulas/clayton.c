@@ -22,6 +22,7 @@
 #include "../archimedean.h"
 #include "../elementary.h"
 #include "../frailty.h"
+#include "../quadrature.h"
 #include "../slow_series.h"
 #include "../strong_rho.h"
 
@@ -115,11 +116,28 @@ static double positive(double theta)
     return fmax(theta, 1e-20);               /* which nothing can tell from independence */
 }
 
+/* log(exp(x) - 1) */
+static double log_expm1(double x)
+{
+    return x > 1 ? x + log1p(-exp(-x)) : log(expm1(x));
+}
+
 /* log(u^-theta - 1) */
 static double log_inverse(double u, double theta)
 {
-    double x = -positive(theta) * log(u);
-    return x > 1 ? x + log1p(-exp(-x)) : log(expm1(x));
+    return log_expm1(-positive(theta) * log(u));
+}
+
+static double log_inverse_turned(double u, double theta)
+{
+    return log_expm1(-positive(theta) * log1p(-u));
+}
+
+/* v - C(1-u, v) = v (1 - (1 + v^theta t)^(-1/theta)), t = (1-u)^-theta - 1 */
+static double one_turned(double u, double v, double theta)
+{
+    double a = positive(theta), log_r = a * log(v) + log_inverse_turned(u, a);
+    return -v * expm1(-portable_log1pexp(log_r) / a);
 }
 
 /* For each order the log of 1 (1 + theta) ... (1 + (order-1) theta) / theta^order. */
@@ -180,10 +198,61 @@ static double derivative_seconds(size_t order, bool next)
     return 4e-8;
 }
 
-static const struct generator generator = { log_inverse, prepare, log_derivative,
-                                            derivative_seconds };
+/* -theta in [1e-20;1] of a pair */
+static double negated(double theta)
+{
+    return fmax(-theta, 1e-20);
+}
+
+/* The same for negative theta: 1 + r is 1 - (1 - (1-u)^a) / v^a, 0 where nothing lies. */
+static double pair_one_turned(double u, double v, double theta)
+{
+    double a = negated(theta), r = expm1(a * log1p(-u)) * exp(-a * log(v));
+    return r > -1 ? -v * expm1(log1p(r) / a) : v;
+}
+
+struct given {
+    double theta, log_t, t;                  /* t of the other column, its logarithm if theta > 0 */
+};
+
+/* The probability that the other column is above its point, given that this one is lost below 1. */
+static double above_given(double lost, const void *with)
+{
+    const struct given *k = with;
+    double theta = k->theta, x = theta * log1p(-lost);
+    double log_rise = theta > 0 ? portable_log1pexp(k->log_t + x) : log1p(k->t * exp(x));
+    return -expm1(-(1 + 1 / theta) * log_rise);
+}
+
+/* u + v - 1 + C(1-u, 1-v), theta > 0 */
+static double both_turned(double u, double v, double theta)
+{
+    double a = positive(theta);
+    struct given k = { .theta = a, .log_t = log_inverse_turned(fmax(u, v), a) };
+    double small = fmin(u, v);
+    return integral_to_bend(above_given, &k, small, (1 - small) / a);
+}
+
+/* The same for negative theta. */
+static double pair_both_turned(double u, double v, double theta)
+{
+    double a = negated(theta), small = fmin(u, v), large = fmax(u, v);
+    struct given k = { .theta = -a, .t = expm1(a * log1p(-large)) };
+    if (k.t + expm1(a * log1p(-small)) <= -1) return fmax(0, large - (1 - small));
+    return integral_to_bend(above_given, &k, small, small);
+}
+
+static const struct generator generator = {
+    .log_inverse = log_inverse,
+    .log_inverse_turned = log_inverse_turned,
+    .prepare = prepare,
+    .log_derivative = log_derivative,
+    .derivative_seconds = derivative_seconds,
+    .turned = { one_turned, both_turned },
+};
+
 static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
-                                            pair_quantile };
+                                            pair_quantile, { pair_one_turned, pair_both_turned } };
 
 /* Below 1e-20 no draw can be told from independence. */
 static status draw_clayton(const copula *c, const struct draw_rows *where, pool *p)

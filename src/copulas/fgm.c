@@ -84,7 +84,14 @@ static status draw_fgm(const copula *c, const struct draw_rows *where, pool *p)
     return draw_by_conditional(c, where, conditional_quantile);
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile };
+/* With (U, V) from theta (1-U, V) is from -theta. */
+static double one_turned(double u, double v, double theta)
+{
+    return cdf(u, v, -theta);
+}
+
+static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile,
+                                            { one_turned, cdf } };
 
 const family fgm_family = {
     .word = "fgm",

@@ -159,6 +159,14 @@ static double log_inverse(double u, double theta)
     return log(log_q < -0.7 ? -log1p(-exp(log_q)) : -log(one_minus / -expm1(-a)));
 }
 
+/* At 1 - u it is q = (exp(theta u) - 1) / (exp(theta) - 1), at most 1/2 for u below it. */
+static double log_inverse_turned(double u, double theta)
+{
+    if (u >= 0.5) return log_inverse(1 - u, theta);
+    double a = positive(theta), log_q = log(expm1(-a * u) / expm1(-a)) - a * (1 - u);
+    return log_q < -40 ? log_q : log(-log1p(-exp(log_q)));
+}
+
 /* -log z is t and -log(1 - exp(-theta)), which is exp(-theta) where that is small. */
 static status prepare(double theta, size_t highest, pool *p, void **prepared)
 {
@@ -212,10 +220,29 @@ static double pair_quantile(double u, double w, double theta)
     return portable_log1pexp(log(w) + log_e(1, s) - bottom) / s;
 }
 
-static const struct generator generator = { log_inverse, prepare, log_derivative,
-                                            power_sum_seconds };
+/* With (U, V) from theta (1-U, V) is from -theta, and (1-U, 1-V) again from theta. */
+static double cdf(double u, double v, double theta)
+{
+    return theta < 0 ? pair_cdf(u, v, theta)
+                     : psi(log_added(log_inverse(u, theta), log_inverse(v, theta)), theta);
+}
+
+static double one_turned(double u, double v, double theta)
+{
+    return theta < 0 ? cdf(u, v, -theta) : pair_cdf(u, v, -positive(theta));
+}
+
+static const struct generator generator = {
+    .log_inverse = log_inverse,
+    .log_inverse_turned = log_inverse_turned,
+    .prepare = prepare,
+    .log_derivative = log_derivative,
+    .derivative_seconds = power_sum_seconds,
+    .turned = { one_turned, cdf },
+};
+
 static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
-                                            pair_quantile };
+                                            pair_quantile, { one_turned, cdf } };
 
 /* The draw for -theta with its second column turned round. */
 static status draw_negative(const copula *c, const struct draw_rows *where, pool *p)

@@ -79,6 +79,40 @@ static double log_inverse(double u, double theta)
     return theta * log(-log(u));
 }
 
+static double log_inverse_turned(double u, double theta)
+{
+    return theta * log(-log1p(-u));
+}
+
+/* v - C(1-u, v) = v (1 - exp(y - (x^theta + y^theta)^(1/theta))) with x = -log(1-u), y = -log v */
+static double one_turned(double u, double v, double theta)
+{
+    double y = -log(v), log_ratio = theta * log(-log1p(-u) / y);
+    return -v * expm1(-y * expm1(portable_log1pexp(log_ratio) / theta));
+}
+
+struct given {
+    double theta, y;                         /* -log of the other column */
+};
+
+/* The probability that the other column is above its point, given that this one is lost below 1:
+ * 1 - exp(x - z) (z/x)^(1-theta) with x = -log(1 - lost), z = (x^theta + y^theta)^(1/theta). */
+static double above_given(double lost, const void *with)
+{
+    const struct given *k = with;
+    double x = -log1p(-lost), theta = k->theta;
+    double log_rise = portable_log1pexp(theta * log(k->y / x)) / theta;
+    return -expm1(-x * expm1(log_rise) - (theta - 1) * log_rise);
+}
+
+/* u + v - 1 + C(1-u, 1-v) */
+static double both_turned(double u, double v, double theta)
+{
+    struct given k = { theta, -log1p(-fmax(u, v)) };
+    double small = fmin(u, v);
+    return integral_to_bend(above_given, &k, small, small / theta);
+}
+
 static status prepare(double theta, size_t highest, pool *p, void **prepared)
 {
     struct stable_sums *sums;
@@ -94,8 +128,14 @@ static double log_derivative(void *prepared, size_t order, double log_t, double 
     return log_stable_sum(prepared, order, log_x) - exp(log_x) - (double)order * log_t;
 }
 
-static const struct generator generator = { log_inverse, prepare, log_derivative,
-                                            stable_sum_seconds };
+static const struct generator generator = {
+    .log_inverse = log_inverse,
+    .log_inverse_turned = log_inverse_turned,
+    .prepare = prepare,
+    .log_derivative = log_derivative,
+    .derivative_seconds = stable_sum_seconds,
+    .turned = { one_turned, both_turned },
+};
 
 const family gumbel_family = {
     .word = "gumbel",

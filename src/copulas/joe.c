@@ -25,6 +25,7 @@
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../power_sums.h"
+#include "../quadrature.h"
 #include "../root.h"
 #include "../slow_series.h"
 #include "../strong_rho.h"
@@ -160,12 +161,53 @@ static double psi(double log_t, double theta)
     return -portable_expm1(log_rest / theta);
 }
 
+/* log of -log(1 - exp(log_rest)) */
+static double log_of_rest(double log_rest)
+{
+    if (log_rest < -40) return log_rest;
+    return log(log_rest < -0.7 ? -log1p(-exp(log_rest)) : -log(-expm1(log_rest)));
+}
+
 /* t = -log(1 - (1-u)^theta) */
 static double log_inverse(double u, double theta)
 {
-    double log_rest = theta * log1p(-u);
-    if (log_rest < -40) return log_rest;
-    return log(log_rest < -0.7 ? -log1p(-exp(log_rest)) : -log(-expm1(log_rest)));
+    return log_of_rest(theta * log1p(-u));
+}
+
+static double log_inverse_turned(double u, double theta)
+{
+    return log_of_rest(theta * log(u));
+}
+
+/* v - C(1-u, v) = (1-v) ((1 + r)^(1/theta) - 1), r = (u/(1-v))^theta (1 - (1-v)^theta) */
+static double one_turned(double u, double v, double theta)
+{
+    double log_beside = log1p(-v);
+    double log_r = theta * (log(u) - log_beside) + portable_log1mexp(theta * log_beside);
+    return (1 - v) * expm1(portable_log1pexp(log_r) / theta);
+}
+
+struct given {
+    double theta, log_v, log_rest;           /* 1 - v is the other column; log(1 - v^theta) */
+};
+
+/* The probability that the other column is above its point, given that this one is lost below 1:
+ * 1 - (1 - v^theta) (1 + r)^(1/theta - 1), r = (v/lost)^theta (1 - lost^theta). */
+static double above_given(double lost, const void *with)
+{
+    const struct given *k = with;
+    double log_lost = log(lost), theta = k->theta;
+    double log_r = theta * (k->log_v - log_lost) + portable_log1mexp(theta * log_lost);
+    return -expm1(k->log_rest - (theta - 1) / theta * portable_log1pexp(log_r));
+}
+
+/* u + v - 1 + C(1-u, 1-v) */
+static double both_turned(double u, double v, double theta)
+{
+    double log_v = log(fmax(u, v));
+    struct given k = { theta, log_v, portable_log1mexp(theta * log_v) };
+    double small = fmin(u, v);
+    return integral_to_bend(above_given, &k, small, small / theta);
 }
 
 static status prepare(double theta, size_t highest, pool *p, void **prepared)
@@ -181,8 +223,14 @@ static double log_derivative(void *prepared, size_t order, double log_t, double 
     return log_power_sum(prepared, order, log_t) - log(theta);
 }
 
-static const struct generator generator = { log_inverse, prepare, log_derivative,
-                                            power_sum_seconds };
+static const struct generator generator = {
+    .log_inverse = log_inverse,
+    .log_inverse_turned = log_inverse_turned,
+    .prepare = prepare,
+    .log_derivative = log_derivative,
+    .derivative_seconds = power_sum_seconds,
+    .turned = { one_turned, both_turned },
+};
 
 const family joe_family = {
     .word = "joe",

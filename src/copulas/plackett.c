@@ -218,7 +218,14 @@ static status draw_plackett(const copula *c, const struct draw_rows *where, pool
     return draw_by_conditional(c, where, conditional_quantile);
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile };
+/* With (U, V) from theta (1-U, V) is from 1/theta. */
+static double one_turned(double u, double v, double theta)
+{
+    return cdf(u, v, 1 / held(theta));
+}
+
+static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile,
+                                            { one_turned, cdf } };
 
 const family plackett_family = {
     .word = "plackett",

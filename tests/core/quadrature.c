@@ -55,6 +55,47 @@ static void narrow_bends(void **state)
     assert_true(error > fabs(sum - 1) && error < 1e-5);
 }
 
+static double small_power(double x, const void *with)
+{
+    const double *p = with;
+    return pow(x, *p);
+}
+
+static double rise(double x, const void *with)
+{
+    (void)with;
+    return 1 - log(x);
+}
+
+/* end^(p + 1)/(p + 1), down to all but a step at 0; 2 end - end log(end) */
+static void powers_at_zero(void **state)
+{
+    (void)state;
+    for (double end = 1; end > 1e-300; end *= 1e-23) {
+        for (double p = 1e-12; p < 3; p *= 2) {
+            double want = pow(end, p + 1) / (p + 1);
+            if (want > 1e-290)
+                assert_close(integral_to_bend(small_power, &p, end, end), want, 1e-12);
+        }
+        assert_close(integral_to_bend(rise, NULL, end, end), end * (2 - log(end)), 1e-12);
+    }
+}
+
+static double falling(double x, const void *with)
+{
+    const double *width = with;
+    return -expm1((x - 1) / *width);
+}
+
+/* 1 less the width, however narrow */
+static void bends_at_the_end(void **state)
+{
+    (void)state;
+    for (double width = 1e-1; width > 1e-14; width /= 3)
+        assert_close(integral_to_bend(falling, &width, 1, width), 1 + width * expm1(-1 / width),
+                     1e-13);
+}
+
 static double power(double x, const void *with)
 {
     const double *p = with;
@@ -75,6 +116,8 @@ int main(void)
 {
     const struct CMUnitTest tests[] = { cmocka_unit_test(powers), cmocka_unit_test(points),
                                         cmocka_unit_test(narrow_bends),
+                                        cmocka_unit_test(powers_at_zero),
+                                        cmocka_unit_test(bends_at_the_end),
                                         cmocka_unit_test(to_infinity) };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

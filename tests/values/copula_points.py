@@ -1,14 +1,18 @@
 #!/usr/bin/python3
-"""Writes student_tail.csv, student_pair.csv, archimedean_points.csv and rotated_cdf.csv with mpmath: probabilities of Student's t by
-integrals of its density, those of a t pair by the arcsine-angle integral (in the correlation from -1 on), Archimedean
-copulas by Taylor coefficients of their generators at 400 digits, rotated pairs by the definitions of the families and
-of the rotations at 400 digits, at the doubles nearest to u and v."""
+"""Writes student_tail.csv, student_pair.csv, archimedean_points.csv, rotated_cdf.csv and survival_cdf.csv with mpmath:
+probabilities of Student's t by integrals of its density, those of a t pair by the arcsine-angle integral (in the
+correlation from -1 on), Archimedean copulas by Taylor coefficients of their generators at 400 digits, rotated pairs by
+the definitions of the families and of the rotations at 800 digits, at the doubles nearest to u and v; survival_cdf.csv,
+rotation 180 in any dimension, by inclusion and exclusion with as many digits as make it agree with itself at twice as
+many. equicorrelated.csv, normal and t copulas in many dimensions, with SciPy: an integral over what columns share."""
 import csv
 import os
 import sys
 
-from mpmath import mp, mpf, asinh, asin, betainc, cos, exp, expm1, factorial, log, log1p, pi, quad, sin, sqrt, taylor, \
-    loggamma, cosh, inf, nstr
+import numpy
+from mpmath import mp, mpf, asinh, asin, betainc, binomial, cos, exp, expm1, factorial, log, log1p, pi, quad, sin, \
+    sqrt, taylor, loggamma, cosh, inf, nstr
+from scipy import special, stats
 
 HERE = os.path.dirname(os.path.abspath(__file__))
 
@@ -72,7 +76,7 @@ GENERATORS = {
     'clayton': (lambda t, a: (1 + t) ** (-1 / a), lambda u, a: u ** -a - 1),
     'gumbel': (lambda t, a: exp(-t ** (1 / a)), lambda u, a: (-log(u)) ** a),
     'frank': (lambda t, a: -log1p(expm1(-a) * exp(-t)) / a, lambda u, a: -log(expm1(-a * u) / expm1(-a))),
-    'joe': (lambda t, a: 1 - (1 - exp(-t)) ** (1 / a), lambda u, a: -log(1 - (1 - u) ** a)),
+    'joe': (lambda t, a: 1 - (-expm1(-t)) ** (1 / a), lambda u, a: -log1p(-(1 - u) ** a)),
 }
 
 POINTS = ['0.2 0.7 0.9', '0.01 0.02 0.99', '0.5 0.5 0.5 0.5 0.5', '1e-12 0.3 0.6', '0.0001 0.0002 0.0003',
@@ -121,8 +125,10 @@ PAIRS = {
     'fgm': lambda u, v, a: u * v * (1 + a * (1 - u) * (1 - v)),
 }
 
-ROTATED = [('clayton', '1'), ('clayton', '1000'), ('clayton', '-0.9'), ('gumbel', '1.5'), ('gumbel', '2'),
-           ('gumbel', '5'), ('frank', '20'), ('frank', '-5'), ('joe', '2'), ('joe', '5'), ('amh', '0.9'),
+ROTATED = [('clayton', '1'), ('clayton', '1000'), ('clayton', '-0.9'), ('clayton', '-0.999'), ('clayton', '-1e-6'),
+           ('clayton', '0.01'), ('gumbel', '1.0001'), ('gumbel', '1.5'), ('gumbel', '2'),
+           ('gumbel', '5'), ('frank', '20'), ('frank', '-5'), ('frank', '-40'), ('joe', '1.001'), ('joe', '2'),
+           ('joe', '5'), ('amh', '0.9'),
            ('amh', '-1'), ('plackett', '1e4'), ('plackett', '1e-4'), ('fgm', '1'), ('fgm', '-0.8')]
 
 MORE = [('clayton', '1000', 90, '0.999999996', '0.00066'), ('clayton', '-0.9', 90, '0.384831', '0.000304478'),
@@ -134,8 +140,11 @@ MORE = [('clayton', '1000', 90, '0.999999996', '0.00066'), ('clayton', '-0.9', 9
         ('clayton', '19998', 90, '0.993249998355257', '0.006742191818910982')]
 
 
+SMALL = [('1e-8', '1e-9'), ('1e-12', '1e-12'), ('1e-130', '1e-140'), ('1e-250', '0.4'), ('0.02', '0.3')]
+
+
 def rotated(family, parameter, rotation, u, v):
-    mp.dps = 400
+    mp.dps = 800
     a, u, v, c = mpf(float(parameter)), mpf(float(u)), mpf(float(v)), PAIRS[family]
     return {90: lambda: v - c(1 - u, v, a), 180: lambda: u + v - 1 + c(1 - u, 1 - v, a),
             270: lambda: u - c(u, 1 - v, a)}[rotation]()
@@ -143,7 +152,7 @@ def rotated(family, parameter, rotation, u, v):
 
 def rotated_pairs():
     near_one, near_zero = ('0.99', '0.995', '0.999', '0.9999'), ('9e-4', '5e-4', '1e-5')
-    grid = [(u, v) for u in near_one for v in near_zero]
+    grid = [(u, v) for u in near_one for v in near_zero] + SMALL
     cases = [(f, a, rotation) + at for f, a in ROTATED for rotation in (90, 180, 270)
              for at in grid + [(v, u) for u, v in grid]]
     for case in cases + MORE:
@@ -152,8 +161,68 @@ def rotated_pairs():
         yield case + ('0', 'absolute 1e-290') if small else case + (nstr(value, 20), '1e-10 relative')
 
 
+SURVIVAL = [('clayton', ('1e-9', '0.0202', '0.857', '3', '18', '198', '10000')),
+            ('gumbel', ('1.000000001', '1.0101', '1.4286', '2.5', '10', '100', '10000')),
+            ('frank', ('1e-9', '0.09', '2.917', '7.93', '38.28', '398', '10000')),
+            ('joe', ('1.000000001', '1.0175', '1.77', '3.83', '18.7', '198', '10000'))]
+
+# one number and how often it stands, for each group of columns
+GROUPS = [[('1e-300', 1), ('0.5', 1)], [('1e-300', 2)], [('1e-12', 2)], [('0.02', 2)], [('1e-140', 1), ('1e-145', 1)],
+          [('1e-8', 1), ('1e-9', 1)],
+          [('0.01', 1), ('0.005', 1)], [('0.9999999999', 1), ('1e-10', 1)], [('0.3', 1), ('0.9999999999', 1)],
+          [('0.01', 3)], [('1e-20', 1), ('1e-6', 1), ('0.7', 1)], [('1e-90', 2), ('1e-80', 1)],
+          [(x, 1) for x in ('0.001', '0.002', '0.05', '0.4', '0.9999999999')], [('1e-50', 5)],
+          [(str(k / 20), 1) for k in range(1, 11)], [('0.01', 10)], [('1e-25', 4), ('1e-12', 4), ('0.25', 2)],
+          [('0.05', 20)], [('1e-10', 10), ('0.1', 10)], [('1e-4', 8), ('0.02', 6), ('0.999', 6)],
+          [('0.01', 40)], [('1e-5', 20), ('0.2', 20)], [('0.6', 39), ('1e-100', 1)]]
+
+
+def alternating(family, theta, groups, digits):
+    mp.dps = digits
+    psi, inverse = GENERATORS[family]
+    a = mpf(float(theta))
+    sums = [(mpf(0), 1)]                     # of t over a subset, and how many such subsets with their sign
+    for u, n in groups:
+        t = inverse(1 - mpf(float(u)), a)
+        sums = [(s + k * t, m * (-1) ** k * binomial(n, k)) for s, m in sums for k in range(n + 1)]
+    return mp.fsum(m * psi(s, a) for s, m in sums)
+
+
+def survival(family, theta, groups):
+    digits, before = 400, alternating(family, theta, groups, 200)
+    while True:
+        value = alternating(family, theta, groups, digits)
+        if abs(value - before) < max(abs(value) * mpf('1e-22'), mpf('1e-300')):
+            return value
+        digits, before = digits * 2, value
+
+
+def survivals():
+    for family, thetas in SURVIVAL:
+        for theta in thetas:
+            for groups in GROUPS:
+                value = survival(family, theta, groups)
+                if value > mpf('1e-290'):
+                    point = ' '.join(' '.join([u] * n) for u, n in groups)
+                    yield family, theta, point, nstr(value, 20), '1e-10 relative'
+
+
+def equicorrelated():
+    """Given a normal factor, and for t the chi-square, columns are independent: 800 Gauss-Legendre points in each."""
+    node, weight = numpy.polynomial.legendre.leggauss(800)
+    z, weight = 9 * node, 9 * weight * stats.norm.pdf(9 * node)
+    for df in (None, 4):
+        for d in (129, 200, 500):
+            for rho in (0.1, 0.5, 0.9):
+                for u in (0.9, 0.99, 0.999):
+                    x = special.ndtri(u) if df is None else stats.t.ppf(u, df)
+                    scale = numpy.ones(1) if df is None else numpy.sqrt(stats.chi2.ppf(special.ndtr(z), df) / df)
+                    given = special.ndtr((x * scale[:, None] - rho ** 0.5 * z) / (1 - rho) ** 0.5) ** d @ weight
+                    yield d, df or '', rho, u, repr(float(given[0] if df is None else given @ weight))
+
+
 def main():
-    which = sys.argv[1:] or ['tail', 'pair', 'archimedean', 'rotated']
+    which = sys.argv[1:] or ['tail', 'pair', 'archimedean', 'rotated', 'survival', 'equicorrelated']
     if 'tail' in which:
         write('student_tail.csv', ['df', 't', 'y', 'tail', 'tolerance'], student_tails())
     if 'pair' in which:
@@ -161,6 +230,10 @@ def main():
     if 'archimedean' in which:
         write('archimedean_points.csv', ['family', 'theta', 'u', 'C', 'log_density', 'conditional', 'tolerance'],
               archimedean_points())
+    if 'survival' in which:
+        write('survival_cdf.csv', ['family', 'theta', 'u', 'C', 'tolerance'], survivals())
+    if 'equicorrelated' in which:
+        write('equicorrelated.csv', ['d', 'df', 'correlation', 'u', 'C'], equicorrelated())
     if 'rotated' in which:
         write('rotated_cdf.csv', ['family', 'parameter', 'rotation', 'u', 'v', 'C', 'tolerance'], rotated_pairs())
 
