@@ -284,11 +284,9 @@ status from_conditional_at(const struct evaluation *e, const double *w, double *
 const char *evaluation_limit(const struct evaluation *e, enum question q)
 {
     size_t d = e->c->dimension;
-    if (q == ASK_CDF && e->rotation && d > MOST_IN_SUBSETS)
+    if ((q == ASK_CDF || q == ASK_KENDALL) && e->rotation && d > MOST_IN_SUBSETS)
         return "is rotated, so that its distribution function is a sum over all subsets of "
                "columns: there can be at most 16";
-    if (q == ASK_KENDALL && d > 2 && (e->rotation || !e->by->kendall))
-        return "has more than two columns, where its Kendall distribution has no formula";
     return e->by->limit ? e->by->limit(e, q) : NULL;
 }
 

@@ -1,8 +1,8 @@
 /* evaluation_work.c - about how long questions about a copula take.
  *
  * Method
- *   The loops of elliptical_box.c, grouped_points.c, archimedean.c and evaluate.c, counted, times
- *   seconds measured for one turn of each.
+ *   The loops of elliptical_box.c, grouped_points.c, archimedean.c, evaluate.c and kendall_rays.c,
+ *   counted, times seconds measured for one turn of each.
  *
  * Special cases
  *   Of a rotated pair the integral is needed only where the value cancels, so it counts only there.
@@ -13,10 +13,13 @@
 #include "evaluation_work.h"
 #include "archimedean.h"
 #include "elliptical_points.h"
+#include "kendall_rays.h"
 
 #include <math.h>
 
 static const double LONG_ENOUGH = 3;          /* seconds for probabilities by quasi-Monte Carlo */
+static const double ENOUGH_FOR_RAYS = 2;      /* seconds for those of one Kendall distribution */
+enum { MOST_RAYS = 4096, FEWEST_RAYS = 64, POINTS_FOR_A_RAY = 16 };
 
 static struct elliptical_points *elliptical_of(const struct evaluation *e)
 {
@@ -100,11 +103,39 @@ double from_conditional_seconds_at(const struct evaluation *e, const double *u)
     return m && !m->grouped ? once : 12 * once;
 }
 
-/* Without a formula the rule has 61 points, each the root of a probability of a pair. */
-double kendall_seconds(const struct evaluation *e)
+/* The Kendall distribution by the generator. */
+static double formula_seconds(const struct evaluation *e)
+{
+    double d = (double)e->c->dimension, n = columns_by_sums(e);
+    return 5e-7 + 2.5e-9 * d * d + 5e-10 * n * n * n;
+}
+
+/* 30 places on each ray, at which C is a mean over 256 points or one probability. */
+static double ray_seconds(const struct evaluation *e)
 {
     const struct elliptical_points *m = elliptical_of(e);
-    double d = (double)e->c->dimension, n = columns_by_sums(e);
-    if (e->rotation == 0 && e->by->kendall) return 5e-7 + 2.5e-9 * d * d + 5e-10 * n * n * n;
-    return !m ? 2e-4 : m->df ? 2e-2 : 6e-3;
+    double d = (double)e->c->dimension, places = 30;
+    if (m) return places * ROWS_AT_ONCE * d * (1.3e-8 + 2e-10 * d);
+    for (size_t j = 0; j < e->c->dimension; j++) e->room[j] = 0.5;
+    return places * (cdf_seconds_at(e, e->room) + formula_seconds(e) + 2e-7 * d);
+}
+
+size_t kendall_rays(const struct evaluation *e)
+{
+    const struct elliptical_points *m = elliptical_of(e);
+    bool beyond_pairs = e->c->dimension > 2;
+    size_t rays = MOST_RAYS;
+    if (!(m ? beyond_pairs || m->grouped : beyond_pairs && e->rotation)) return 0;
+    while (rays > FEWEST_RAYS && (double)rays * ray_seconds(e) > ENOUGH_FOR_RAYS) rays /= 2;
+    return m && !elliptical_rises(e) ? POINTS_FOR_A_RAY * rays : rays;
+}
+
+/* Without a formula the rule for a pair has 61 points, each the root of a probability. */
+double kendall_seconds(const struct evaluation *e, size_t n)
+{
+    const struct elliptical_points *m = elliptical_of(e);
+    double rays = (double)kendall_rays(e), values = (double)n;
+    if (rays > 0) return fmin(rays, MOST_RAYS) * ray_seconds(e) + rays * 5e-8 * values;
+    if (e->rotation == 0 && e->by->kendall) return values * formula_seconds(e);
+    return values * (!m ? 2e-4 : m->df ? 2e-2 : 6e-3);
 }
