@@ -165,6 +165,7 @@ static status cdf(const struct rays *r, double place, double *value)
         take_column(c, j, c->base[j] + place * c->direction[j * d]);
     for (int i = 0; i < ROWS_AT_ONCE; i++) sum += c->product[i];
     *value = sum / ROWS_AT_ONCE;
+    if (r->low == r->high && *value < 1e-15) *value = 0;      /* what rounding leaves of it */
     return OK;
 }
 

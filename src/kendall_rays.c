@@ -143,21 +143,15 @@ static double probability_before(const struct table *t, double g)
 
 /* ---- all rays ---- */
 
-static void take_row(double (*u)[ROWS_AT_ONCE], size_t dimensions, size_t row, double *to)
-{
-    for (size_t j = 0; j < dimensions; j++) to[j] = u[j][row];
-}
-
 static status add_rays(const struct rays *r, const struct ray_numbers *numbers, int seed,
-                       size_t rays, double (*u)[ROWS_AT_ONCE], struct asked *a)
+                       size_t rays, double (*u)[ROWS_AT_ONCE], double *row, struct asked *a)
 {
     struct table t;
-    double *row = u[r->dimensions];
     for (size_t i = 0; i < rays; i++) {
         size_t place = i % ROWS_AT_ONCE;
         for (size_t j = 0; place == 0 && j < r->dimensions; j++)
             ray_numbers_of_rows(numbers, j, i, u[j]);
-        take_row(u, r->dimensions, place, row);
+        for (size_t j = 0; j < r->dimensions; j++) row[j] = u[j][place];
         r->choose(r, row, seed, i);
         status s = tabulate(r, &t);
         if (s != OK) return s;
@@ -179,24 +173,30 @@ static double mean_of_seeds(const double *sum, size_t n, size_t rays, double *er
     return mean;
 }
 
+static status prepare_seeds(struct ray_numbers numbers[RAY_SEEDS], size_t dimensions, pool *p)
+{
+    status s = OK;
+    for (int k = 0; s == OK && k < RAY_SEEDS; k++)
+        s = ray_numbers_prepare(&numbers[k], dimensions, (uint64_t)k, p);
+    return s;
+}
+
 status kendall_by_rays(const struct rays *r, size_t rays, const double *w, size_t n, double *k,
                        double *error, pool *p)
 {
-    size_t wide = (r->dimensions / ROWS_AT_ONCE + 1);
-    double (*u)[ROWS_AT_ONCE] = pool_take(p, r->dimensions + wide, sizeof *u);
+    struct ray_numbers numbers[RAY_SEEDS];
+    double (*u)[ROWS_AT_ONCE] = pool_take(p, r->dimensions, sizeof *u);
+    double *row = pool_take(p, r->dimensions, sizeof *row);
     double *score = pool_take(p, n, sizeof *score);
-    double *sum = pool_take_zeroed(p, n, RAY_SEEDS * sizeof *sum);
-    status s = u && score && sum ? OK : NO_MEMORY;
+    double *sum = pool_take_zeroed(p, n, RAY_SEEDS * sizeof *sum), one;
+    status s = u && row && score && sum ? prepare_seeds(numbers, r->dimensions, p) : NO_MEMORY;
     for (size_t i = 0; s == OK && i < n; i++) score[i] = score_of(w[i]);
-    for (int seed = 0; s == OK && seed < RAY_SEEDS; seed++) {
-        struct ray_numbers numbers;
-        struct asked a = { score, n, sum + (size_t)seed * n };
-        s = ray_numbers_prepare(&numbers, r->dimensions, (uint64_t)seed, p);
-        if (s == OK) s = add_rays(r, &numbers, seed, rays, u, &a);
+    for (size_t seed = 0; s == OK && seed < RAY_SEEDS; seed++) {
+        struct asked a = { score, n, sum + seed * n };
+        s = add_rays(r, &numbers[seed], (int)seed, rays, u, row, &a);
     }
     *error = 0;
     for (size_t i = 0; s == OK && i < n; i++) {
-        double one;
         k[i] = fmin(1, fmax(w[i], mean_of_seeds(sum + i, n, rays, &one)));
         *error = fmax(*error, one);
     }
