@@ -247,7 +247,7 @@ static status t_from_conditional(const struct evaluation *e, const double *w, do
 static const char *limit(const struct evaluation *e, enum question q)
 {
     const struct elliptical_points *m = e->prepared;
-    for (size_t j = 0; m->df && j < m->d; j++)
+    for (size_t j = 0; q != ASK_KENDALL && m->df && j < m->d; j++)
         if (m->df[j] < LOWEST_DF)
             return "has less than 0.001 degrees of freedom, too few to compute with";
     for (size_t j = 0; q == ASK_CDF && m->d > 2 && m->df && j < m->d; j++)

@@ -19,6 +19,7 @@
 
 static const double LONG_ENOUGH = 3;          /* seconds for probabilities by quasi-Monte Carlo */
 static const double ENOUGH_FOR_RAYS = 2;      /* seconds for those of one Kendall distribution */
+static const double LOWEST_DF_ON_CURVE = 0.25;   /* of kendall_distribution.c */
 enum { MOST_RAYS = 4096, FEWEST_RAYS = 64, POINTS_FOR_A_RAY = 16 };
 
 static struct elliptical_points *elliptical_of(const struct evaluation *e)
@@ -123,19 +124,20 @@ static double ray_seconds(const struct evaluation *e)
 size_t kendall_rays(const struct evaluation *e)
 {
     const struct elliptical_points *m = elliptical_of(e);
-    bool beyond_pairs = e->c->dimension > 2;
     size_t rays = MOST_RAYS;
-    if (!(m ? beyond_pairs || m->grouped : beyond_pairs && e->rotation)) return 0;
+    bool beyond_pairs = e->c->dimension > 2;
+    bool steep = m && m->df && m->df[0] < LOWEST_DF_ON_CURVE && !m->singular;
+    if (m ? !(beyond_pairs || m->grouped || steep) : !(beyond_pairs && e->rotation)) return 0;
     while (rays > FEWEST_RAYS && (double)rays * ray_seconds(e) > ENOUGH_FOR_RAYS) rays /= 2;
     return m && !elliptical_rises(e) ? POINTS_FOR_A_RAY * rays : rays;
 }
 
-/* Without a formula the rule for a pair has 61 points, each the root of a probability. */
+/* Without a formula the rule for a pair has 61 points or four times as many, each the root of a probability. */
 double kendall_seconds(const struct evaluation *e, size_t n)
 {
     const struct elliptical_points *m = elliptical_of(e);
     double rays = (double)kendall_rays(e), values = (double)n;
     if (rays > 0) return fmin(rays, MOST_RAYS) * ray_seconds(e) + rays * 5e-8 * values;
     if (e->rotation == 0 && e->by->kendall) return values * formula_seconds(e);
-    return values * (!m ? 2e-4 : m->df ? 2e-2 : 6e-3);
+    return values * (!m ? 2e-4 : !m->df ? 6e-3 : m->df[0] < 2 ? 8e-2 : 2e-2);
 }

@@ -58,6 +58,16 @@ static void mean_is_tau(const copula *c, double tau, double most)
     assert_within(3 - 4 * sum, tau, most);
 }
 
+/* tau of a t does not depend on its degrees of freedom (Lindskog, McNeil & Schmock 2003). */
+static void mean_of_heavy_tails(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    const copula *c = elliptical(&s, "t", 2, 0.5, 0.5);
+    double sum = integral_of(weighted, c, 0, 0.7) + integral_of(weighted, c, 0.7, 1);
+    assert_within(3 - 4 * sum, 1.0 / 3, 1e-8);
+}
+
 static void means(void **state)
 {
     (void)state;
@@ -137,7 +147,7 @@ int main(void)
 {
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(closed_forms), cmocka_unit_test(means),
+        cmocka_unit_test(closed_forms), cmocka_unit_test(means), cmocka_unit_test(mean_of_heavy_tails),
         cmocka_unit_test(curve_of_a_draw), cmocka_unit_test(ends), cmocka_unit_test(many),
         cmocka_unit_test(limits),
     };

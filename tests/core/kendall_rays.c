@@ -91,6 +91,24 @@ static void many_degrees_of_freedom(void **state)
     for (int j = 0; j < LEVELS; j++) assert_within(k[j], known[j], 4 * hypot(error, other));
 }
 
+/* With next to none the columns are as far out as each other, and only their signs differ: both
+ * positive with probability p (Sheppard 1899), and at a magnitude that a share f does not exceed C
+ * is p (1 - f), unless both are positive: p + (1 - p) f. */
+static void few_degrees_of_freedom(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    const double correlations[] = { -0.3, 0.5 };
+    for (int i = 0; i < 2; i++) {
+        double k[LEVELS], error, p = 0.25 + asin(correlations[i]) / (2 * 3.14159265358979);
+        by_rays(elliptical(&s, "t", 2, correlations[i], 1e-6), 256, levels, LEVELS, k, &error);
+        for (int j = 0; j < LEVELS; j++) {
+            double w = levels[j], both = fmax(0, (w - p) / (1 - p));
+            assert_within(k[j], (1 - p) * fmin(1, w / p) + p * both, 5 * error + 1e-5);
+        }
+    }
+}
+
 /* tau = 3 - 4 int K (Genest & Rivest 1993) of a pair with several degrees of freedom, whose tau is
  * an integral (grouped_t.c). */
 static void mean_is_tau(void **state)
@@ -261,7 +279,8 @@ int main(void)
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(independent_columns), cmocka_unit_test(pairs),
-        cmocka_unit_test(many_degrees_of_freedom), cmocka_unit_test(mean_is_tau),
+        cmocka_unit_test(many_degrees_of_freedom),
+        cmocka_unit_test(few_degrees_of_freedom), cmocka_unit_test(mean_is_tau),
         cmocka_unit_test(simulations), cmocka_unit_test(laws),
         cmocka_unit_test(perfect_dependence), cmocka_unit_test(wide), cmocka_unit_test(memory),
     };
