@@ -10,6 +10,13 @@
  *
  * Special cases
  *   K(w) >= w is known, and a mean below it is raised to w. Where C is 0 with certainty K(0) is 1.
+ *
+ * Accuracy
+ *   As the standard error says: some 1e-4 in two and three columns with 4,096 rays, 2e-4 to 5e-4 in
+ *   five, 9e-4 in ten, 1e-3 in twenty. Beside it the cubics leave less than 5e-5, and that C is a
+ *   mean over 256 points, 1e-5 for normal columns and up to 3e-4 for t with one degree of freedom
+ *   and a correlation of -0.9. Measured against pairs along their curves, closed forms and
+ *   simulations: tests/core/kendall_rays.c.
  */
 #include "kendall_rays.h"
 #include "normal.h"

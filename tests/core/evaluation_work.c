@@ -112,7 +112,11 @@ static void rays(void **state)
     assert_int_equal(kendall_rays(&e), 0);
     c->rotation = 180;
     ready(&e, c, &p);
+    assert_true(kendall_rays(&e) >= 256 && kendall_rays(&e) <= 4096);
+    ready(&e, elliptical(&s, "t", 2, 0.5, 0.2), &p);
     assert_int_equal(kendall_rays(&e), 4096);
+    ready(&e, elliptical(&s, "t", 2, -1, 0.2), &p);
+    assert_int_equal(kendall_rays(&e), 0);
     pool_empty(&p);
 }
 
