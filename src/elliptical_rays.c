@@ -4,9 +4,9 @@
  *   With a direction v = S a / sqrt(a' S a) that is positive in every column, and a factor G of the
  *   matrix S whose first column is v, normal columns are X = v T + (the rest of G) M with T and M
  *   independent: M chooses the ray, T is the place on it. G is the Cholesky factor times the
- *   Householder reflection that brings v to the front. Of the directions the one whose smallest
- *   column is largest: that is S a with a >= 0 that minimises a' S a / 2 - sum(a), found column by
- *   column. For t the chi-squares belong to the ray.
+ *   Householder reflection that brings v to the front. Of the directions nearly the one whose
+ *   smallest column is largest: that is S a with a >= 0 that minimises a' S a / 2 - sum(a), found
+ *   column by column, from equal a. For t the chi-squares belong to the ray.
  *   C on a ray is the integrand of Genz (1992), as in elliptical_box.c but for 256 points of
  *   scrambled Sobol' sequences at a time: those that follow the ones of the ray before, so that
  *   their errors average out. For t they are weighted so that most have small chi-squares, which
@@ -29,7 +29,7 @@ enum { SWEEPS = 1000 };
 
 struct elliptical_cut {
     const struct elliptical_points *m;
-    double *direction;                        /* G, of which only the first column is the direction */
+    double *direction;                        /* G, whose first column is the direction */
     double *base;                             /* columns where T = 0 */
     size_t kinds, *kind_of;                   /* of degrees of freedom, and of each column */
     struct student *table;                    /* of each kind */

@@ -132,7 +132,8 @@ size_t kendall_rays(const struct evaluation *e)
     return m && !elliptical_rises(e) ? POINTS_FOR_A_RAY * rays : rays;
 }
 
-/* Without a formula the rule for a pair has 61 points or four times as many, each the root of a probability. */
+/* Without a formula the rule for a pair has 61 points or four times as many, each the root of a
+ * probability. */
 double kendall_seconds(const struct evaluation *e, size_t n)
 {
     const struct elliptical_points *m = elliptical_of(e);

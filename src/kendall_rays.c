@@ -72,7 +72,7 @@ static status put_node(const struct rays *r, struct table *t, size_t k, double p
 {
     double c;
     status s = r->cdf(r, place, &c);
-    if (s != OK) return s;
+    if (s != OK || isnan(c)) return s != OK ? s : OUT_OF_DOMAIN;
     for (size_t i = t->n++; i > k; i--) {
         t->place[i] = t->place[i - 1];
         t->x[i] = t->x[i - 1];

@@ -47,8 +47,9 @@ bool elliptical_rises(const struct evaluation *e);
 /* Archimedean copulas with rotation 180. NO_MEMORY. */
 status survival_rays(const struct evaluation *e, struct rays *r, pool *p);
 
-/* By a number of rays under each seed, P(C(U) <= w) for n numbers w from 0 to 1, and the largest of their standard errors: a value does
- * not depend on what else is asked. NO_MEMORY, or what C answers. */
+/* By a number of rays under each seed, P(C(U) <= w) for n numbers w from 0 to 1, and the largest of
+ * their standard errors: a value does not depend on what else is asked. NO_MEMORY, or what C
+ * answers, OUT_OF_DOMAIN where that is NaN. */
 status kendall_by_rays(const struct rays *r, size_t rays, const double *w, size_t n, double *k,
                        double *error, pool *p);
 

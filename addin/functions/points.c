@@ -403,9 +403,9 @@ const function points_functions[] = {
             "Remillard 1996), other pairs and rotated ones by an integral along the curve on which "
             "the distribution function is w, to 1e-9, for tau beyond 0.95 or -0.95 to 1e-7. "
             "gaussian, t and rotation 180 in more than two dimensions, a grouped t, and a t pair "
-            "with df below 0.25 by quasi-Monte Carlo: along up to 4,096 lines through the unit cube "
-            "on which the distribution function rises, fewer in many columns, which take some 2 s "
-            "in all and answer every value; WHY states the standard error. A value of another t "
+            "with df below 0.25 by quasi-Monte Carlo: along up to 4,096 lines through the unit "
+            "cube on which the distribution function rises, fewer in many columns, which take some "
+            "2 s in all and answer every value; WHY states the standard error. A value of another t "
             "pair takes some 0.02 s, with df below 2 some 0.08 s; what would take more than about "
             "20 s is refused. Of a pair tau is 3 - 4 times the area below it (Genest & Rivest "
             "1993).",

@@ -147,7 +147,8 @@ int main(void)
 {
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
-        cmocka_unit_test(closed_forms), cmocka_unit_test(means), cmocka_unit_test(mean_of_heavy_tails),
+        cmocka_unit_test(closed_forms), cmocka_unit_test(means),
+        cmocka_unit_test(mean_of_heavy_tails),
         cmocka_unit_test(curve_of_a_draw), cmocka_unit_test(ends), cmocka_unit_test(many),
         cmocka_unit_test(limits),
     };

@@ -1,4 +1,4 @@
-/* The Kendall distribution by rays: closed forms, the curve of a pair, tau, simulations by NumPy. */
+/* The Kendall distribution by rays: closed forms, curves of pairs, tau, simulations by NumPy. */
 #include "asked.h"
 
 #include "../../src/kendall_rays.h"

@@ -74,9 +74,11 @@ def survival_values(u, family, theta, d):
 
 
 def report(words, values, dimensions, points):
-    shares = np.array([[np.mean(c <= w) for w in LEVELS] for c in
-                       (values(qmc.Sobol(dimensions, seed=seed).random(points).clip(1e-12, 1 - 1e-12))
-                        for seed in range(SEEDS))])
+    shares = np.empty((SEEDS, len(LEVELS)))
+    for seed in range(SEEDS):
+        u = qmc.Sobol(dimensions, seed=seed).random(points).clip(1e-12, 1 - 1e-12)
+        c = values(u)
+        shares[seed] = [np.mean(c <= w) for w in LEVELS]
     errors = shares.std(axis=0, ddof=1) / np.sqrt(SEEDS)
     for w, k, error in zip(LEVELS, shares.mean(axis=0), errors):
         print(",".join(words) + f",{w},{k:.6f},{error:.1g}", flush=True)
