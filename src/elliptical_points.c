@@ -247,16 +247,13 @@ static status t_from_conditional(const struct evaluation *e, const double *w, do
 static const char *limit(const struct evaluation *e, enum question q)
 {
     const struct elliptical_points *m = e->prepared;
-    for (size_t j = 0; m->df && j < m->d; j++)
+    for (size_t j = 0; q != ASK_KENDALL && m->df && j < m->d; j++)
         if (m->df[j] < LOWEST_DF)
             return "has less than 0.001 degrees of freedom, too few to compute with";
     for (size_t j = 0; q == ASK_CDF && m->d > 2 && m->df && j < m->d; j++)
         if (m->df[j] < LOWEST_DF_IN_BOX)
             return "has less than 0.05 degrees of freedom, too few for its distribution function "
                    "beyond pairs";
-    if (q == ASK_KENDALL && m->grouped)
-        return "has several degrees of freedom: its Kendall distribution has no formula, and the "
-               "integral would take too long";
     if (q == ASK_CDF && m->grouped && m->d == 2 && m->singular)
         return "has several degrees of freedom and a correlation of 1 or -1: the distribution "
                "function of such a pair has no integral that settles";

@@ -172,9 +172,6 @@ status from_conditional_at(const struct evaluation *e, const double *w, double *
 
 const char *evaluation_limit(const struct evaluation *e, enum question q)
 {
-    size_t d = e->c->dimension;
-    if (q == ASK_KENDALL && d > 2 && (e->rotation || !e->by->kendall))
-        return "has more than two columns, where its Kendall distribution has no formula";
     return e->by->limit ? e->by->limit(e, q) : NULL;
 }
 

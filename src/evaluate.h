@@ -83,10 +83,13 @@ status conditional_at(const struct evaluation *e, const double *u, double *w);
 /* Its inverse, from w to u, kept within the same bounds. */
 status from_conditional_at(const struct evaluation *e, const double *w, double *u);
 
-/* K(w) = P(C(U) <= w), 0 <= w <= 1, to 1e-9, for tau beyond 0.95 or -0.95 to 1e-7: Barbe, Genest,
- * Ghoudi & Remillard (1996) for Archimedean copulas in any dimension, for other pairs an integral
- * along the curve where C is w. OUT_OF_DOMAIN as evaluation_limit() says, NOT_SETTLED when a point
- * of that curve is not found. */
-status kendall_at(const struct evaluation *e, double w, double *k);
+/* K(w) = P(C(U) <= w) for n numbers w from 0 to 1; each value is the same whatever else is asked.
+ * Barbe, Genest, Ghoudi & Remillard (1996) for Archimedean copulas in any dimension; for other
+ * pairs an integral along the curve where C is w, to 1e-9, for tau beyond 0.95 or -0.95 to 1e-7,
+ * for t with less than 0.3 degrees of freedom to 1e-8, NaN where a point of that curve is not
+ * found; *error is 0. Else by quasi-Monte Carlo, see kendall_rays.h, where *error is the largest
+ * standard error of the n. OUT_OF_DOMAIN as evaluation_limit() says. NO_MEMORY. */
+status kendall_at(const struct evaluation *e, const double *w, size_t n, double *k, double *error,
+                  pool *p);
 
 #endif

@@ -1,9 +1,9 @@
 /* evaluation_work.c - about how long questions about a copula take.
  *
  * Method
- *   The loops of elliptical_box.c, grouped_points.c, archimedean.c and frailty_mean.c, counted,
- *   times seconds measured for one turn of each, and those that a generator says its derivatives
- *   take.
+ *   The loops of elliptical_box.c, grouped_points.c, archimedean.c, frailty_mean.c and
+ *   kendall_rays.c, counted, times seconds measured for one turn of each, and those that a
+ *   generator says its derivatives take.
  *
  * Special cases
  *   What is made once for all points does not count: the stable density of rotated gumbel takes
@@ -15,10 +15,14 @@
 #include "evaluation_work.h"
 #include "archimedean.h"
 #include "elliptical_points.h"
+#include "kendall_rays.h"
 
 #include <math.h>
 
 static const double LONG_ENOUGH = 3;          /* seconds for probabilities by quasi-Monte Carlo */
+static const double ENOUGH_FOR_RAYS = 2;      /* seconds for those of one Kendall distribution */
+static const double LOWEST_DF_ON_CURVE = 0.25;   /* of kendall_distribution.c */
+enum { MOST_RAYS = 4096, FEWEST_RAYS = 64, POINTS_FOR_A_RAY = 16 };
 
 static struct elliptical_points *elliptical_of(const struct evaluation *e)
 {
@@ -101,11 +105,40 @@ double from_conditional_seconds_at(const struct evaluation *e, const double *u)
     return m && !m->grouped ? once : 12 * once;
 }
 
-/* Without a formula the rule has 61 points, each the root of a probability of a pair. */
-double kendall_seconds(const struct evaluation *e)
+/* The Kendall distribution by the generator. */
+static double formula_seconds(const struct evaluation *e)
+{
+    return 5e-7 + 1e-9 * (double)e->c->dimension + derivatives_seconds(e, true);
+}
+
+/* 30 places on each ray, at which C is a mean over 256 points or one probability. */
+static double ray_seconds(const struct evaluation *e)
 {
     const struct elliptical_points *m = elliptical_of(e);
-    bool formula = e->rotation == 0 && e->by->kendall;
-    if (formula) return 5e-7 + 1e-9 * (double)e->c->dimension + derivatives_seconds(e, true);
-    return !m ? 2e-4 : m->df ? 2e-2 : 6e-3;
+    double d = (double)e->c->dimension, places = 30;
+    if (m) return places * ROWS_AT_ONCE * d * (1.3e-8 + 2e-10 * d);
+    double cdf = d > FEW_FOR_SUBSETS ? cdf_seconds_at(e, NULL) : 4e-6 + 4e-8 * exp2(d);
+    return places * (cdf + formula_seconds(e) + 2e-7 * d);
+}
+
+size_t kendall_rays(const struct evaluation *e)
+{
+    const struct elliptical_points *m = elliptical_of(e);
+    size_t rays = MOST_RAYS;
+    bool beyond_pairs = e->c->dimension > 2;
+    bool steep = m && m->df && m->df[0] < LOWEST_DF_ON_CURVE && !m->singular;
+    if (m ? !(beyond_pairs || m->grouped || steep) : !(beyond_pairs && e->rotation)) return 0;
+    while (rays > FEWEST_RAYS && (double)rays * ray_seconds(e) > ENOUGH_FOR_RAYS) rays /= 2;
+    return m && !elliptical_rises(e) ? POINTS_FOR_A_RAY * rays : rays;
+}
+
+/* Without a formula the rule for a pair has 61 points or four times as many, each the root of a
+ * probability. */
+double kendall_seconds(const struct evaluation *e, size_t n)
+{
+    const struct elliptical_points *m = elliptical_of(e);
+    double rays = (double)kendall_rays(e), values = (double)n;
+    if (rays > 0) return fmin(rays, MOST_RAYS) * ray_seconds(e) + rays * 5e-8 * values;
+    if (e->rotation == 0 && e->by->kendall) return values * formula_seconds(e);
+    return values * (!m ? 2e-4 : !m->df ? 6e-3 : m->df[0] < 2 ? 8e-2 : 2e-2);
 }

@@ -71,7 +71,7 @@ static void many_columns(void **state)
     assert_true(from_conditional_seconds_at(&e, NULL) > 3);
     ready(&e, one_parameter(&s, "gumbel", 16384, 2), &p);
     assert_true(density_seconds_at(&e, NULL) < 0.3);
-    assert_true(kendall_seconds(&e) < 0.3);
+    assert_true(kendall_seconds(&e, 1) < 0.3);
     assert_true(conditional_seconds_at(&e, NULL) > 100);
     ready(&e, one_parameter(&s, "joe", 16384, 2), &p);
     assert_true(from_conditional_seconds_at(&e, NULL) < 0.3);
@@ -109,10 +109,40 @@ static void short_and_long(void **state)
     c = elliptical(&s, "t", 2, 0.5, 4);
     ready(&e, c, &p);
     assert_true(1e4 * cdf_seconds_at(&e, u) < 3);
-    assert_true(1e4 * kendall_seconds(&e) > 60);
+    assert_true(kendall_seconds(&e, 10000) > 60);
     s.df[1] = 0.05;
     ready(&e, c, &p);
     assert_true(1e4 * cdf_seconds_at(&e, u) > 60);
+    pool_empty(&p);
+}
+
+/* Rays are shared by all values of a Kendall distribution, and fewer where one takes longer. */
+static void rays(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    struct evaluation e;
+    pool p = { 0 };
+    ready(&e, elliptical(&s, "t", 2, 0.5, 4), &p);
+    assert_int_equal(kendall_rays(&e), 0);
+    ready(&e, elliptical(&s, "gaussian", 3, 0.5, 0), &p);
+    assert_int_equal(kendall_rays(&e), 4096);
+    assert_true(kendall_seconds(&e, 1) > 0.3 && kendall_seconds(&e, 1000) < 3);
+    ready(&e, elliptical(&s, "t", 40, 0.5, 3), &p);
+    assert_true(kendall_rays(&e) >= 64 && kendall_rays(&e) < 1024);
+    assert_true(kendall_seconds(&e, 1) > 1 && kendall_seconds(&e, 100) < 4);
+    ready(&e, elliptical(&s, "t", 3, -0.5, 3), &p);
+    assert_int_equal(kendall_rays(&e), 65536);
+    copula *c = one_parameter(&s, "gumbel", 3, 2);
+    ready(&e, c, &p);
+    assert_int_equal(kendall_rays(&e), 0);
+    c->rotation = 180;
+    ready(&e, c, &p);
+    assert_true(kendall_rays(&e) >= 256 && kendall_rays(&e) <= 4096);
+    ready(&e, elliptical(&s, "t", 2, 0.5, 0.2), &p);
+    assert_int_equal(kendall_rays(&e), 4096);
+    ready(&e, elliptical(&s, "t", 2, -1, 0.2), &p);
+    assert_int_equal(kendall_rays(&e), 0);
     pool_empty(&p);
 }
 
@@ -121,7 +151,7 @@ int main(void)
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(fewer_points), cmocka_unit_test(other_ways),
-        cmocka_unit_test(many_columns), cmocka_unit_test(short_and_long),
+        cmocka_unit_test(many_columns), cmocka_unit_test(short_and_long), cmocka_unit_test(rays),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
