@@ -47,7 +47,7 @@ static double elliptical_cdf_seconds(const struct evaluation *e, const struct el
 {
     double d = (double)m->d, turn = 6.5e-8 + 1.5e-10 * d;
     if (m->d > 2) return (double)box_points(e) * d * (m->grouped ? turn + 1e-8 : turn);
-    return m->grouped ? 3e-6 * (double)grouped_nodes(m) : m->df ? 4e-5 : 5e-6;
+    return m->grouped ? 1e-3 : m->df ? 4e-5 : 5e-6;
 }
 
 /* Next to u or v = 1 the integral of evaluate.c settles late. */
@@ -73,7 +73,7 @@ double cdf_seconds_at(const struct evaluation *e, const double *u)
 static double elliptical_seconds(const struct elliptical_points *m)
 {
     double d = (double)m->d;
-    return m->grouped ? (double)grouped_nodes(m) * d * (3e-8 + 4e-10 * d)
+    return m->grouped ? 321 * d * (3e-8 + 4e-10 * d)
                       : d * ((m->df ? 5e-6 : 1e-7) + 1e-9 * d);
 }
 

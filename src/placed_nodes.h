@@ -1,0 +1,38 @@
+/* placed_nodes.h - the trapezoid rule on the line, with its nodes where the integrand is.
+ *
+ * For positive integrands of exponential kind, of which the logarithm is known: it may lie below
+ * exp(-700) or above, and have its mass anywhere. */
+#ifndef PLACED_NODES_H
+#define PLACED_NODES_H
+
+#include <stdbool.h>
+#include <stddef.h>
+
+enum { FIRST_NODES = 49, MOST_NODES = 12289 };
+
+/* Equally spaced, with the logarithm of the integrand at each. */
+struct placed_nodes {
+    size_t n;
+    double first, step;
+    double *log_term;                /* MOST_NODES */
+    double below, above;             /* bounds on the logarithm beyond either end; HUGE_VAL: none */
+};
+
+/* Sets log_term, below and above, of nodes whose n, first and step are set. */
+typedef void log_terms(struct placed_nodes *nodes, void *with);
+
+double node_at(const struct placed_nodes *nodes, size_t k);
+
+/* What a sum over the nodes says. */
+struct placed_sum {
+    double highest, log_integral;    /* of log_term, of the integral */
+    bool within, settled;            /* nothing left at either end; settled: and every other node */
+};                                   /* would have done almost as well */
+
+struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
+
+/* Puts the nodes where the integrand is more than exp(-44) of its peak, as many as it takes to
+ * settle to about 1e-13, up to `most`. */
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most);
+
+#endif
