@@ -19,7 +19,6 @@
 
 #include <math.h>
 
-enum { PAIR_NODES = 193 };
 static const double LOG_SQRT_2_PI = 0.918938533204672742, LARGEST = 1e100;
 static const double DEEPEST = 39;             /* exp(-z^2/2) is 0 in a double from here on */
 
@@ -108,7 +107,7 @@ status grouped_pair_cdf(const struct elliptical_points *m, const double *u, doub
         p.x[j] = signed_log_of(student_quantile(u[j], m->df[j]), m->df[j]);
     }
     bool perfect = fabs(p.correlation) == 1;
-    struct placed_sum s = place_nodes(&g->nodes, terms_at, &p, perfect ? FIRST_NODES : PAIR_NODES);
+    struct placed_sum s = place_nodes(&g->nodes, terms_at, &p);
     *value = 0;
     if (!isfinite(s.highest)) return OK;
     *value = exp(s.log_integral - LOG_SQRT_2_PI);

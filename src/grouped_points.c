@@ -24,7 +24,6 @@
 #include <float.h>
 #include <math.h>
 
-enum { MANY_COLUMNS = 32, FEWER_NODES = 1537 };
 static const double LOG_SQRT_2_PI = 0.918938533204672742, FARTHEST = 300;
 static const double LEFT_OUT = 44, LEAST_LEFT = 30;      /* in logarithms, of placed_nodes.h */
 static const double MOVED = 8;                           /* a sum by so much: place nodes anew */
@@ -39,7 +38,7 @@ static status score_of_column(struct elliptical_points *m, size_t j, pool *p)
         return OK;
     }
     g->score[j] = pool_take(p, 1, sizeof **g->score);
-    g->log_scale[j] = pool_take(p, g->most_nodes, sizeof **g->log_scale);
+    g->log_scale[j] = pool_take(p, MOST_NODES, sizeof **g->log_scale);
     if (!g->score[j] || !g->log_scale[j]) return NO_MEMORY;
     return chi_square_score_prepare(g->score[j], m->df[j], p);
 }
@@ -48,13 +47,12 @@ status grouped_prepare(struct elliptical_points *m, pool *p)
 {
     struct grouped_points *g = m->groups = pool_take_zeroed(p, 1, sizeof *g);
     if (!g) return NO_MEMORY;
-    g->most_nodes = m->d < MANY_COLUMNS ? MOST_NODES : FEWER_NODES;
     g->score = pool_take(p, m->d, sizeof *g->score);
     g->like = pool_take(p, m->d, sizeof *g->like);
     g->log_scale = pool_take(p, m->d, sizeof *g->log_scale);
-    g->nodes.log_term = pool_take(p, g->most_nodes, sizeof *g->nodes.log_term);
-    g->given = pool_take(p, g->most_nodes, sizeof *g->given);
-    g->y = pool_take(p, m->d, g->most_nodes * sizeof *g->y);
+    g->nodes.log_term = pool_take(p, MOST_NODES, sizeof *g->nodes.log_term);
+    g->given = pool_take(p, MOST_NODES, sizeof *g->given);
+    g->y = pool_take(p, m->d, MOST_NODES * sizeof *g->y);
     g->x = pool_take(p, m->d, sizeof *g->x);
     if (!g->score || !g->like || !g->log_scale || !g->nodes.log_term || !g->given || !g->y || !g->x)
         return NO_MEMORY;
@@ -94,11 +92,11 @@ static void column_at_nodes(const struct elliptical_points *m, size_t j)
 {
     const struct grouped_points *g = m->groups;
     const double *row = m->factor + j * m->d, *log_scale = g->log_scale[j];
-    double *y = g->y + j * g->most_nodes;
+    double *y = g->y + j * MOST_NODES;
     size_t n = g->nodes.n;
     for (size_t k = 0; k < n; k++) y[k] = times_scale(g->x[j], log_scale[k]);
     for (size_t i = 0; i < j; i++)
-        for (size_t k = 0; k < n; k++) y[k] -= row[i] * g->y[i * g->most_nodes + k];
+        for (size_t k = 0; k < n; k++) y[k] -= row[i] * g->y[i * MOST_NODES + k];
     for (size_t k = 0; k < n; k++) y[k] /= row[j];
 }
 
@@ -106,7 +104,7 @@ static void column_at_nodes(const struct elliptical_points *m, size_t j)
 static void learn_at_nodes(const struct elliptical_points *m, size_t j)
 {
     const struct grouped_points *g = m->groups;
-    const double *y = g->y + j * g->most_nodes;
+    const double *y = g->y + j * MOST_NODES;
     for (size_t k = 0; k < g->nodes.n; k++) g->given[k] += g->log_scale[j][k] - y[k] * y[k] / 2;
 }
 
@@ -122,7 +120,7 @@ static void scale_at_nodes(const struct elliptical_points *m, size_t j)
 static void take_event(const struct elliptical_points *m)
 {
     struct grouped_points *g = m->groups;
-    const double *y = g->y + g->learnt * g->most_nodes;
+    const double *y = g->y + g->learnt * MOST_NODES;
     for (size_t k = 0; k < g->nodes.n; k++)
         g->nodes.log_term[k] = g->given[k]
                                + (g->event ? normal_log_probability(g->event * y[k]) : 0);
@@ -174,7 +172,7 @@ static status place(const struct elliptical_points *m, int event)
 {
     struct grouped_points *g = m->groups;
     g->event = event;
-    g->sum = place_nodes(&g->nodes, terms_at, (void *)m, g->most_nodes);
+    g->sum = place_nodes(&g->nodes, terms_at, (void *)m);
     g->log_placed = g->sum.log_integral;
     g->for_event = event;
     g->outside = g->sum.highest - LEFT_OUT;
@@ -269,13 +267,14 @@ static double slope_of(const struct elliptical_points *m, double a)
 {
     const struct grouped_points *g = m->groups;
     size_t j = g->learnt;
-    const double *y = g->y + j * g->most_nodes;
+    const double *y = g->y + j * MOST_NODES;
     double along = log(m->df[j]) / 2 + log_cosh_of(a) - log(m->factor[j * m->d + j]), sum = 0;
     for (size_t k = 0; k < g->nodes.n; k++) {
         double log_density = g->given[k] - y[k] * y[k] / 2 - LOG_SQRT_2_PI;
-        sum += exp(log_density + along + g->log_scale[j][k] - g->sum.highest);
+        sum += node_weight(&g->nodes, k)
+               * exp(log_density + along + g->log_scale[j][k] - g->sum.highest);
     }
-    return g->event * sum * g->nodes.step * exp(g->sum.highest - g->sum.log_integral);
+    return g->event * sum * exp(g->sum.highest - g->sum.log_integral);
 }
 
 /* Where the column would be were z where the columns before have it most likely. */
@@ -287,7 +286,7 @@ static double first_guess(const struct elliptical_points *m, double w)
     for (size_t k = 0; k < g->nodes.n; k++)
         if (g->given[k] > g->given[at]) at = k;
     double normal = row[j] * normal_quantile(w);
-    for (size_t i = 0; i < j; i++) normal += row[i] * g->y[i * g->most_nodes + at];
+    for (size_t i = 0; i < j; i++) normal += row[i] * g->y[i * MOST_NODES + at];
     double log_sinh = log(fabs(normal)) - log(m->df[j]) / 2 - g->log_scale[j][at];
     double size = log_sinh < FARTHEST ? asinh(exp(log_sinh)) : log_sinh + log(2);
     return copysign(size, normal);

@@ -18,13 +18,12 @@ struct signed_log signed_log_of(double a, double df);
 double times_scale(struct signed_log x, double log_scale);
 
 struct grouped_points {
-    size_t most_nodes;
     struct chi_square_score **score;  /* of each column; columns with the same df share */
     size_t *like;                     /* the first column with the same df */
     double **log_scale;               /* of each column, at the nodes: log sqrt(chi-square/df) */
     struct placed_nodes nodes;        /* of z */
     double *given;                    /* log-density of z and the columns learnt, at the nodes */
-    double *y;                        /* columns at the nodes, d x most_nodes */
+    double *y;                        /* columns at the nodes, d x MOST_NODES */
     struct signed_log *x;             /* t quantiles of the columns */
     size_t learnt;                    /* so many columns */
     int event;                        /* what the next one is: 1 below, -1 above, 0 anywhere */

@@ -7,6 +7,9 @@
  *   around it tell. Then the step is halved until the sums over even and over odd nodes agree to
  *   3e-7: halving a step squares the error of the rule at least, for integrands analytic in a strip
  *   (Trefethen & Weideman 2014), so that of the sum over all is about 1e-13.
+ *   Where the integrand has a cliff that is narrow beside its span, the rule is applied in t with
+ *   the cliff at t = 0 of centre + width sinh(t), which it crosses in a few steps of t while the
+ *   span grows with log(span/width) only.
  *
  * Special cases
  *   A logarithm of -infinity is an integrand of 0.
@@ -18,12 +21,20 @@
 
 #include <math.h>
 
-enum { MOST_MOVES = 200, PEAK_NODES = 17 };
+enum { MOST_MOVES = 200, PEAK_NODES = 17, MOST_EQUAL_NODES = 385 };
 static const double CUT = 44, ENOUGH = 30, HALVES_APART = 3e-7, FIRST_REACH = 8;
+static const double CLIFF = 0.25;             /* of the peak, from a node to the next */
 
 double node_at(const struct placed_nodes *nodes, size_t k)
 {
-    return nodes->first + (double)k * nodes->step;
+    double t = nodes->first + (double)k * nodes->step;
+    return nodes->width > 0 ? nodes->centre + nodes->width * sinh(t) : t;
+}
+
+double node_weight(const struct placed_nodes *nodes, size_t k)
+{
+    double t = nodes->first + (double)k * nodes->step;
+    return nodes->width > 0 ? nodes->step * nodes->width * cosh(t) : nodes->step;
 }
 
 static void fill(struct placed_nodes *nodes, double from, double to, size_t n, log_terms *of,
@@ -32,6 +43,7 @@ static void fill(struct placed_nodes *nodes, double from, double to, size_t n, l
     nodes->n = n;
     nodes->first = from;
     nodes->step = (to - from) / (double)(n - 1);
+    nodes->width = 0;
     of(nodes, with);
 }
 
@@ -47,9 +59,10 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes)
     struct placed_sum s = { .highest = highest_of(nodes), .log_integral = -HUGE_VAL };
     if (!isfinite(s.highest)) return s;
     double half[2] = { 0, 0 };
-    for (size_t k = 0; k < nodes->n; k++) half[k & 1] += exp(nodes->log_term[k] - s.highest);
+    for (size_t k = 0; k < nodes->n; k++) 
+        half[k & 1] += exp(nodes->log_term[k] - s.highest) * node_weight(nodes, k);
     double ends = fmax(nodes->log_term[0], nodes->log_term[nodes->n - 1]);
-    s.log_integral = s.highest + log((half[0] + half[1]) * nodes->step);
+    s.log_integral = s.highest + log(half[0] + half[1]);
     s.within = ends < s.highest - ENOUGH;
     s.settled = s.within && fabs(half[0] - half[1]) < HALVES_APART * (half[0] + half[1]);
     return s;
@@ -135,7 +148,55 @@ static struct span drawn_in(struct placed_nodes *nodes, log_terms *of, void *wit
     return in;
 }
 
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most)
+/* Twice as many nodes until they settle. */
+static struct placed_sum with_more(struct placed_nodes *nodes, log_terms *of, void *with,
+                                   size_t most)
+{
+    struct placed_sum s = sum_over_nodes(nodes);
+    while (!s.settled && 2 * nodes->n - 1 <= most) {
+        nodes->n = 2 * nodes->n - 1;
+        nodes->step /= 2;
+        of(nodes, with);
+        s = sum_over_nodes(nodes);
+    }
+    return s;
+}
+
+/* The first of the two neighbours that are furthest apart, beside the peak. */
+static size_t steepest(const struct placed_nodes *nodes, double highest, double *drop)
+{
+    size_t at = 0;
+    *drop = 0;
+    for (size_t k = 0; k + 1 < nodes->n; k++) {
+        const double *f = nodes->log_term + k;
+        double apart = fabs(exp(f[0] - highest) - exp(f[1] - highest));
+        if (apart <= *drop) continue;
+        *drop = apart;
+        at = k;
+    }
+    return at;
+}
+
+static void crowd_at_cliff(struct placed_nodes *nodes, double highest, log_terms *of, void *with)
+{
+    double from = nodes->first, to = node_at(nodes, nodes->n - 1), drop, centre, width;
+    for (int i = 0;; i++) {
+        size_t k = steepest(nodes, highest, &drop);
+        double left = node_at(nodes, k), right = node_at(nodes, k + 1);
+        centre = left + (right - left) / 2;
+        width = 2 * nodes->step;
+        if (drop < CLIFF || i > 20) break;
+        fill(nodes, left, right, PEAK_NODES, of, with);
+    }
+    nodes->n = 2 * FIRST_NODES - 1;
+    nodes->centre = centre;
+    nodes->width = width;
+    nodes->first = asinh((from - centre) / width);
+    nodes->step = (asinh((to - centre) / width) - nodes->first) / (double)(nodes->n - 1);
+    of(nodes, with);
+}
+
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with)
 {
     fill(nodes, -FIRST_REACH, FIRST_REACH, FIRST_NODES, of, with);
     for (int i = 0; i < MOST_MOVES && spread(nodes, of, with); i++) continue;
@@ -146,11 +207,8 @@ struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *w
         if (same) break;
         fill(nodes, in.from, in.to, FIRST_NODES, of, with);
     }
-    struct placed_sum s = sum_over_nodes(nodes);
-    while (!s.settled && 2 * nodes->n - 1 <= most) {
-        double to = node_at(nodes, nodes->n - 1);
-        fill(nodes, nodes->first, to, 2 * nodes->n - 1, of, with);
-        s = sum_over_nodes(nodes);
-    }
-    return s;
+    struct placed_sum s = with_more(nodes, of, with, MOST_EQUAL_NODES);
+    if (s.settled || !isfinite(s.highest)) return s;
+    crowd_at_cliff(nodes, s.highest, of, with);
+    return with_more(nodes, of, with, MOST_NODES);
 }

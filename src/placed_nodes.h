@@ -8,20 +8,23 @@
 #include <stdbool.h>
 #include <stddef.h>
 
-enum { FIRST_NODES = 49, MOST_NODES = 12289 };
+enum { FIRST_NODES = 49, MOST_NODES = 3073 };
 
-/* Equally spaced, with the logarithm of the integrand at each. */
+/* Equally spaced, or crowded around `centre`: centre + width sinh(t) with equally spaced t. With the
+ * logarithm of the integrand at each. */
 struct placed_nodes {
     size_t n;
-    double first, step;
+    double first, step;              /* of t */
+    double centre, width;            /* width 0: equally spaced */
     double *log_term;                /* MOST_NODES */
     double below, above;             /* bounds on the logarithm beyond either end; HUGE_VAL: none */
 };
 
-/* Sets log_term, below and above, of nodes whose n, first and step are set. */
+/* Sets log_term, below and above, of nodes whose places are set. */
 typedef void log_terms(struct placed_nodes *nodes, void *with);
 
 double node_at(const struct placed_nodes *nodes, size_t k);
+double node_weight(const struct placed_nodes *nodes, size_t k);
 
 /* What a sum over the nodes says. */
 struct placed_sum {
@@ -32,7 +35,8 @@ struct placed_sum {
 struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
 
 /* Puts the nodes where the integrand is more than exp(-44) of its peak, as many as it takes to
- * settle to about 1e-13, up to `most`. */
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most);
+ * settle to about 1e-13, crowded around where it is steepest if equally spaced ones would have to be
+ * many. */
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with);
 
 #endif
