@@ -19,8 +19,8 @@
 
 #include <math.h>
 
+enum { MOST_PAIR_NODES = 385 };
 static const double LOG_SQRT_2_PI = 0.918938533204672742, LARGEST = 1e100;
-static const double DEEPEST = 39;             /* exp(-z^2/2) is 0 in a double from here on */
 
 struct grouped_pair {
     struct chi_square_score *score[2];
@@ -40,36 +40,48 @@ static double normal_density(double x, const void *with)
     return exp(-x * x / 2 - LOG_SQRT_2_PI);
 }
 
-/* P(low < Z <= high) */
-static double between(double low, double high)
+/* log P(low < Z <= high); where that is empty something below what a double holds, higher the
+ * nearer the limits, so that the way to where it is not can be found. */
+static double log_between(double low, double high)
 {
-    if (!(low < high)) return 0;
-    if (high - low < 1) return integral_of(normal_density, NULL, low, high);
-    return low > 0 ? normal_probability(-low) - normal_probability(-high)
-                   : normal_probability(high) - normal_probability(low);
+    if (!(low < high)) return -800 - log1p(low - high);
+    if (high - low < 1) return log(integral_of(normal_density, NULL, low, high));
+    double outer = normal_log_probability(low > 0 ? -high : low);
+    double inner = normal_log_probability(low > 0 ? -low : high);
+    return inner + log1p(-exp(outer - inner));
 }
 
-static double probability_given(const struct grouped_pair *p, double z)
+/* log P(X <= x, Y <= y), by its leading term where it is next to nothing. */
+static double log_normal_pair(double x, double y, double correlation)
+{
+    double value = normal_pair_probability(x, y, correlation);
+    if (value > 1e-300) return log(value);
+    double low = fmin(x, y), high = fmax(x, y), rest = high - correlation * low;
+    double spread = (1 - correlation) * (1 + correlation);
+    return -low * low / 2 - (rest < 0 ? rest * rest / spread / 2 : 0);
+}
+
+static double log_probability_given(const struct grouped_pair *p, double z)
 {
     double x = column_at(p, 0, z), y = column_at(p, 1, z);
-    if (p->correlation == 1) return normal_probability(fmin(x, y));
-    if (p->correlation == -1) return between(-y, x);
-    return normal_pair_probability(x, y, p->correlation);
+    if (p->correlation == 1) return normal_log_probability(fmin(x, y));
+    if (p->correlation == -1) return log_between(-y, x);
+    return log_normal_pair(x, y, p->correlation);
 }
 
 static double log_integrand(const struct grouped_pair *p, double z)
 {
-    double given = fabs(z) < DEEPEST ? probability_given(p, z) : 0;
-    return log(given) - z * z / 2;
+    return log_probability_given(p, z) - z * z / 2;
 }
 
 static void terms_at(struct placed_nodes *nodes, void *with)
 {
-    for (size_t k = 0; k < nodes->n; k++)
+    size_t known = nodes->halved;
+    for (size_t k = known; k < nodes->n; k += 1 + known)
         nodes->log_term[k] = log_integrand(with, node_at(nodes, k));
-    double first = nodes->first, last = node_at(nodes, nodes->n - 1);
-    nodes->below = first < -DEEPEST ? -HUGE_VAL : -first * first / 2;
-    nodes->above = last > DEEPEST ? -HUGE_VAL : -last * last / 2;
+    double first = node_at(nodes, 0), last = node_at(nodes, nodes->n - 1);
+    nodes->below = first < 0 ? -first * first / 2 : HUGE_VAL;
+    nodes->above = last > 0 ? -last * last / 2 : HUGE_VAL;
 }
 
 /* ---- a strong correlation ---- */
@@ -87,33 +99,34 @@ static double apart(double z, const void *with)
            - p->x[1].log_size - log_chi_square_scale(p->score[1], z);
 }
 
-static double integral_by_halves(const struct grouped_pair *p, double from, double to)
+/* `about` is roughly what it comes to. */
+static double integral_by_halves(const struct grouped_pair *p, double from, double to, double about)
 {
     double meet = from, ignored = 0, sum = 0;
     if (root_between(apart, p, from, to, &meet) != OK) meet = from + (to - from) / 2;
     const double ends[] = { from, meet, to };
     for (int k = 0; k < 2; k++)
         if (ends[k] < ends[k + 1])
-            sum += adapted_integral(integrand, p, ends[k], ends[k + 1], 1e-15 * sum, &ignored);
+            sum += adapted_integral(integrand, p, ends[k], ends[k + 1], 1e-13 * about, &ignored);
     return sum;
 }
 
 status grouped_pair_cdf(const struct elliptical_points *m, const double *u, double *value)
 {
-    struct grouped_points *g = m->groups;
+    struct placed_nodes *nodes = &m->groups->nodes;
     struct grouped_pair p = { .correlation = m->matrix[1] };
     for (int j = 0; j < 2; j++) {
-        p.score[j] = g->score[j];
+        p.score[j] = m->groups->score[j];
         p.x[j] = signed_log_of(student_quantile(u[j], m->df[j]), m->df[j]);
     }
     bool perfect = fabs(p.correlation) == 1;
-    struct placed_sum s = place_nodes(&g->nodes, terms_at, &p);
-    *value = 0;
-    if (!isfinite(s.highest)) return OK;
+    struct placed_sum s = perfect ? span_nodes(nodes, terms_at, &p)
+                                  : place_nodes(nodes, terms_at, &p, MOST_PAIR_NODES);
     *value = exp(s.log_integral - LOG_SQRT_2_PI);
     if (s.settled && !perfect) return OK;
     p.highest = s.highest;
-    double last = node_at(&g->nodes, g->nodes.n - 1);
-    *value = exp(p.highest - LOG_SQRT_2_PI) * integral_by_halves(&p, g->nodes.first, last);
+    double about = exp(s.log_integral - s.highest), last = node_at(nodes, nodes->n - 1);
+    *value = exp(p.highest - LOG_SQRT_2_PI)
+             * integral_by_halves(&p, node_at(nodes, 0), last, about);
     return OK;
 }

@@ -172,7 +172,7 @@ static status place(const struct elliptical_points *m, int event)
 {
     struct grouped_points *g = m->groups;
     g->event = event;
-    g->sum = place_nodes(&g->nodes, terms_at, (void *)m);
+    g->sum = place_nodes(&g->nodes, terms_at, (void *)m, MOST_NODES);
     g->log_placed = g->sum.log_integral;
     g->for_event = event;
     g->outside = g->sum.highest - LEFT_OUT;

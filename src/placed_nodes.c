@@ -1,7 +1,7 @@
 /* placed_nodes.c - the trapezoid rule on the line, with its nodes where the integrand is.
  *
  * Method
- *   Nodes from -8 to 8 are spread until what lies beyond them is known to be nothing, then drawn
+ *   Nodes from -10 to 10 are spread until what lies beyond them is known to be nothing, then drawn
  *   in to where the logarithm is within CUT of its highest, as long as that is much less than they
  *   span. A lower peak between nodes may be narrow and higher than it looks there: nodes drawn in
  *   around it tell. Then the step is halved until the sums over even and over odd nodes agree to
@@ -22,7 +22,7 @@
 #include <math.h>
 
 enum { MOST_MOVES = 200, PEAK_NODES = 17, MOST_EQUAL_NODES = 385 };
-static const double CUT = 44, ENOUGH = 30, HALVES_APART = 3e-7, FIRST_REACH = 8;
+static const double CUT = 44, ENOUGH = 30, HALVES_APART = 3e-11, FIRST_REACH = 10;
 static const double CLIFF = 0.25;             /* of the peak, from a node to the next */
 
 double node_at(const struct placed_nodes *nodes, size_t k)
@@ -148,15 +148,23 @@ static struct span drawn_in(struct placed_nodes *nodes, log_terms *of, void *wit
     return in;
 }
 
+static void halve_step(struct placed_nodes *nodes, log_terms *of, void *with)
+{
+    for (size_t k = nodes->n - 1; k > 0; k--) nodes->log_term[2 * k] = nodes->log_term[k];
+    nodes->n = 2 * nodes->n - 1;
+    nodes->step /= 2;
+    nodes->halved = true;
+    of(nodes, with);
+    nodes->halved = false;
+}
+
 /* Twice as many nodes until they settle. */
 static struct placed_sum with_more(struct placed_nodes *nodes, log_terms *of, void *with,
                                    size_t most)
 {
     struct placed_sum s = sum_over_nodes(nodes);
     while (!s.settled && 2 * nodes->n - 1 <= most) {
-        nodes->n = 2 * nodes->n - 1;
-        nodes->step /= 2;
-        of(nodes, with);
+        halve_step(nodes, of, with);
         s = sum_over_nodes(nodes);
     }
     return s;
@@ -196,7 +204,7 @@ static void crowd_at_cliff(struct placed_nodes *nodes, double highest, log_terms
     of(nodes, with);
 }
 
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with)
+struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *with)
 {
     fill(nodes, -FIRST_REACH, FIRST_REACH, FIRST_NODES, of, with);
     for (int i = 0; i < MOST_MOVES && spread(nodes, of, with); i++) continue;
@@ -207,8 +215,14 @@ struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *w
         if (same) break;
         fill(nodes, in.from, in.to, FIRST_NODES, of, with);
     }
-    struct placed_sum s = with_more(nodes, of, with, MOST_EQUAL_NODES);
+    return sum_over_nodes(nodes);
+}
+
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most)
+{
+    span_nodes(nodes, of, with);
+    struct placed_sum s = with_more(nodes, of, with, most < MOST_EQUAL_NODES ? most : MOST_EQUAL_NODES);
     if (s.settled || !isfinite(s.highest)) return s;
     crowd_at_cliff(nodes, s.highest, of, with);
-    return with_more(nodes, of, with, MOST_NODES);
+    return with_more(nodes, of, with, most);
 }

@@ -17,6 +17,7 @@ struct placed_nodes {
     double first, step;              /* of t */
     double centre, width;            /* width 0: equally spaced */
     double *log_term;                /* MOST_NODES */
+    bool halved;                     /* those of even number are known */
     double below, above;             /* bounds on the logarithm beyond either end; HUGE_VAL: none */
 };
 
@@ -34,9 +35,12 @@ struct placed_sum {
 
 struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
 
-/* Puts the nodes where the integrand is more than exp(-44) of its peak, as many as it takes to
- * settle to about 1e-13, crowded around where it is steepest if equally spaced ones would have to be
- * many. */
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with);
+/* Puts equally spaced nodes where the integrand is more than exp(-44) of its peak, and no more than
+ * that takes. */
+struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *with);
+
+/* The same, and as many as it takes to settle to about 1e-11, crowded around where the integrand
+ * is steepest if equally spaced ones would have to be many. */
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most);
 
 #endif
