@@ -104,6 +104,7 @@ status chi_square_score_prepare(struct chi_square_score *s, double df, pool *p)
 {
     status done = chi_square_table(&s->near, df, p);
     if (done != OK) return done;
+    s->log_df = log(df);
     s->log_k = 0.5 * log(df / (4 * PI)) - log_stirling_factor(df / 2);
     s->filled = pool_take_zeroed(p, 2 * FAR_SEGMENTS, sizeof *s->filled);
     s->far = pool_take(p, 2 * FAR_SEGMENTS, sizeof *s->far);
@@ -127,5 +128,5 @@ static double far_scale(struct chi_square_score *s, double z)
 double log_chi_square_scale(struct chi_square_score *s, double z)
 {
     if (fabs(z) > NEAR) return far_scale(s, z);
-    return (log_chi_square(&s->near, z) - log(s->near.df)) / 2;
+    return (log_chi_square(&s->near, z) - s->log_df) / 2;
 }

@@ -15,7 +15,7 @@ enum { FAR_SEGMENTS = 160 };
  * first falls into it. */
 struct chi_square_score {
     struct student near;
-    double log_k;                            /* K as in student.c */
+    double log_df, log_k;                    /* K as in student.c */
     bool *filled;
     double (*far)[STUDENT_TERMS];            /* below, then above */
 };

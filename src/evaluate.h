@@ -52,10 +52,9 @@ status evaluation_of(const copula *c, struct evaluation *e, pool *p);
 const char *evaluation_limit(const struct evaluation *e, enum question q);
 
 /* P(U_1 <= u_1, ..., U_d <= u_d), 0 and 1 allowed. *error is 0, or the standard error of a value by
- * quasi-Monte Carlo, or a bound on what cancellation may have left. Pairs to 1e-10 relative, those
- * of a grouped t to 1e-10, rotated ones to *error, at most 4e-16, where that is more. OUT_OF_DOMAIN
- * as evaluation_limit() says, and for a grouped t pair within 1e-13 of 0 or 1; NOT_SETTLED where
- * beyond pairs a rotation leaves less than three digits. */
+ * quasi-Monte Carlo, or a bound on what cancellation may have left. Pairs to 1e-10 relative,
+ * rotated ones to *error, at most 4e-16, where that is more. OUT_OF_DOMAIN as evaluation_limit()
+ * says; NOT_SETTLED where beyond pairs a rotation leaves less than three digits. */
 status cdf_at(const struct evaluation *e, const double *u, double *value, double *error);
 
 /* The same of a pair, 0 < u < 1, to 1e-15 absolute: much faster where a rotation makes it

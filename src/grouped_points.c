@@ -176,7 +176,7 @@ static status place(const struct elliptical_points *m, int event)
     g->log_placed = g->sum.log_integral;
     g->for_event = event;
     g->outside = g->sum.highest - LEFT_OUT;
-    return g->sum.settled ? OK : NOT_SETTLED;
+    return g->sum.roughly ? OK : NOT_SETTLED;
 }
 
 /* Learns column j, of which x is known; only ends of the nodes where little was may be passed over

@@ -5,8 +5,9 @@
  *   in to where the logarithm is within CUT of its highest, as long as that is much less than they
  *   span. A lower peak between nodes may be narrow and higher than it looks there: nodes drawn in
  *   around it tell. Then the step is halved until the sums over even and over odd nodes agree to
- *   3e-7: halving a step squares the error of the rule at least, for integrands analytic in a strip
- *   (Trefethen & Weideman 2014), so that of the sum over all is about 1e-13.
+ *   3e-11. Halving a step squares the error of the rule at least, for integrands analytic in a
+ *   strip (Trefethen & Weideman 2014), so that the sum over all is far better, but for parts of the
+ *   integrand that are smaller than that.
  *   Where the integrand has a cliff that is narrow beside its span, the rule is applied in t with
  *   the cliff at t = 0 of centre + width sinh(t), which it crosses in a few steps of t while the
  *   span grows with log(span/width) only.
@@ -22,8 +23,8 @@
 #include <math.h>
 
 enum { MOST_MOVES = 200, PEAK_NODES = 17, MOST_EQUAL_NODES = 385 };
-static const double CUT = 44, ENOUGH = 30, HALVES_APART = 3e-11, FIRST_REACH = 10;
-static const double CLIFF = 0.25;             /* of the peak, from a node to the next */
+static const double CUT = 44, ENOUGH = 30, SETTLED = 3e-11, ROUGHLY = 3e-7, FIRST_REACH = 10;
+static const double CLIFF = 0.25;             /* of its height, from a node to the next */
 
 double node_at(const struct placed_nodes *nodes, size_t k)
 {
@@ -63,8 +64,9 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes)
         half[k & 1] += exp(nodes->log_term[k] - s.highest) * node_weight(nodes, k);
     double ends = fmax(nodes->log_term[0], nodes->log_term[nodes->n - 1]);
     s.log_integral = s.highest + log(half[0] + half[1]);
-    s.within = ends < s.highest - ENOUGH;
-    s.settled = s.within && fabs(half[0] - half[1]) < HALVES_APART * (half[0] + half[1]);
+    double apart = fabs(half[0] - half[1]) / (half[0] + half[1]);
+    s.settled = ends < s.highest - ENOUGH && apart < SETTLED;
+    s.roughly = ends < s.highest - ENOUGH && apart < ROUGHLY;
     return s;
 }
 
@@ -170,31 +172,56 @@ static struct placed_sum with_more(struct placed_nodes *nodes, log_terms *of, vo
     return s;
 }
 
-/* The first of the two neighbours that are furthest apart, beside the peak. */
+static double beside_peak(const struct placed_nodes *nodes, size_t k, double highest)
+{
+    return k < nodes->n ? exp(nodes->log_term[k] - highest) : 0;
+}
+
+/* The first of the two neighbours between which ninth differences are largest: of a smooth
+ * integrand they are next to nothing, however steep it is. */
+static size_t roughest(const struct placed_nodes *nodes, double highest)
+{
+    static const double times[] = { 126, -84, 36, -9, 1 };
+    size_t at = 0;
+    double most = 0;
+    for (size_t k = 0; k + 1 < nodes->n; k++) {
+        double sum = 0;
+        for (size_t i = 0; i < 5; i++)
+            sum += times[i] * (beside_peak(nodes, k - i, highest)
+                               - beside_peak(nodes, k + 1 + i, highest));
+        if (fabs(sum) > most) at = k;
+        most = fmax(most, fabs(sum));
+    }
+    return at;
+}
+
+/* The first of the two neighbours that are furthest apart, which are so by `drop` of the range. */
 static size_t steepest(const struct placed_nodes *nodes, double highest, double *drop)
 {
     size_t at = 0;
-    *drop = 0;
-    for (size_t k = 0; k + 1 < nodes->n; k++) {
-        const double *f = nodes->log_term + k;
-        double apart = fabs(exp(f[0] - highest) - exp(f[1] - highest));
-        if (apart <= *drop) continue;
-        *drop = apart;
-        at = k;
+    double least = 1, most = 0, apart = 0;
+    for (size_t k = 0; k < nodes->n; k++) {
+        double here = beside_peak(nodes, k, highest), next = beside_peak(nodes, k + 1, highest);
+        least = fmin(least, here);
+        most = fmax(most, here);
+        if (k + 1 < nodes->n && fabs(here - next) > apart) at = k;
+        if (k + 1 < nodes->n) apart = fmax(apart, fabs(here - next));
     }
+    *drop = apart / (most - least);
     return at;
 }
 
 static void crowd_at_cliff(struct placed_nodes *nodes, double highest, log_terms *of, void *with)
 {
-    double from = nodes->first, to = node_at(nodes, nodes->n - 1), drop, centre, width;
+    double from = node_at(nodes, 0), to = node_at(nodes, nodes->n - 1), drop = 1, centre, width;
+    size_t k = roughest(nodes, highest);
     for (int i = 0;; i++) {
-        size_t k = steepest(nodes, highest, &drop);
         double left = node_at(nodes, k), right = node_at(nodes, k + 1);
         centre = left + (right - left) / 2;
         width = 2 * nodes->step;
-        if (drop < CLIFF || i > 20) break;
+        if (!(drop > CLIFF) || i > 20) break;
         fill(nodes, left, right, PEAK_NODES, of, with);
+        k = steepest(nodes, highest, &drop);
     }
     nodes->n = 2 * FIRST_NODES - 1;
     nodes->centre = centre;

@@ -30,8 +30,8 @@ double node_weight(const struct placed_nodes *nodes, size_t k);
 /* What a sum over the nodes says. */
 struct placed_sum {
     double highest, log_integral;    /* of log_term, of the integral */
-    bool within, settled;            /* nothing left at either end; settled: and every other node */
-};                                   /* would have done almost as well */
+    bool settled, roughly;           /* nothing left at either end, and every other node would have */
+};                                   /* done as well to 3e-11; to 3e-7 */
 
 struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
 
@@ -39,7 +39,7 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
  * that takes. */
 struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *with);
 
-/* The same, and as many as it takes to settle to about 1e-11, crowded around where the integrand
+/* The same, and as many as it takes to settle, which leaves an error below 3e-11, crowded around where the integrand
  * is steepest if equally spaced ones would have to be many. */
 struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most);
 
