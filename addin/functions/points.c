@@ -309,7 +309,7 @@ const function points_functions[] = {
             "does not fit. gumbel, frank and joe for up to 200 columns; a grouped t as in DENSITY. "
             "A singular matrix and perfect dependence are #NUM!. A row with a gap gives empty "
             "cells. What would take more than about 20 s is refused: 10,000 rows of gumbel take "
-            "that in some 120 columns, of a grouped t in some 90.",
+            "that in some 120 columns, of a grouped t in some 60.",
         .examples = {
             { "INDEX(CONDITIONAL(MODEL(\"clayton\";1);{0.5;0.5});1;2)", "0.444444444444444" },
             { "INDEX(CONDITIONAL(MODEL(\"independent\");{0.3;0.8});1;2)", "0.8" },
@@ -333,8 +333,8 @@ const function points_functions[] = {
             "columns before. It makes rows of a model from uniforms of one's own, or moves one "
             "line along its conditional distribution for a stress: with 0.99 in column 2 it "
             "answers what line 2 has in one of a hundred cases in which line 1 has what is in "
-            "column 1. Limits as in CONDITIONAL, but it takes some twelve times as long. "
-            "Numbers beyond 1 - 2^-53 become that.",
+            "column 1. Limits as in CONDITIONAL, but it takes some twelve times as long, of gaussian "
+            "and t hardly more. Numbers beyond 1 - 2^-53 become that.",
         .examples = {
             { "INDEX(FROMCONDITIONAL(MODEL(\"clayton\";1);{0.5;0.444444444444444});1;2)", "0.5" },
             { "INDEX(FROMCONDITIONAL(MODEL(\"gaussian\";0.5);{0.99;0.5});1;2)",
