@@ -26,6 +26,7 @@
 
 static const double LOG_SQRT_2_PI = 0.918938533204672742, FARTHEST = 300;
 static const double LEFT_OUT = 44, LEAST_LEFT = 30;      /* in logarithms, of placed_nodes.h */
+static const double STEEP = 1.2;                         /* growth from a node to the next */
 static const double MOVED = 8;                           /* a sum by so much: place nodes anew */
 
 static status score_of_column(struct elliptical_points *m, size_t j, pool *p)
@@ -51,12 +52,16 @@ status grouped_prepare(struct elliptical_points *m, pool *p)
     g->like = pool_take(p, m->d, sizeof *g->like);
     g->log_scale = pool_take(p, m->d, sizeof *g->log_scale);
     g->nodes.log_term = pool_take(p, MOST_NODES, sizeof *g->nodes.log_term);
+    g->nodes.hidden = pool_take(p, MOST_NODES, sizeof *g->nodes.hidden);
     g->given = pool_take(p, MOST_NODES, sizeof *g->given);
     g->y = pool_take(p, m->d, MOST_NODES * sizeof *g->y);
     g->x = pool_take(p, m->d, sizeof *g->x);
-    if (!g->score || !g->like || !g->log_scale || !g->nodes.log_term || !g->given || !g->y || !g->x)
+    if (!g->score || !g->like || !g->log_scale || !g->nodes.log_term || !g->nodes.hidden
+        || !g->given || !g->y || !g->x)
         return NO_MEMORY;
     status s = OK;
+    g->least_pivot = 1;
+    for (size_t j = 0; j < m->d; j++) g->least_pivot = fmin(g->least_pivot, m->factor[j * m->d + j]);
     for (size_t j = 0; s == OK && j < m->d; j++) s = score_of_column(m, j, p);
     return s;
 }
@@ -150,6 +155,33 @@ static void set_bounds(const struct elliptical_points *m)
     g->nodes.above = falls ? above - square / (2 * d) : HUGE_VAL;
 }
 
+/* How much column j grows from a node to the next, in logarithms, if that matters: before, it may
+ * be next to nothing, and of the event's column both may lie on the same side, far out. */
+static double growth_after(const struct elliptical_points *m, size_t j, size_t k)
+{
+    const struct grouped_points *g = m->groups;
+    const double *y = g->y + j * MOST_NODES + k, far = 40;
+    double next = g->log_scale[j][k + 1];
+    if (fabs(times_scale(g->x[j], next)) < g->least_pivot / 50) return 0;
+    if (j == g->learnt && fmin(fabs(y[0]), fabs(y[1])) > far && y[0] * y[1] > 0) return 0;
+    return next - g->log_scale[j][k];
+}
+
+/* Where a column grows by much from a node to the next, peaks may hide between them, below what the
+ * prior and the largest column at the first node allow. */
+static double hidden_after(const struct elliptical_points *m, size_t k)
+{
+    const struct grouped_points *g = m->groups;
+    double largest = 0, growth = 0, d = (double)g->learnt;
+    for (size_t j = 0; j < g->learnt; j++) {
+        growth = fmax(growth, growth_after(m, j, k));
+        largest = fmax(largest, fabs(times_scale(g->x[j], g->log_scale[j][k])));
+    }
+    if (g->event) growth = fmax(growth, growth_after(m, g->learnt, k));
+    if (growth < STEEP) return -HUGE_VAL;
+    return fmax(bound_at(g, k), bound_at(g, k + 1)) + 1 - largest * largest / (2 * d);
+}
+
 static void terms_at(struct placed_nodes *nodes, void *with)
 {
     const struct elliptical_points *m = with;
@@ -166,6 +198,7 @@ static void terms_at(struct placed_nodes *nodes, void *with)
     if (g->event) column_at_nodes(m, g->learnt);
     take_event(m);
     set_bounds(m);
+    for (size_t k = 0; k + 1 < nodes->n; k++) nodes->hidden[k] = hidden_after(m, k);
 }
 
 static status place(const struct elliptical_points *m, int event)

@@ -25,6 +25,7 @@ struct grouped_points {
     double *given;                    /* log-density of z and the columns learnt, at the nodes */
     double *y;                        /* columns at the nodes, d x MOST_NODES */
     struct signed_log *x;             /* t quantiles of the columns */
+    double least_pivot;               /* of the Cholesky factor */
     size_t learnt;                    /* so many columns */
     int event;                        /* what the next one is: 1 below, -1 above, 0 anywhere */
     int for_event;                    /* for which the nodes were placed, */

@@ -3,8 +3,8 @@
  * Method
  *   Nodes from -10 to 10 are spread until what lies beyond them is known to be nothing, then drawn
  *   in to where the logarithm is within CUT of its highest, as long as that is much less than they
- *   span. A lower peak between nodes may be narrow and higher than it looks there: nodes drawn in
- *   around it tell. Then the step is halved until the sums over even and over odd nodes agree to
+ *   span. A lower peak between nodes may be narrow and higher than it looks there, and one may be
+ *   hidden between nodes where the caller says that they do not tell: nodes drawn in there do. Then the step is halved until the sums over even and over odd nodes agree to
  *   3e-11. Halving a step squares the error of the rule at least, for integrands analytic in a
  *   strip (Trefethen & Weideman 2014), so that the sum over all is far better, but for parts of the
  *   integrand that are smaller than that.
@@ -55,6 +55,13 @@ static double highest_of(const struct placed_nodes *nodes)
     return most;
 }
 
+static bool hides_any(const struct placed_nodes *nodes, double least)
+{
+    for (size_t k = 0; nodes->hidden && k + 1 < nodes->n; k++)
+        if (nodes->hidden[k] >= least) return true;
+    return false;
+}
+
 struct placed_sum sum_over_nodes(const struct placed_nodes *nodes)
 {
     struct placed_sum s = { .highest = highest_of(nodes), .log_integral = -HUGE_VAL };
@@ -65,8 +72,9 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes)
     double ends = fmax(nodes->log_term[0], nodes->log_term[nodes->n - 1]);
     s.log_integral = s.highest + log(half[0] + half[1]);
     double apart = fabs(half[0] - half[1]) / (half[0] + half[1]);
-    s.settled = ends < s.highest - ENOUGH && apart < SETTLED;
-    s.roughly = ends < s.highest - ENOUGH && apart < ROUGHLY;
+    bool all = ends < s.highest - ENOUGH && !hides_any(nodes, s.highest - ENOUGH);
+    s.settled = all && apart < SETTLED;
+    s.roughly = all && apart < ROUGHLY;
     return s;
 }
 
@@ -111,14 +119,6 @@ static bool is_peak(const struct placed_nodes *nodes, size_t k)
     return f[k] > f[k - 1] && f[k] > f[k + 1];
 }
 
-/* The next node after k with a peak that looks too low; 0 for none. */
-static size_t low_peak_after(size_t k, const struct placed_nodes *nodes, double least)
-{
-    for (k++; k + 1 < nodes->n; k++)
-        if (nodes->log_term[k] < least && is_peak(nodes, k)) return k;
-    return 0;
-}
-
 /* How high a peak between these ends is, by nodes drawn in around it. */
 static double height_within(struct placed_nodes *nodes, struct span s, log_terms *of, void *with)
 {
@@ -133,19 +133,65 @@ static double height_within(struct placed_nodes *nodes, struct span s, log_terms
     return highest;
 }
 
-/* The span of the nodes drawn in, with the peaks that are higher than they look. */
+/* Between two nodes that do not tell: at nodes between them, and between those. */
+static double hidden_height(struct placed_nodes *nodes, struct span s, double least, int depth,
+                            log_terms *of, void *with)
+{
+    struct span within[PEAK_NODES];
+    int n = 0;
+    fill(nodes, s.from, s.to, PEAK_NODES, of, with);
+    double highest = highest_of(nodes);
+    for (size_t k = 0; depth > 0 && k + 1 < nodes->n; k++)
+        if (nodes->hidden && nodes->hidden[k] >= least)
+            within[n++] = (struct span){ node_at(nodes, k), node_at(nodes, k + 1) };
+    highest = fmax(highest, height_within(nodes, span_above(nodes, highest), of, with));
+    for (int i = 0; i < n; i++)
+        highest = fmax(highest, hidden_height(nodes, within[i], least, depth - 1, of, with));
+    return highest;
+}
+
+/* Where the nodes leave open how high the logarithm is. */
+struct open_span {
+    struct span span;
+    double height;
+};
+
+/* Peaks that look too low at the nodes, and places between nodes that do not tell, both outside of
+ * where it is high. How many. */
+static size_t take_open_spans(const struct placed_nodes *nodes, double least, struct span high,
+                              struct open_span *open, size_t room)
+{
+    size_t n = 0;
+    for (size_t k = 0; k + 1 < nodes->n && n < room; k++) {
+        bool peak = k > 0 && nodes->log_term[k] < least && is_peak(nodes, k);
+        bool hides = nodes->hidden && nodes->hidden[k] >= least;
+        struct span s = { node_at(nodes, k - peak), node_at(nodes, k + 1) };
+        if ((peak || hides) && (s.from < high.from || s.to > high.to))
+            open[n++].span = s;
+    }
+    return n;
+}
+
+/* The span of the nodes drawn in. */
 static struct span drawn_in(struct placed_nodes *nodes, log_terms *of, void *with)
 {
-    double least = highest_of(nodes) - CUT;
+    struct open_span open[FIRST_NODES];
+    double highest = highest_of(nodes), least = highest - CUT;
     struct span whole = { nodes->first, node_at(nodes, nodes->n - 1) };
-    struct span in = span_above(nodes, least);
-    for (size_t k = 0, n = nodes->n; (k = low_peak_after(k, nodes, least)) > 0;) {
-        struct span peak = around(nodes, k, k);
-        if (height_within(nodes, peak, of, with) > least) {
-            in.from = fmin(in.from, peak.from);
-            in.to = fmax(in.to, peak.to);
-        }
-        fill(nodes, whole.from, whole.to, n, of, with);
+    size_t all = nodes->n, n = take_open_spans(nodes, least, span_above(nodes, least), open,
+                                               FIRST_NODES);
+    for (size_t i = 0; i < n; i++) {
+        open[i].height = hidden_height(nodes, open[i].span, least, 3, of, with);
+        highest = fmax(highest, open[i].height);
+    }
+    if (n > 0) fill(nodes, whole.from, whole.to, all, of, with);
+    least = highest - CUT;
+    struct span in = { HUGE_VAL, -HUGE_VAL };
+    if (highest_of(nodes) >= least) in = span_above(nodes, least);
+    for (size_t i = 0; i < n; i++) {
+        if (open[i].height < least) continue;
+        in.from = fmin(in.from, open[i].span.from);
+        in.to = fmax(in.to, open[i].span.to);
     }
     return in;
 }

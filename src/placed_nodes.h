@@ -17,11 +17,13 @@ struct placed_nodes {
     double first, step;              /* of t */
     double centre, width;            /* width 0: equally spaced */
     double *log_term;                /* MOST_NODES */
+    double *hidden;                  /* MOST_NODES, or NULL: bound on the logarithm between a node
+                                      * and the next where those do not tell, else -HUGE_VAL */
     bool halved;                     /* those of even number are known */
     double below, above;             /* bounds on the logarithm beyond either end; HUGE_VAL: none */
 };
 
-/* Sets log_term, below and above, of nodes whose places are set. */
+/* Sets log_term, hidden, below and above, of nodes whose places are set. */
 typedef void log_terms(struct placed_nodes *nodes, void *with);
 
 double node_at(const struct placed_nodes *nodes, size_t k);
@@ -30,8 +32,8 @@ double node_weight(const struct placed_nodes *nodes, size_t k);
 /* What a sum over the nodes says. */
 struct placed_sum {
     double highest, log_integral;    /* of log_term, of the integral */
-    bool settled, roughly;           /* nothing left at either end, and every other node would have */
-};                                   /* done as well to 3e-11; to 3e-7 */
+    bool settled, roughly;           /* nothing left at either end or hidden, and every other node */
+};                                   /* would have done as well to 3e-11; to 3e-7 */
 
 struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
 
