@@ -113,7 +113,7 @@ static double integral_by_halves(const struct grouped_pair *p, double from, doub
 
 status grouped_pair_cdf(const struct elliptical_points *m, const double *u, double *value)
 {
-    struct placed_nodes pair_nodes = { .log_term = m->groups->nodes.log_term }, *nodes = &pair_nodes;
+    struct placed_nodes placed = { .log_term = m->groups->nodes.log_term }, *nodes = &placed;
     struct grouped_pair p = { .correlation = m->matrix[1] };
     for (int j = 0; j < 2; j++) {
         p.score[j] = m->groups->score[j];

@@ -6,7 +6,8 @@
  *   probabilities are integrals over z of those of normal columns, by the trapezoid rule with its
  *   nodes where the columns so far put z (placed_nodes.c), and where they do together with the
  *   event where that is in a tail. Nodes are placed anew when a column moves z away from them. All
- *   in logarithms. The inverse is found by Newton's steps on the logarithm of the smaller tail in
+ *   in logarithms. What z says may have several peaks, where columns of different df conflict:
+ *   between them a column grows by orders of magnitude, and there peaks are looked for. The inverse is found by Newton's steps on the logarithm of the smaller tail in
  *   asinh(x/sqrt(df)).
  *
  * Special cases
@@ -61,7 +62,8 @@ status grouped_prepare(struct elliptical_points *m, pool *p)
         return NO_MEMORY;
     status s = OK;
     g->least_pivot = 1;
-    for (size_t j = 0; j < m->d; j++) g->least_pivot = fmin(g->least_pivot, m->factor[j * m->d + j]);
+    for (size_t j = 0; j < m->d; j++)
+        g->least_pivot = fmin(g->least_pivot, m->factor[j * m->d + j]);
     for (size_t j = 0; s == OK && j < m->d; j++) s = score_of_column(m, j, p);
     return s;
 }

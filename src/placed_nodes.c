@@ -4,10 +4,11 @@
  *   Nodes from -10 to 10 are spread until what lies beyond them is known to be nothing, then drawn
  *   in to where the logarithm is within CUT of its highest, as long as that is much less than they
  *   span. A lower peak between nodes may be narrow and higher than it looks there, and one may be
- *   hidden between nodes where the caller says that they do not tell: nodes drawn in there do. Then the step is halved until the sums over even and over odd nodes agree to
- *   3e-11. Halving a step squares the error of the rule at least, for integrands analytic in a
- *   strip (Trefethen & Weideman 2014), so that the sum over all is far better, but for parts of the
- *   integrand that are smaller than that.
+ *   hidden between nodes where the caller says that they do not tell: nodes drawn in there do. Then
+ *   the step is halved until the sums over even and over odd nodes agree to 3e-11. Halving a step
+ *   squares the error of the rule at least, for integrands analytic in a strip (Trefethen &
+ *   Weideman 2014), so that the sum over all is far better, but for parts of the integrand that are
+ *   smaller than that.
  *   Where the integrand has a cliff that is narrow beside its span, the rule is applied in t with
  *   the cliff at t = 0 of centre + width sinh(t), which it crosses in a few steps of t while the
  *   span grows with log(span/width) only.
@@ -291,10 +292,12 @@ struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *wi
     return sum_over_nodes(nodes);
 }
 
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most)
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
+                              size_t most)
 {
     span_nodes(nodes, of, with);
-    struct placed_sum s = with_more(nodes, of, with, most < MOST_EQUAL_NODES ? most : MOST_EQUAL_NODES);
+    size_t equal = most < MOST_EQUAL_NODES ? most : MOST_EQUAL_NODES;
+    struct placed_sum s = with_more(nodes, of, with, equal);
     if (s.settled || !isfinite(s.highest)) return s;
     crowd_at_cliff(nodes, s.highest, of, with);
     return with_more(nodes, of, with, most);

@@ -10,8 +10,8 @@
 
 enum { FIRST_NODES = 49, MOST_NODES = 3073 };
 
-/* Equally spaced, or crowded around `centre`: centre + width sinh(t) with equally spaced t. With the
- * logarithm of the integrand at each. */
+/* Equally spaced, or crowded around `centre`: centre + width sinh(t) with equally spaced t. With
+ * the logarithm of the integrand at each. */
 struct placed_nodes {
     size_t n;
     double first, step;              /* of t */
@@ -32,8 +32,8 @@ double node_weight(const struct placed_nodes *nodes, size_t k);
 /* What a sum over the nodes says. */
 struct placed_sum {
     double highest, log_integral;    /* of log_term, of the integral */
-    bool settled, roughly;           /* nothing left at either end or hidden, and every other node */
-};                                   /* would have done as well to 3e-11; to 3e-7 */
+    bool settled, roughly;           /* nothing left at either end or hidden, and every other */
+};                                   /* node would have done as well to 3e-11; to 3e-7 */
 
 struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
 
@@ -41,8 +41,10 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
  * that takes. */
 struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *with);
 
-/* The same, and as many as it takes to settle, which leaves an error below 3e-11, crowded around where the integrand
- * is steepest if equally spaced ones would have to be many. */
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with, size_t most);
+/* The same, and as many as it takes to settle, which leaves an error below 3e-11, but no more than
+ * `most`; crowded around where the integrand is steepest if equally spaced ones would have to be
+ * many. */
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
+                              size_t most);
 
 #endif

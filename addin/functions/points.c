@@ -243,8 +243,8 @@ const function points_functions[] = {
             "Pairs to 1e-10 relative, in the tails too: for gaussian and t the integral of a "
             "conditional probability, which is positive, and likewise where a rotation would make "
             "numbers cancel; for a grouped t also the integral over its chi-squares. A rotation "
-            "asks the unrotated copula at 1 - u, which ends at 1e-16: near u = 0 no more than about "
-            "1e-16 / u relative is left. Where that is worse than 1e-10, WHY states by how much, "
+            "asks the unrotated copula at 1 - u, which ends at 1e-16: near u = 0 no more than "
+            "about 1e-16 / u relative is left. Where that is worse than 1e-10, WHY states by how much, "
             "which is never above 4e-16. gaussian and t beyond pairs by quasi-Monte Carlo (Genz "
             "1992; Genz & Bretz 2002) with 32,768 points, fewer for many rows, for up to 128 "
             "columns; WHY states the standard error. Archimedean families in any dimension by "
@@ -333,8 +333,8 @@ const function points_functions[] = {
             "columns before. It makes rows of a model from uniforms of one's own, or moves one "
             "line along its conditional distribution for a stress: with 0.99 in column 2 it "
             "answers what line 2 has in one of a hundred cases in which line 1 has what is in "
-            "column 1. Limits as in CONDITIONAL, but it takes some twelve times as long, of gaussian "
-            "and t hardly more. Numbers beyond 1 - 2^-53 become that.",
+            "column 1. Limits as in CONDITIONAL, but it takes some twelve times as long, of "
+            "gaussian and t hardly more. Numbers beyond 1 - 2^-53 become that.",
         .examples = {
             { "INDEX(FROMCONDITIONAL(MODEL(\"clayton\";1);{0.5;0.444444444444444});1;2)", "0.5" },
             { "INDEX(FROMCONDITIONAL(MODEL(\"gaussian\";0.5);{0.99;0.5});1;2)",
