@@ -7,8 +7,8 @@
  *   nodes where the columns so far put z (placed_nodes.c), and where they do together with the
  *   event where that is in a tail. Nodes are placed anew when a column moves z away from them. All
  *   in logarithms. What z says may have several peaks, where columns of different df conflict:
- *   between them a column grows by orders of magnitude, and there peaks are looked for. The inverse is found by Newton's steps on the logarithm of the smaller tail in
- *   asinh(x/sqrt(df)).
+ *   between them a column grows by orders of magnitude, and there peaks are looked for. The inverse
+ *   is found by Newton's steps on the logarithm of the smaller tail in asinh(x/sqrt(df)).
  *
  * Special cases
  *   Correlations near -1 and 1 make narrow peaks, whose integrals may need more nodes than there
