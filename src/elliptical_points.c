@@ -90,7 +90,7 @@ static status pair_by_limits(const struct elliptical_points *m, const double *u,
 {
     double correlation = m->matrix[1];
     if (m->grouped) {
-        return m->singular ? OUT_OF_DOMAIN : grouped_pair_cdf(m, u, value);
+        return grouped_pair_cdf(m, u, value);
     } else if (fabs(correlation) == 1) {
         *value = correlation > 0 ? fmin(u[0], u[1]) : fmax(0, u[0] - (1 - u[1]));
     } else if (m->df) {
@@ -254,9 +254,6 @@ static const char *limit(const struct evaluation *e, enum question q)
         if (m->df[j] < LOWEST_DF_IN_BOX)
             return "has less than 0.05 degrees of freedom, too few for its distribution function "
                    "beyond pairs";
-    if (q == ASK_CDF && m->grouped && m->d == 2 && m->singular)
-        return "has several degrees of freedom and a correlation of 1 or -1: the distribution "
-               "function of such a pair has no integral that settles";
     if ((q == ASK_DENSITY || q == ASK_CONDITIONAL) && m->singular)
         return "has a singular matrix: it has no density and some columns no conditional "
                "distribution";

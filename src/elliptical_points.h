@@ -46,21 +46,17 @@ bool elliptical_box_halve(struct elliptical_points *m);
 status elliptical_box(const struct elliptical_points *m, const double *x, double *value,
                       double *error);
 
-/* ---- grouped_points.c: several df, one uniform driving all chi-squares ---- */
+/* ---- grouped_points.c, grouped_pair.c: several df, one uniform driving all chi-squares ---- */
 
 struct grouped_points;
 
 status grouped_prepare(struct elliptical_points *m, pool *p);
 
-/* steps of the integrals */
-size_t grouped_nodes(const struct elliptical_points *m);
-
 /* The points where the columns are sqrt(df/chi-square) times a normal number. */
 void grouped_scores(const struct elliptical_points *m, const double *u, double *x);
 
-/* Integrals over the uniform. OUT_OF_DOMAIN where u is within 1e-13 of 0 or 1, or its quantile
- * overflows, or the columns together make a uniform within 1e-15 of 0 or 1 likely: with 3 and 8
- * degrees of freedom already (1e-9, 0.3). */
+/* Integrals over the uniform, for every u within (0;1). NOT_SETTLED where correlations within about
+ * 1e-9 of -1 or 1 leave a peak too narrow to be found. */
 status grouped_pair_cdf(const struct elliptical_points *m, const double *u, double *value);
 status grouped_log_density(const struct elliptical_points *m, const double *u, double *value);
 status grouped_conditional(const struct elliptical_points *m, const double *u, double *w);

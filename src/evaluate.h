@@ -62,9 +62,8 @@ status evaluation_of(const copula *c, struct evaluation *e, pool *p);
 const char *evaluation_limit(const struct evaluation *e, enum question q);
 
 /* P(U_1 <= u_1, ..., U_d <= u_d), 0 and 1 allowed. *error is 0, or the standard error of a value by
- * quasi-Monte Carlo; what is not by that to 1e-10 relative, in the tails and rotated too, pairs of
- * a grouped t to 1e-10. OUT_OF_DOMAIN as evaluation_limit() says, and for a grouped t pair within
- * 1e-13 of 0 or 1. */
+ * quasi-Monte Carlo; what is not by that to 1e-10 relative, in the tails and rotated too.
+ * OUT_OF_DOMAIN as evaluation_limit() says. */
 status cdf_at(const struct evaluation *e, const double *u, double *value, double *error);
 
 /* The same of a pair, 0 < u < 1, to 1e-15 absolute: without the integral that rotation 180 may

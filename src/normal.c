@@ -5,6 +5,7 @@
  *            Shepherd & Laframboise (1981), Chebyshev approximation of (1 + 2x) exp(x^2) erfc x.
  *            The coefficients are a Chebyshev fit in quadruple precision (error 2e-16). The part
  *            of x^2 that rounding loses is put back into the exponential.
+ *   log Phi  below -10 by Laplace's continued fraction (Abramowitz & Stegun 1964, 26.2.14).
  *   inverse  Wichura (1988), algorithm AS 241: rational functions of u - 1/2 in the middle and of
  *            sqrt(-log p) in the tails.
  *   One formula for all rows, chosen between by selection, so that the loops become vector code.
@@ -62,6 +63,15 @@ double normal_probability(double x)
     if (fabs(x) > 37.5) return x < 0.0 ? 0x1p-1022 : 1.0;
     double tail = upper_tail(fabs(x));
     return x < 0.0 ? tail : 1.0 - tail;
+}
+
+double normal_log_probability(double x)
+{
+    if (x > 0.0) return portable_log1p(-normal_probability(-x));
+    if (x > -10.0) return portable_log(normal_probability(x));
+    double fraction = -x;
+    for (int k = 24; k > 0; k--) fraction = k / fraction - x;
+    return -0.5 * x * x - 0.918938533204672742 - portable_log(fraction);
 }
 
 FOR_EACH_PROCESSOR

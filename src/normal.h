@@ -10,6 +10,9 @@
  * 1 above. */
 double normal_probability(double x);
 
+/* log P(Z <= x) for every finite x, error below 2e-14, or 1e-15 of the result where that is more */
+double normal_log_probability(double x);
+
 /* x with P(Z <= x) = u for 0 < u < 1 (elsewhere infinite or NaN); relative error below 2e-15 */
 double normal_quantile(double u);
 

@@ -16,7 +16,7 @@ static const double LONGEST = 20;         /* seconds that a call may keep the of
 struct answers {
     samples s;
     double error;             /* the largest that a row has */
-    size_t empty, too_far;    /* rows with a gap, and those that a grouped t says nothing of */
+    size_t empty;             /* rows with a gap */
 };
 
 /* One row of points; the answer goes into `to`. */
@@ -77,19 +77,11 @@ static status check_time(const argument *in, const struct evaluation *e, seconds
     return within_time(seconds, whole, "point", r);
 }
 
-static bool is_grouped(const copula *c)
-{
-    for (size_t j = 1; c->df && j < c->dimension; j++)
-        if (c->df[j] != c->df[0]) return true;
-    return false;
-}
-
 static status each_row(const argument *in, const struct evaluation *e, answer_row *of,
                        struct answers *a, report *r)
 {
     const samples *points = &in[POINTS].data;
     double *u = pool_take(r->pool, points->cols, 2 * sizeof *u), *to = u + points->cols;
-    bool grouped = is_grouped(in[ASKED].model);
     if (!u) return NO_MEMORY;
     for (size_t i = 0; i < a->s.rows; i++) {
         double error = 0;
@@ -97,7 +89,6 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
         status s = whole ? of(e, u, to, &error) : OK;
         if (s == NO_MEMORY) return s;
         if (!whole) a->empty++;
-        if (grouped && s == OUT_OF_DOMAIN) a->too_far++;
         if (s == OK && whole) a->error = fmax(a->error, error);
         for (size_t j = 0; j < a->s.cols; j++)
             column(&a->s, j)[i] = !whole ? gap() : s != OK ? fault(s)
@@ -110,10 +101,6 @@ static void remark_on_rows(const struct answers *a, report *r)
 {
     if (a->empty)
         remark(r, "%zu row%s of points with gaps left empty", a->empty, plural(a->empty));
-    if (a->too_far)
-        remark(r, "%zu row%s too far out for a grouped t: u within 1e-13 of 0 or 1, a quantile "
-               "beyond 1e308, or columns that together put the chi-squares some 8 standard "
-               "deviations out", a->too_far, plural(a->too_far));
 }
 
 /* `cols` answers a row. */
@@ -283,10 +270,10 @@ const function points_functions[] = {
         .detail =
             "Pairs to 1e-10 relative, in the tails too: for gaussian and t the integral of a "
             "conditional probability, which is positive, and rotated ones of all families by forms "
-            "in which nothing cancels; a pair of a grouped t to 1e-10 absolute. gaussian and t "
-            "beyond pairs by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with 32,768 points, "
-            "fewer for many rows, of which columns beyond the 128th are random numbers; WHY states "
-            "the standard error. Archimedean families in any dimension by their generator, rotated "
+            "in which nothing cancels; for a grouped t also the integral over its chi-squares. "
+            "gaussian and t beyond pairs by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with "
+            "32,768 points, fewer for many rows, of which columns beyond the 128th are random "
+            "numbers; WHY states the standard error. Archimedean families in any dimension by their generator, rotated "
             "by 180 as the mean over their frailty (Marshall & Olkin 1988) of the product of what "
             "the columns then do by themselves, to 1e-10 relative too. A row with a gap gives an "
             "empty cell; points with a header give a column with the header cdf. The probability "
@@ -316,12 +303,10 @@ const function points_functions[] = {
         .help = "The density of a model, one value a row of points.",
         .detail =
             "Archimedean families in any dimension by the derivatives of their generator (Hofert, "
-            "Maechler & McNeil 2012); a grouped t by an integral over its chi-squares, for u from "
-            "1e-13 to 1 - 1e-13 unless the columns together put the chi-squares some 8 standard "
-            "deviations out, as with df 3 and 8 {1e-9;0.3} does: #NUM!, and WHY says so. A "
-            "singular matrix and perfect dependence have no density: #NUM!. So has a density "
-            "beyond 1e308. A row with a gap gives an empty cell; below a header the result begins "
-            "with the word density. What would take more than about 20 s is refused.",
+            "Maechler & McNeil 2012); a grouped t by an integral over its chi-squares. A singular "
+            "matrix and perfect dependence have no density: #NUM!. So has a density beyond 1e308. "
+            "A row with a gap gives an empty cell; below a header the result begins with the word "
+            "density. What would take more than about 20 s is refused.",
         .examples = {
             { "DENSITY(MODEL(\"gaussian\";0.5);{0.5;0.5})", "1.15470053837925" },
             { "DENSITY(MODEL(\"clayton\";1;;;3);{0.5;0.5;0.5})", "1.5" },
@@ -345,10 +330,10 @@ const function points_functions[] = {
             "The transform of Rosenblatt (1952): column 1 as it is, column j the probability that "
             "the line is at most what it is, given the columns before. Of rows that follow the "
             "model the result is uniform and independent, which is a way to look where a model "
-            "does not fit. A grouped t as in DENSITY. A singular matrix and perfect dependence are "
+            "does not fit. A singular matrix and perfect dependence are "
             "#NUM!. A row with a gap gives empty cells. What would take more than about 20 s is "
             "refused: 10,000 rows of gumbel take that in some 1,800 columns, one row in some "
-            "6,000, and 10,000 of a grouped t in some 90.",
+            "6,000, and 10,000 of a grouped t in some 60.",
         .examples = {
             { "INDEX(CONDITIONAL(MODEL(\"clayton\";1);{0.5;0.5});1;2)", "0.444444444444444" },
             { "INDEX(CONDITIONAL(MODEL(\"independent\");{0.3;0.8});1;2)", "0.8" },
@@ -372,8 +357,8 @@ const function points_functions[] = {
             "columns before. It makes rows of a model from uniforms of one's own, or moves one "
             "line along its conditional distribution for a stress: with 0.99 in column 2 it "
             "answers what line 2 has in one of a hundred cases in which line 1 has what is in "
-            "column 1. Limits as in CONDITIONAL, but it takes some twelve times as long. "
-            "Numbers beyond 1 - 2^-53 become that.",
+            "column 1. Limits as in CONDITIONAL, but it takes some twelve times as long, of "
+            "gaussian and t hardly more. Numbers beyond 1 - 2^-53 become that.",
         .examples = {
             { "INDEX(FROMCONDITIONAL(MODEL(\"clayton\";1);{0.5;0.444444444444444});1;2)", "0.5" },
             { "INDEX(FROMCONDITIONAL(MODEL(\"gaussian\";0.5);{0.99;0.5});1;2)",

@@ -110,9 +110,18 @@ static void short_and_long(void **state)
     ready(&e, c, &p);
     assert_true(1e4 * cdf_seconds_at(&e, u) < 3);
     assert_true(kendall_seconds(&e, 10000) > 60);
+    s.df[1] = 7;
+    ready(&e, c, &p);
+    assert_true(1e4 * cdf_seconds_at(&e, u) < 20);
     s.df[1] = 0.05;
     ready(&e, c, &p);
-    assert_true(1e4 * cdf_seconds_at(&e, u) > 60);
+    assert_true(1e4 * cdf_seconds_at(&e, u) > 20);
+    c = elliptical(&s, "t", 20, 0.5, 4);
+    s.df[1] = 30;
+    ready(&e, c, &p);
+    assert_true(1e4 * conditional_seconds_at(&e, u) < 10);
+    assert_true(1e4 * from_conditional_seconds_at(&e, u) < 20);
+    assert_true(1e4 * from_conditional_seconds_at(&e, u) > 2);
     pool_empty(&p);
 }
 

@@ -34,6 +34,22 @@ static void probability_is_close(void **state)
     assert_same(normal_probability(-37.6) > 0 ? 1.0 : 0.0, 1.0);
 }
 
+/* As far as the long double erfc goes, and beyond by the bounds of Gordon (1941): Mills' ratio is
+ * between x/(1 + x^2) and 1/x. */
+static void logarithm_is_close(void **state)
+{
+    (void)state;
+    for (double x = -140; x < 40; x += 0.0371) {
+        long double want = x < 0 ? logl(exact_probability(x)) : log1pl(-exact_probability(-x));
+        assert_within(normal_log_probability(x), (double)want,
+                      2e-14 + 1e-15 * fabs((double)want));
+    }
+    for (double x = 200; x < 1e100; x *= 1e5) {
+        double at = normal_log_probability(-x) + x * x / 2 + log(x) + log(2 * acos(-1)) / 2;
+        assert_within(at, -0.5 / (x * x), 0.5 / (x * x) + 1e-15 * x * x);
+    }
+}
+
 static void quantile_is_close(void **state)
 {
     (void)state;
@@ -106,6 +122,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(probability_is_close),
+        cmocka_unit_test(logarithm_is_close),
         cmocka_unit_test(quantile_is_close),
         cmocka_unit_test(quantile_is_odd),
         cmocka_unit_test(many_at_a_time),
