@@ -15,6 +15,7 @@
 #include "elementary.h"
 #include "root.h"
 
+#include <float.h>
 #include <math.h>
 
 double log_added(double a, double b)
@@ -136,7 +137,7 @@ static double over(double log_t, const void *with)
 static status solve(const struct wanted *k, double *log_t)
 {
     double low = k->g->log_inverse(1 - 0x1p-53, k->theta);
-    double high = k->g->log_inverse(1e-300, k->theta);
+    double high = k->g->log_inverse(DBL_MIN, k->theta);
     if (over(low, k) <= 0) {
         *log_t = low;
         return OK;

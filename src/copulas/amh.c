@@ -130,9 +130,20 @@ static double conditional(double u, double v, double theta)
     return v / below * (slope / below);
 }
 
+/* For theta > 0 where squares of u or w might underflow: x = v / alpha, with a from its positive
+ * parts. */
+static double far_quantile(double u, double w, double theta)
+{
+    double beta = theta * (1 - u), alpha = (1 - theta) + theta * u;
+    double a = theta * ((1 - w) + w * ((1 - theta) + theta * u * (2 - u)));
+    double b = (1 - theta) / alpha - 2 * w * beta, root = sqrt(b * b + 4 * a * w);
+    return alpha * (b >= 0 ? 2 * w / (b + root) : (root - b) / (2 * a));
+}
+
 /* a v^2 + b v = c, with bottom = alpha + beta v */
 static double conditional_quantile(double u, double w, double theta)
 {
+    if (theta > 0 && fmin(u, w) < 0x1p-53) return far_quantile(u, w, theta);
     double beta = theta * (1 - u), alpha = theta > 0 ? (1 - theta) + theta * u : 1 - beta;
     double a = theta - w * beta * beta, b = (1 - theta) - 2 * w * alpha * beta;
     double c = w * alpha * alpha, below_root = b * b + 4 * a * c;

@@ -6,6 +6,7 @@
  *   Olkin 1988). A pair with negative theta is drawn by inverting its conditional distribution:
  *   with a = -theta, dC/du = w gives v^a = 1 - u^a (1 - w^(a/(1-a))).
  *   With negative theta C = max(u^a + v^a - 1, 0)^(1/a).
+ *   Points with theta > 0: clayton_points.c.
  *   Spearman's rho is a hypergeometric series at 1, positive and negative theta having one each;
  *   where dependence is strong, strong_rho.c.
  *
@@ -20,6 +21,7 @@
  */
 #include "families.h"
 #include "../archimedean.h"
+#include "../clayton_points.h"
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../slow_series.h"
@@ -129,11 +131,23 @@ static double log_derivative(size_t order, double log_t, double theta)
     return sum - (1 / a + (double)order) * portable_log1pexp(log_t);
 }
 
-/* For theta in (-1;0), a = -theta: log(u^a + v^a - 1) / a, -infinity where nothing lies. */
+/* ---- pairs with negative theta ---- */
+
+/* u^a - u for a near 1 */
+static double more_than(double u, double a)
+{
+    return u * expm1((a - 1) * log(u));
+}
+
+/* For theta in (-1;0), a = -theta: log(u^a + v^a - 1) / a, -infinity where nothing lies. What is
+ * near 1 is kept as what it lacks, and a near 1 as what u^a exceeds u by. */
 static double log_cdf(double u, double v, double a)
 {
-    double below = expm1(a * log(u)) + expm1(a * log(v));
-    return below > -1 ? log1p(below) / a : -HUGE_VAL;
+    double small = fmin(u, v), large = fmax(u, v), missing = expm1(a * log(large)), sum;
+    if (a > 0.5) sum = ((large - 1) + small) + more_than(small, a) + more_than(large, a);
+    else sum = pow(small, a) + missing;
+    if (sum > 0.5) return log1p(expm1(a * log(small)) + missing) / a;
+    return sum > 0 ? log(sum) / a : -HUGE_VAL;
 }
 
 static double pair_cdf(double u, double v, double theta)
@@ -185,7 +199,7 @@ const family clayton_family = {
     .draw = draw_clayton,
     .frailty = &gamma_frailty,
     .psi = psi,
-    .evaluator = &archimedean_evaluator,
+    .evaluator = &clayton_evaluator,
     .generator = &generator,
     .pair = &pair,
     .use = "losses that are small or absent together; by rotation 180 large ones",
