@@ -195,6 +195,7 @@ const family clayton_family = {
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
     .rho_from_theta = rho_from_theta,
+    .one_minus_rho = one_minus_rho_of_clayton,
     .tail = tail,
     .draw = draw_clayton,
     .frailty = &gamma_frailty,

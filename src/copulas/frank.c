@@ -246,6 +246,7 @@ const family frank_family = {
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
     .rho_from_theta = rho_from_theta,
+    .one_minus_rho = one_minus_rho,
     .tail = tail,
     .draw = draw_frank,
     .frailty = &log_series_frailty,

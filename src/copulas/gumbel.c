@@ -61,6 +61,23 @@ static status rho_from_theta(double theta, double df, double *rho)
     return OK;
 }
 
+/* (1 + A0)^-2 - (1 + A)^-2, where A0 = max(w, 1 - w) is Pickands' function of the upper bound */
+static double below_bound(double p, double theta)
+{
+    double small = exp(-p), bound = 1 / (1 + small), rise = expm1(log1p(exp(-theta * p)) / theta);
+    double a = bound * (1 + rise), ends = (1 + bound) * (1 + a);
+    return bound * rise * (2 + bound + a) / (ends * ends) * small * bound * bound;
+}
+
+/* Where theta is large all of it lies within 40 in theta p. */
+static double one_minus_rho(double theta)
+{
+    double sum = 0;
+    for (int panel = 0; panel < 8; panel++)
+        sum += integral_over(below_bound, theta, 5 * panel / theta, 5 * (panel + 1) / theta);
+    return 24 * sum;
+}
+
 /* 2 - 2^(1/theta) */
 static double tail(double theta, double df, enum corner corner)
 {
@@ -96,6 +113,7 @@ const family gumbel_family = {
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
     .rho_from_theta = rho_from_theta,
+    .one_minus_rho = one_minus_rho,
     .tail = tail,
     .draw = draw_by_frailty,
     .frailty = &stable_frailty,

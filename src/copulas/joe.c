@@ -187,6 +187,7 @@ const family joe_family = {
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
     .rho_from_theta = rho_from_theta,
+    .one_minus_rho = one_minus_rho_of_joe,
     .tail = tail,
     .draw = draw_by_frailty,
     .frailty = &sibuya_frailty,

@@ -152,13 +152,21 @@ static double rho_over(double x, const void *rho)
     return rho_of_log(x) - *(const double *)rho;
 }
 
+/* 1 - rho = (x + exp(-x) - 1) / (cosh x - 1) */
+static double rho_over_strong(double x, const void *rho)
+{
+    double half = sinh(x / 2);
+    return (1 - *(const double *)rho) - (x + expm1(-x)) / (2 * half * half);
+}
+
 /* rho is near x/3 for small x, and 1 - rho below 2 x exp(-x) for large. */
 static status theta_from_spearman(double rho, double *theta)
 {
     double size = fabs(rho), x = 0;
     if (!(size < 1)) return OUT_OF_DOMAIN;
     double far = fmin(700, 3 * size + 8 * size - 1.5 * log(1 - size));
-    status s = size < 1e-300 ? OK : root_between(rho_over, &size, 2.9 * size, far, &x);
+    status s = size < 1e-300 ? OK : root_between(size < 0.9 ? rho_over : rho_over_strong, &size,
+                                                 2.9 * size, far, &x);
     *theta = exp(copysign(x, rho));
     return s;
 }

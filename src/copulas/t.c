@@ -7,8 +7,8 @@
  *
  *   Spearman's rho: t_rho.c.
  *
- *   Tail dependence: Embrechts, McNeil & Straumann (2002), twice the tail of a t with df + 1 degrees
- *   of freedom.
+ *   Tail dependence: Embrechts, McNeil & Straumann (2002), twice the tail of a t with df + 1
+ *   degrees of freedom.
  *
  * Accuracy
  *   rho and tail dependence to 1e-13.

@@ -4,6 +4,7 @@
 #include "asked.h"
 
 #include "../../src/pair_measures.h"
+#include "../../src/spearman_inverse.h"
 
 #include <float.h>
 
@@ -128,6 +129,28 @@ static void rho_of_joe_near_independence(void **state)
     csv_free(t);
 }
 
+/* extreme_theta_of_rho.csv; clayton and joe have 1 - rho from strong_rho.c, which has its test */
+static void theta_of_strong_rho(void **state)
+{
+    (void)state;
+    struct csv *t = csv_read("extreme_theta_of_rho.csv");
+    for (size_t i = 0; i < t->rows; i++) {
+        double theta, turned, rho = csv_number(t, i, "rho"), want = csv_number(t, i, "theta");
+        const family *f = family_named(csv_text(t, i, "family"));
+        const family *own[] = { family_named("clayton"), family_named("joe") };
+        assert_int_equal(theta_from_rho(f, rho, 0, &theta), OK);
+        assert_close(theta, want, 1e-12);
+        if (f->theta_low < 0 && theta_from_rho(f, -rho, 0, &turned) == OK)
+            assert_close(turned, -want, 1e-12);
+        for (size_t k = 0; rho > 0.98 && k < 2; k++) {
+            assert_int_equal(theta_from_rho(own[k], rho, 0, &theta), OK);
+            assert_close(own[k]->one_minus_rho(theta), 1 - rho, 1e-12);
+        }
+    }
+    assert_int_equal(t->rows, 15);
+    csv_free(t);
+}
+
 /* extreme_tail.csv: the t distribution function of the textbooks */
 static void tails_of_t(void **state)
 {
@@ -152,6 +175,7 @@ int main(void)
         cmocka_unit_test(inverse_in_many_columns),
         cmocka_unit_test(few_degrees_of_freedom),
         cmocka_unit_test(rho_of_joe_near_independence),
+        cmocka_unit_test(theta_of_strong_rho),
         cmocka_unit_test(tails_of_t),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -1,4 +1,5 @@
-"""Copulas where doubles are short of digits: writes extreme_points.csv, extreme_rho.csv and extreme_tail.csv.
+"""Copulas where doubles are short of digits: writes extreme_points.csv, extreme_rho.csv, extreme_tail.csv
+and extreme_theta_of_rho.csv.
 
 By definition, with mpmath: the copula from its generator or formula, its derivatives by power series of the
 generator or by central differences at thousands of digits, elliptical ones from their densities. Every number of a
@@ -9,7 +10,7 @@ row is the double nearest to its decimals.
 import csv
 import os
 
-from mpmath import (asinh, cosh, erfc, exp, expm1, factorial, hyp2f1, inf, log, log1p, loggamma, mp, mpf, nstr, pi,
+from mpmath import (asinh, erfc, exp, expm1, factorial, findroot, hyp2f1, inf, log, log1p, loggamma, mp, mpf, nstr, pi,
                     quad, sinh, sqrt, tanh)
 
 HERE = os.path.dirname(os.path.abspath(__file__))
@@ -225,6 +226,35 @@ def rho_rows():
         yield 'joe', text, nstr(12 * quad(lambda u: quad(lambda v: apart(u, v), [0, 1]), [0, 1]), 18)
 
 
+def rho_gumbel(a):
+    """12 times the integral of (1 + A)^-2, less 3, with Pickands' function A (Nelsen 2006)"""
+    def pickands(w):
+        return (w ** a + (1 - w) ** a) ** (1 / a)
+    cuts = sorted({mpf(0), mpf('0.2'), mpf('0.4'), mpf('0.5')} | {mpf('0.5') - min(mpf('0.5'), k / a) for k in (1, 3, 10, 30)})
+    return 24 * quad(lambda w: (1 + pickands(w)) ** -2, cuts) - 3
+
+
+def rho_frank(a):
+    """1 - 12 (D1 - D2) / theta with the Debye functions (Nelsen 2006)"""
+    cuts = [0, 1, 5, 20, 60, 150, a] if a > 150 else [0, a / 4, a]
+    first = quad(lambda t: t / expm1(t), cuts) / a
+    return 1 - 12 * (first - 2 * quad(lambda t: t * t / expm1(t), cuts) / a ** 2) / a
+
+
+def rho_plackett(a):
+    return (a + 1) / (a - 1) - 2 * a * log(a) / (a - 1) ** 2
+
+
+def strong_rows():
+    mp.dps = 40
+    for text in ('0.97', '0.99', '0.9999', '0.99999999', '0.999999999999'):
+        left = 1 - mpf(float(text))
+        for family, rho, start in (('gumbel', rho_gumbel, sqrt(1 / left)), ('frank', rho_frank, sqrt(20 / left)),
+                                   ('plackett', rho_plackett, -2 * log(left) / left)):
+            theta = findroot(lambda x: log((1 - rho(exp(x))) / left), (log(start), log(start) + 0.1), solver='secant')
+            yield family, text, nstr(exp(theta), 18)
+
+
 def tail_rows():
     mp.dps = 45
     for df in ('0.001', '0.5', '2.5', '30', '10000'):
@@ -238,4 +268,5 @@ def tail_rows():
 if __name__ == '__main__':
     write('extreme_points.csv', ['family', 'parameter', 'df', 'u', 'C', 'log_density', 'conditional'], rows())
     write('extreme_rho.csv', ['family', 'theta', 'rho'], rho_rows())
+    write('extreme_theta_of_rho.csv', ['family', 'rho', 'theta'], strong_rows())
     write('extreme_tail.csv', ['df', 'correlation', 'lambda'], tail_rows())
