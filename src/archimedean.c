@@ -121,6 +121,16 @@ static status conditional(const struct evaluation *e, const double *u, double *w
     return OK;
 }
 
+static status beyond(const struct evaluation *e, const double *u, double *w)
+{
+    const struct generator *g = e->c->family->generator;
+    bool pair = e->c->dimension == 2 && g->beyond;
+    status s = pair ? OK : conditional(e, u, w);
+    for (size_t j = 1; s == OK && j < e->c->dimension; j++)
+        w[j] = pair ? g->beyond(u[0], u[1], e->c->theta) : 1 - w[j];
+    return s;
+}
+
 struct wanted {
     const struct generator *g;
     double theta, log_sum, log_goal;
@@ -197,6 +207,7 @@ const struct evaluator archimedean_evaluator = {
     .cdf = cdf,
     .log_density = log_density,
     .conditional = conditional,
+    .beyond = beyond,
     .from_conditional = from_conditional,
     .kendall = kendall,
     .limit = limit,

@@ -17,6 +17,7 @@ struct generator {
     double (*log_derivative)(size_t order, double log_t, double theta);
 
     bool by_sums;             /* each derivative costs its order squared: see evaluation_limit() */
+    double (*beyond)(double u, double v, double theta);   /* of a pair as in evaluate.h, or NULL */
 };
 
 /* Works for every row with a generator and a psi. */

@@ -72,16 +72,31 @@ static status log_density(const struct evaluation *e, const double *u, double *v
     return OK;
 }
 
-static status conditional(const struct evaluation *e, const double *u, double *w)
+/* The logarithms of the conditional probabilities. */
+static void log_conditional(const struct evaluation *e, const double *u, double *w)
 {
     struct powers p = powers_of(e, u[0]);
-    w[0] = u[0];
     for (size_t j = 1; j < e->c->dimension; j++) {
         double least = p.least, more = p.more, rise = add_column(&p, u[j]);
         double log_rise = rise < HUGE_VAL ? log1p(rise)
                         : log1p(p.more) - log1p(more) + p.theta * log_ratio(least, p.least);
-        w[j] = exp(-(1 / p.theta + (double)j) * log_rise);
+        w[j] = -(1 / p.theta + (double)j) * log_rise;
     }
+}
+
+static status conditional(const struct evaluation *e, const double *u, double *w)
+{
+    log_conditional(e, u, w);
+    w[0] = u[0];
+    for (size_t j = 1; j < e->c->dimension; j++) w[j] = exp(w[j]);
+    return OK;
+}
+
+static status beyond(const struct evaluation *e, const double *u, double *w)
+{
+    log_conditional(e, u, w);
+    w[0] = u[0];
+    for (size_t j = 1; j < e->c->dimension; j++) w[j] = -expm1(w[j]);
     return OK;
 }
 
@@ -115,6 +130,7 @@ const struct evaluator clayton_evaluator = {
     .cdf = cdf,
     .log_density = log_density,
     .conditional = conditional,
+    .beyond = beyond,
     .from_conditional = from_conditional,
     .kendall = kendall,
 };

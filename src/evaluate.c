@@ -262,9 +262,10 @@ static double inside(double u)
 status conditional_at(const struct evaluation *e, const double *u, double *w)
 {
     double first = u[0];
-    status s = e->by->conditional(e, turn_all(e, u), w);
+    bool turned_all = turns(e->rotation, 1), beyond = turned_all && e->by->beyond;
+    status s = (beyond ? e->by->beyond : e->by->conditional)(e, turn_all(e, u), w);
     for (size_t j = 1; s == OK && j < e->c->dimension; j++)
-        w[j] = inside(turns(e->rotation, j) ? 1 - w[j] : w[j]);
+        w[j] = inside(turned_all && !beyond ? 1 - w[j] : w[j]);
     w[0] = first;
     return s;
 }
@@ -356,6 +357,13 @@ static status pair_conditional(const struct evaluation *e, const double *u, doub
     return isnan(w[1]) ? OUT_OF_DOMAIN : OK;
 }
 
+static status pair_beyond(const struct evaluation *e, const double *u, double *w)
+{
+    w[0] = u[0];
+    w[1] = e->c->family->pair->beyond(u[0], u[1], e->c->theta);
+    return isnan(w[1]) ? OUT_OF_DOMAIN : OK;
+}
+
 static status pair_from_conditional(const struct evaluation *e, const double *w, double *u)
 {
     u[0] = w[0];
@@ -375,6 +383,7 @@ const struct evaluator pair_evaluator = {
     .cdf = pair_cdf,
     .log_density = pair_log_density,
     .conditional = pair_conditional,
+    .beyond = pair_beyond,
     .from_conditional = pair_from_conditional,
     .limit = pair_limit,
 };

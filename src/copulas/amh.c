@@ -130,6 +130,17 @@ static double conditional(double u, double v, double theta)
     return v / below * (slope / below);
 }
 
+/* bottom^2 - v slope has a factor 1 - v; the other from its positive parts */
+static double beyond(double u, double v, double theta)
+{
+    double below = bottom(u, v, theta), left = 1 - u, s = -theta;
+    double square = theta > 0 ? ((1 - theta) + theta * u) * ((1 - theta) + theta * u)
+                              : (1 - s) + s * (1 - v) + 2 * s * left;
+    double rest = theta > 0 ? theta * v * ((1 - theta) + theta * u * (2 - u))
+                            : s * left * (s * left) * (1 - v);
+    return (1 - v) / below * ((square + rest) / below);
+}
+
 /* For theta > 0 where squares of u or w might underflow: x = v / alpha, with a from its positive
  * parts. */
 static double far_quantile(double u, double w, double theta)
@@ -157,7 +168,8 @@ static status draw_amh(const copula *c, const struct draw_rows *where, pool *p)
     return draw_by_conditional(c, where, conditional_quantile);
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile };
+static const struct pair_functions pair = { cdf, log_density, conditional, beyond,
+                                            conditional_quantile };
 
 const family amh_family = {
     .word = "amh",

@@ -162,6 +162,14 @@ static double pair_conditional(double u, double v, double theta)
     return fmin(1, exp((1 + theta) * (log_c - log(u))));
 }
 
+/* (C/u)^a is 1 - (1 - v^a) / u^a */
+static double pair_beyond(double u, double v, double theta)
+{
+    if (theta == -1) return NAN;
+    double a = -theta, lacks = -expm1(a * log(v)) / pow(u, a);
+    return lacks < 0.5 ? -expm1((1 - a) / a * log1p(-lacks)) : 1 - pair_conditional(u, v, theta);
+}
+
 static double pair_log_density(double u, double v, double theta)
 {
     double a = -theta, log_c = log_cdf(u, v, a);
@@ -175,9 +183,9 @@ static double pair_quantile(double u, double w, double theta)
     return theta == -1 ? NAN : conditional_quantile(u, w, theta);
 }
 
-static const struct generator generator = { log_inverse, log_derivative, false };
+static const struct generator generator = { log_inverse, log_derivative, false, NULL };
 static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
-                                            pair_quantile };
+                                            pair_beyond, pair_quantile };
 
 /* Below 1e-20 no draw can be told from independence. */
 static status draw_clayton(const copula *c, const struct draw_rows *where, pool *p)

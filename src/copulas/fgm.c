@@ -71,6 +71,11 @@ static double conditional(double u, double v, double theta)
     return v * one_plus(theta, v + 2 * u * (1 - v), v + 2 * (1 - u) * (1 - v));
 }
 
+static double beyond(double u, double v, double theta)
+{
+    return (1 - v) * one_plus(theta, (1 - v) + 2 * (1 - u) * v, (1 - v) + 2 * u * v);
+}
+
 static double conditional_quantile(double u, double w, double theta)
 {
     double k = theta * (1 - 2 * u), b = one_plus(theta, 2 * u, 2 * (1 - u));
@@ -84,7 +89,8 @@ static status draw_fgm(const copula *c, const struct draw_rows *where, pool *p)
     return draw_by_conditional(c, where, conditional_quantile);
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile };
+static const struct pair_functions pair = { cdf, log_density, conditional, beyond,
+                                            conditional_quantile };
 
 const family fgm_family = {
     .word = "fgm",

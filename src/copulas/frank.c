@@ -213,9 +213,24 @@ static double pair_quantile(double u, double w, double theta)
     return of_log_e(log(w) + log_e(1, s) - bottom, s);
 }
 
-static const struct generator generator = { log_inverse, log_derivative, true };
+/* E(1) - E(v) = exp(s v) E(1-v) over the bottom of the conditional probability */
+static double pair_beyond(double u, double v, double theta)
+{
+    double s = positive(-theta);
+    return fmin(1, exp(s * v + log_e(1 - v, s) - log_bottom(u, v, s)));
+}
+
+/* For theta > 0, where the conditional probability is to this as exp(-theta u) (1 - exp(-theta v))
+ * to exp(-theta v) (1 - exp(-theta (1-v))). */
+static double positive_beyond(double u, double v, double theta)
+{
+    double a = positive(theta);
+    return 1 / (1 + exp(a * (v - u)) * (expm1(-a * v) / expm1(-a * (1 - v))));
+}
+
+static const struct generator generator = { log_inverse, log_derivative, true, positive_beyond };
 static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
-                                            pair_quantile };
+                                            pair_beyond, pair_quantile };
 
 /* The draw for -theta with its second column turned round. */
 static status draw_negative(const copula *c, const struct draw_rows *where, pool *p)

@@ -103,7 +103,15 @@ static double log_derivative(size_t order, double log_t, double theta)
            - (double)order * log_t;
 }
 
-static const struct generator generator = { log_inverse, log_derivative, true };
+/* With x = -log u and the ratio rho of psi^-1(v) to psi^-1(u) the conditional probability is
+ * (1 + rho)^-(1 - 1/theta) exp(x (1 - (1 + rho)^(1/theta))). */
+static double pair_beyond(double u, double v, double theta)
+{
+    double x = -log(u), log_rise = portable_log1pexp(theta * (log(-log(v)) - log(x)));
+    return -expm1(-x * expm1(log_rise / theta) - (theta - 1) / theta * log_rise);
+}
+
+static const struct generator generator = { log_inverse, log_derivative, true, pair_beyond };
 
 const family gumbel_family = {
     .word = "gumbel",

@@ -177,7 +177,16 @@ static double log_derivative(size_t order, double log_t, double theta)
     return log_sum_rising(order, log_w, (theta - 1) / theta) + log_rest / theta - log(theta);
 }
 
-static const struct generator generator = { log_inverse, log_derivative, true };
+/* With a = (1-u)^theta, b = (1-v)^theta the conditional probability is
+ * (1 + b (1-a) / a)^-(1 - 1/theta) (1 - b). */
+static double pair_beyond(double u, double v, double theta)
+{
+    double log_a = theta * log1p(-u), log_b = theta * log1p(-v);
+    double log_rise = log1p(exp(log_b - log_a) * -expm1(log_a));
+    return -expm1(portable_log1mexp(log_b) - (theta - 1) / theta * log_rise);
+}
+
+static const struct generator generator = { log_inverse, log_derivative, true, pair_beyond };
 
 const family joe_family = {
     .word = "joe",

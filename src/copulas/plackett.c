@@ -218,6 +218,13 @@ static double conditional(double u, double v, double theta)
     return a > 0 ? 2 * theta / (root + a) * v * (1 - v) / root : (root - a) / (2 * root);
 }
 
+static double beyond(double u, double v, double theta)
+{
+    theta = held(theta);
+    double root = root_of(u, v, theta), a = theta * (u - v) - beyond_diagonal(u, v);
+    return a < 0 ? 2 * theta / (root - a) * v * (1 - v) / root : (root + a) / (2 * root);
+}
+
 /* Johnson's parts, divided by the power of 2 below theta: the square of theta might overflow. */
 static double conditional_quantile(double u, double w, double theta)
 {
@@ -237,7 +244,8 @@ static status draw_plackett(const copula *c, const struct draw_rows *where, pool
     return draw_by_conditional(c, where, conditional_quantile);
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile };
+static const struct pair_functions pair = { cdf, log_density, conditional, beyond,
+                                            conditional_quantile };
 
 const family plackett_family = {
     .word = "plackett",

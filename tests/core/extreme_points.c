@@ -66,6 +66,27 @@ static void by_definition(void **state)
     csv_free(t);
 }
 
+/* extreme_rotated.csv: 1 less the conditional probability of the unrotated pair, also where that is
+ * 1 to rounding */
+static void rotated_by_definition(void **state)
+{
+    (void)state;
+    struct csv *t = csv_read("extreme_rotated.csv");
+    for (size_t i = 0; i < t->rows; i++) {
+        struct sample_copula s;
+        char what[300];
+        double want = fmax(DBL_MIN, fmin(csv_number(t, i, "conditional"), 1 - 0x1p-53));
+        copula *c = one_parameter(&s, csv_text(t, i, "family"), 2, csv_number(t, i, "parameter"));
+        c->rotation = (int)csv_number(t, i, "rotation");
+        snprintf(what, sizeof what, "row %zu: %s %s", i + 2, c->family->word,
+                 csv_text(t, i, "parameter"));
+        double got = ask_pair(c, CONDITIONAL, csv_number(t, i, "u"), csv_number(t, i, "v"));
+        close_or_fail(got, want, 1e-10 * want, what, __FILE__, __LINE__);
+    }
+    assert_int_equal(t->rows, 1800);
+    csv_free(t);
+}
+
 /* To a model's columns and back, up to the first that is kept above 0 or that a double carries too
  * few digits of near 1. */
 static void there_and_back(const copula *c, const double *w)
@@ -172,6 +193,7 @@ int main(void)
 {
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(by_definition),
+        cmocka_unit_test(rotated_by_definition),
         cmocka_unit_test(inverse_in_many_columns),
         cmocka_unit_test(few_degrees_of_freedom),
         cmocka_unit_test(rho_of_joe_near_independence),

@@ -1,5 +1,5 @@
-"""Copulas where doubles are short of digits: writes extreme_points.csv, extreme_rho.csv, extreme_tail.csv
-and extreme_theta_of_rho.csv.
+"""Copulas where doubles are short of digits: writes extreme_points.csv, extreme_rotated.csv,
+extreme_rho.csv, extreme_tail.csv and extreme_theta_of_rho.csv.
 
 By definition, with mpmath: the copula from its generator or formula, its derivatives by power series of the
 generator or by central differences at thousands of digits, elliptical ones from their densities. Every number of a
@@ -213,6 +213,20 @@ def rows():
         yield ('t' if float(df) else 'gaussian', r, df, u, '') + tuple(nstr(x, 20) for x in values)
 
 
+def rotated_rows():
+    """P(V <= v | U = u) of rotated pairs, at points whose 1 - u and 1 - v are doubles"""
+    thetas = {'clayton': ['-0.9', '-0.5', '1e-8', '2', '20'], 'gumbel': ['1.00000001', '2', '100'],
+              'frank': ['-300', '-1e-8', '1e-8', '5', '300'], 'joe': ['1.00000001', '2', '50'], 'amh': ['-1', '0.5', '1'],
+              'plackett': ['1e-12', '0.5', '1e12'], 'fgm': ['-1', '0.3', '1']}
+    ends = (mpf(1) / 4, mpf(3) / 4, mpf(2) ** -10, 1 - mpf(2) ** -10, mpf(2) ** -40, 1 - mpf(2) ** -40)
+    for family, values in thetas.items():
+        work = pair if family in PAIRS else archimedean
+        for text, rotation, u, v in ((t, r, u, v) for t in values for r in (180, 270) for u in ends for v in ends):
+            mp.dps = 60
+            below_v = work(family, mpf(float(text)), [1 - u if rotation == 180 else u, 1 - v])[2]
+            yield family, text, rotation, nstr(u, 20), nstr(v, 20), nstr(1 - below_v, 20)
+
+
 def rho_rows():
     """12 times the integral of C - uv, which joe loses to rounding near independence"""
     mp.dps = 40
@@ -267,6 +281,7 @@ def tail_rows():
 
 if __name__ == '__main__':
     write('extreme_points.csv', ['family', 'parameter', 'df', 'u', 'C', 'log_density', 'conditional'], rows())
+    write('extreme_rotated.csv', ['family', 'parameter', 'rotation', 'u', 'v', 'conditional'], rotated_rows())
     write('extreme_rho.csv', ['family', 'theta', 'rho'], rho_rows())
     write('extreme_theta_of_rho.csv', ['family', 'rho', 'theta'], strong_rows())
     write('extreme_tail.csv', ['df', 'correlation', 'lambda'], tail_rows())
