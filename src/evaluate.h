@@ -74,8 +74,8 @@ status log_density_at(const struct evaluation *e, const double *u, double *value
  * relative for rotated pairs as well. OUT_OF_DOMAIN likewise. */
 status conditional_at(const struct evaluation *e, const double *u, double *w);
 
-/* Its inverse, from w to u, kept within the same bounds. Where a column that a rotation turns has a
- * small w it is good to about 1e-16 / w relative. */
+/* Its inverse, from w to u, kept within the same bounds. Beyond pairs, where a column that a
+ * rotation turns has a small w, it is good to about 1e-16 / w relative. */
 status from_conditional_at(const struct evaluation *e, const double *w, double *u);
 
 /* K(w) = P(C(U) <= w), 0 <= w <= 1, to 1e-9, for tau beyond 0.95 or -0.95 to 1e-7: Barbe, Genest,

@@ -135,6 +135,30 @@ static void few_degrees_of_freedom(void **state)
                            points[i]);
 }
 
+/* Small w of a column that is turned, as far as 1 - v of the answer carries them. */
+static void rotated_pairs_and_back(void **state)
+{
+    (void)state;
+    const struct { const char *word; double parameter; } models[] = {
+        { "clayton", 2 }, { "clayton", -0.5 }, { "gumbel", 3 }, { "frank", 20 }, { "frank", -20 },
+        { "joe", 3 }, { "amh", 0.9 }, { "plackett", 100 }, { "fgm", 0.9 }
+    };
+    static const double firsts[] = { 0.01, 0.5, 0.99 }, seconds[] = { 1e-4, 1e-8, 1e-12, 1e-18 };
+    size_t checked = 0;
+    for (size_t k = 0; k < sizeof models / sizeof *models; k++)
+        for (size_t i = 0; i < 24; i++) {
+            struct sample_copula s;
+            copula *c = one_parameter(&s, models[k].word, 2, models[k].parameter);
+            double u = firsts[i % 3], w = seconds[i / 3 % 4];
+            c->rotation = i < 12 ? 180 : 270;
+            double v = ask_pair(c, FROM_CONDITIONAL, u, w);
+            if (v < 1e-5 || v > 1 - 1e-6) continue;
+            assert_close(ask_pair(c, CONDITIONAL, u, v), w, 1e-10);
+            checked++;
+        }
+    assert_true(checked >= 80);
+}
+
 /* extreme_rho.csv: the integral of C - uv */
 static void rho_of_joe_near_independence(void **state)
 {
@@ -196,6 +220,7 @@ int main(void)
         cmocka_unit_test(rotated_by_definition),
         cmocka_unit_test(inverse_in_many_columns),
         cmocka_unit_test(few_degrees_of_freedom),
+        cmocka_unit_test(rotated_pairs_and_back),
         cmocka_unit_test(rho_of_joe_near_independence),
         cmocka_unit_test(theta_of_strong_rho),
         cmocka_unit_test(tails_of_t),
