@@ -13,6 +13,7 @@
 #include "elementary.h"
 #include "root.h"
 
+#include <float.h>
 #include <math.h>
 
 double log_added(double a, double b)
@@ -78,6 +79,16 @@ static status conditional(const struct evaluation *e, const double *u, double *w
     return OK;
 }
 
+static status beyond(const struct evaluation *e, const double *u, double *w)
+{
+    const struct generator *g = e->c->family->generator;
+    bool pair = e->c->dimension == 2;
+    status s = pair ? OK : conditional(e, u, w);
+    for (size_t j = 1; s == OK && j < e->c->dimension; j++)
+        w[j] = pair ? g->beyond(u[0], u[1], e->c->theta) : 1 - w[j];
+    return s;
+}
+
 struct wanted {
     const struct evaluation *e;
     double log_sum, log_goal;
@@ -95,7 +106,7 @@ static status solve(const struct wanted *k, double *log_t)
 {
     const struct generator *g = k->e->c->family->generator;
     double low = g->log_inverse(1 - 0x1p-53, k->e->c->theta);
-    double high = g->log_inverse(1e-300, k->e->c->theta);
+    double high = g->log_inverse(DBL_MIN, k->e->c->theta);
     if (over(low, k) <= 0) {
         *log_t = low;
         return OK;
@@ -141,6 +152,7 @@ const struct evaluator archimedean_evaluator = {
     .cdf = cdf,
     .log_density = log_density,
     .conditional = conditional,
+    .beyond = beyond,
     .from_conditional = from_conditional,
     .kendall = kendall,
 };

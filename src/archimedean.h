@@ -16,7 +16,8 @@ struct generator {
     /* log of psi^-1(1 - u), as good for small u, infinity at u = 1 */
     double (*log_inverse_turned)(double u, double theta);
 
-    /* What log_derivative() takes, for orders up to `highest`, from the pool; NO_MEMORY. */
+    /* The next four are NULL where the family has an evaluator of its own. What log_derivative()
+     * takes, for orders up to `highest`, from the pool; NO_MEMORY. */
     status (*prepare)(double theta, size_t highest, pool *p, void **prepared);
 
     /* log of |psi^(order)|, order >= 1, at exp(log_t) */
@@ -25,10 +26,12 @@ struct generator {
     /* About how long that takes; `next`: where the order before was asked at the same t. */
     double (*derivative_seconds)(size_t order, bool next);
 
-    struct turned_pair turned;  /* of a pair, theta in the range beyond pairs */
+    /* Of a pair, theta in the range beyond pairs, as in evaluate.h. */
+    double (*beyond)(double u, double v, double theta);
+    struct turned_pair turned;
 };
 
-/* Works for every row with a generator and a psi. */
+/* Works for every row with a psi and a generator with derivatives. */
 extern const struct evaluator archimedean_evaluator;
 
 /* log(exp a + exp b) */

@@ -17,6 +17,7 @@
 #include "evaluate.h"
 #include "archimedean.h"
 #include "frailty.h"
+#include "root.h"
 
 #include <float.h>
 #include <math.h>
@@ -151,19 +152,46 @@ static double inside(double u)
 status conditional_at(const struct evaluation *e, const double *u, double *w)
 {
     double first = u[0];
-    status s = e->by->conditional(e, turn_all(e, u), w);
+    bool turned_all = turns(e->rotation, 1), beyond = turned_all && e->by->beyond;
+    status s = (beyond ? e->by->beyond : e->by->conditional)(e, turn_all(e, u), w);
     for (size_t j = 1; s == OK && j < e->c->dimension; j++)
-        w[j] = inside(turns(e->rotation, j) ? 1 - w[j] : w[j]);
+        w[j] = inside(turned_all && !beyond ? 1 - w[j] : w[j]);
     w[0] = first;
     return s;
 }
 
+/* The first column of an unrotated pair, and what is to lie beyond the second. */
+struct beyond_wanted {
+    const struct evaluation *e;
+    double u, w;
+};
+
+static double over_beyond(double log_rest, const void *with)
+{
+    const struct beyond_wanted *k = with;
+    double point[2] = { k->u, turned(exp(log_rest)) }, w[2];
+    if (k->e->by->beyond(k->e, point, w) != OK) return NAN;
+    return log(fmax(w[1], DBL_MIN) / k->w);
+}
+
+/* The second column of a pair that a rotation turns, v, where 1 - w would lose the digits of w;
+ * what it was where the root lies beyond 2^-53. */
+static void refine_turned(const struct evaluation *e, double w, double *v)
+{
+    struct beyond_wanted k = { e, e->turned[0], w };
+    double log_v;
+    if (root_between(over_beyond, &k, log(0x1p-53), log1p(-0x1p-53), &log_v) == OK)
+        *v = exp(log_v);
+}
+
 status from_conditional_at(const struct evaluation *e, const double *w, double *u)
 {
-    double first = w[0];
+    double first = w[0], asked = w[1];
     status s = e->by->from_conditional(e, turn_all(e, w), u);
     for (size_t j = 1; s == OK && j < e->c->dimension; j++)
         u[j] = inside(turns(e->rotation, j) ? 1 - u[j] : u[j]);
+    if (s == OK && turns(e->rotation, 1) && e->c->dimension == 2 && asked < 1e-3 && e->by->beyond)
+        refine_turned(e, asked, &u[1]);
     u[0] = first;
     return s;
 }
@@ -239,6 +267,13 @@ static status pair_conditional(const struct evaluation *e, const double *u, doub
     return isnan(w[1]) ? OUT_OF_DOMAIN : OK;
 }
 
+static status pair_beyond(const struct evaluation *e, const double *u, double *w)
+{
+    w[0] = u[0];
+    w[1] = e->c->family->pair->beyond(u[0], u[1], e->c->theta);
+    return isnan(w[1]) ? OUT_OF_DOMAIN : OK;
+}
+
 static status pair_from_conditional(const struct evaluation *e, const double *w, double *u)
 {
     u[0] = w[0];
@@ -258,6 +293,7 @@ const struct evaluator pair_evaluator = {
     .cdf = pair_cdf,
     .log_density = pair_log_density,
     .conditional = pair_conditional,
+    .beyond = pair_beyond,
     .from_conditional = pair_from_conditional,
     .limit = pair_limit,
 };

@@ -23,13 +23,15 @@ struct evaluation {
     struct frailty_mean *mean;          /* where that is not 0, beyond pairs */
 };
 
-/* The kinds of copula; each for the unrotated one unless it takes the rotation in. */
+/* The kinds of copula; each for the unrotated one unless it takes the rotation in. beyond() is
+ * 1 - conditional() of all columns but the first, to 1e-10 relative where it has two columns. */
 struct evaluator {
     bool takes_rotation;
     status (*prepare)(struct evaluation *e, pool *p);                 /* or NULL */
     status (*cdf)(const struct evaluation *e, const double *u, double *value, double *error);
     status (*log_density)(const struct evaluation *e, const double *u, double *value);
     status (*conditional)(const struct evaluation *e, const double *u, double *w);
+    status (*beyond)(const struct evaluation *e, const double *u, double *w);     /* or NULL */
     status (*from_conditional)(const struct evaluation *e, const double *w, double *u);
     double (*kendall)(const struct evaluation *e, double w);          /* or NULL; 0 < w < 1 */
     const char *(*limit)(const struct evaluation *e, enum question q);
@@ -49,6 +51,7 @@ struct pair_functions {
     double (*cdf)(double u, double v, double theta);
     double (*log_density)(double u, double v, double theta);          /* -infinity where it is 0 */
     double (*conditional)(double u, double v, double theta);          /* P(V <= v | U = u) */
+    double (*beyond)(double u, double v, double theta);               /* P(V > v | U = u) */
     double (*conditional_quantile)(double u, double w, double theta); /* v at which that is w */
     struct turned_pair turned;
 };
@@ -75,11 +78,12 @@ status pair_cdf_roughly_at(const struct evaluation *e, const double *u, double *
 status log_density_at(const struct evaluation *e, const double *u, double *value);
 
 /* w_1 = u_1, w_j = P(U_j <= u_j | U_1 = u_1, ..., U_(j-1) = u_(j-1)): independent uniforms when u
- * is from the copula (Rosenblatt 1952), from the smallest normal double to 1 - 2^-53. OUT_OF_DOMAIN
- * likewise. */
+ * is from the copula (Rosenblatt 1952), from the smallest normal double to 1 - 2^-53; to 1e-10
+ * relative for rotated pairs as well. OUT_OF_DOMAIN likewise. */
 status conditional_at(const struct evaluation *e, const double *u, double *w);
 
-/* Its inverse, from w to u, kept within the same bounds. */
+/* Its inverse, from w to u, kept within the same bounds. Beyond pairs, where a column that a
+ * rotation turns has a small w, it is good to about 1e-16 / w relative. */
 status from_conditional_at(const struct evaluation *e, const double *w, double *u);
 
 /* K(w) = P(C(U) <= w) for n numbers w from 0 to 1; each value is the same whatever else is asked.

@@ -113,7 +113,7 @@ double from_conditional_seconds_at(const struct evaluation *e, const double *u)
 {
     const struct elliptical_points *m = elliptical_of(e);
     double once = conditional_seconds_at(e, u);
-    return !m ? 12 * once : m->grouped ? 1.5 * once : once;
+    return e->by == &archimedean_evaluator ? 12 * once : m && m->grouped ? 1.5 * once : once;
 }
 
 /* The Kendall distribution by the generator. */

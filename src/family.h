@@ -51,6 +51,9 @@ struct family {
     /* Spearman's rho of a pair with this theta or correlation; df is that of a t. */
     status (*rho_from_theta)(double theta, double df, double *rho);
 
+    /* 1 - rho to 1e-13 relative where rho is above 0.98, for its inverse; or NULL. */
+    double (*one_minus_rho)(double theta);
+
     /* Its inverse where the family has one of its own; NULL: theta_from_rho() searches by tau. */
     status (*theta_from_spearman)(double rho, double *theta);
 

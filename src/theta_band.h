@@ -20,7 +20,8 @@ struct theta_band {
 status theta_band(const family *f, const double *x, const double *y, size_t n, double coverage,
                   band_method method, uint64_t seed, struct theta_band *b, pool *p);
 
-/* d theta / d tau at a tau that the family reaches, to about 1e-9 relative, 1e-7 at an end of it */
+/* d theta / d tau at a tau that the family reaches, to about 1e-9 relative, 1e-7 at an end of it
+ * and where 1 - |tau| is 1e-8; for amh, whose tau bends there, 1e-3 towards theta = 1. */
 status theta_slope(const family *f, double tau, double *slope);
 
 #endif

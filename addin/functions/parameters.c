@@ -125,6 +125,9 @@ static status cell_dffromtail(const argument *in, value *out, report *r)
 {
     double correlation = in[0].number, lambda = in[1].number, df, highest = 0;
     status s = df_from_tail(correlation, lambda, &df, &highest);
+    if (s == OUT_OF_DOMAIN && lambda < highest)
+        return refuse(r, s, "lambda is %g, but with a correlation of %g takes degrees of freedom "
+                      "outside [1e-6;1e9]", lambda, correlation);
     if (s == OUT_OF_DOMAIN)
         return refuse(r, s, "lambda is %g, but with a correlation of %g the t copula reaches only "
                       "(0;%g)", lambda, correlation, highest);
@@ -336,7 +339,7 @@ const function parameters_functions[] = {
             { .name = "rho", .help = "Spearman's rho, a number or a range of them.",
               .kind = NUMBERS, .low = -1, .high = 1 },
             { .name = "df", .help = "For t the degrees of freedom.", .kind = NUMBER,
-              .low = 0.1, .high = 1e6, .optional = true },
+              .low = 0, .high = 1e9, .open = LOW_OPEN, .optional = true },
         },
         .costly = true,
         .call = cell_thetarho,

@@ -130,9 +130,31 @@ static double conditional(double u, double v, double theta)
     return v / below * (slope / below);
 }
 
+/* bottom^2 - v slope has a factor 1 - v; the other from its positive parts */
+static double beyond(double u, double v, double theta)
+{
+    double below = bottom(u, v, theta), left = 1 - u, s = -theta;
+    double square = theta > 0 ? ((1 - theta) + theta * u) * ((1 - theta) + theta * u)
+                              : (1 - s) + s * (1 - v) + 2 * s * left;
+    double rest = theta > 0 ? theta * v * ((1 - theta) + theta * u * (2 - u))
+                            : s * left * (s * left) * (1 - v);
+    return (1 - v) / below * ((square + rest) / below);
+}
+
+/* For theta > 0 where squares of u or w might underflow: x = v / alpha, with a from its positive
+ * parts. */
+static double far_quantile(double u, double w, double theta)
+{
+    double beta = theta * (1 - u), alpha = (1 - theta) + theta * u;
+    double a = theta * ((1 - w) + w * ((1 - theta) + theta * u * (2 - u)));
+    double b = (1 - theta) / alpha - 2 * w * beta, root = sqrt(b * b + 4 * a * w);
+    return alpha * (b >= 0 ? 2 * w / (b + root) : (root - b) / (2 * a));
+}
+
 /* a v^2 + b v = c, with bottom = alpha + beta v */
 static double conditional_quantile(double u, double w, double theta)
 {
+    if (theta > 0 && fmin(u, w) < 0x1p-53) return far_quantile(u, w, theta);
     double beta = theta * (1 - u), alpha = theta > 0 ? (1 - theta) + theta * u : 1 - beta;
     double a = theta - w * beta * beta, b = (1 - theta) - 2 * w * alpha * beta;
     double c = w * alpha * alpha, below_root = b * b + 4 * a * c;
@@ -167,8 +189,14 @@ static double both_turned(double u, double v, double theta)
     return u * (top / one_minus(theta, u * v, (1 - u) + u * (1 - v))) * v;
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile,
-                                            { one_turned, both_turned } };
+static const struct pair_functions pair = {
+    .cdf = cdf,
+    .log_density = log_density,
+    .conditional = conditional,
+    .beyond = beyond,
+    .conditional_quantile = conditional_quantile,
+    .turned = { one_turned, both_turned },
+};
 
 const family amh_family = {
     .word = "amh",

@@ -6,6 +6,7 @@
  *   Olkin 1988). A pair with negative theta is drawn by inverting its conditional distribution:
  *   with a = -theta, dC/du = w gives v^a = 1 - u^a (1 - w^(a/(1-a))).
  *   With negative theta C = max(u^a + v^a - 1, 0)^(1/a).
+ *   Points with theta > 0: clayton_points.c.
  *   Spearman's rho is a hypergeometric series at 1, positive and negative theta having one each;
  *   where dependence is strong, strong_rho.c.
  *
@@ -20,6 +21,7 @@
  */
 #include "families.h"
 #include "../archimedean.h"
+#include "../clayton_points.h"
 #include "../elementary.h"
 #include "../frailty.h"
 #include "../quadrature.h"
@@ -140,30 +142,23 @@ static double one_turned(double u, double v, double theta)
     return -v * expm1(-portable_log1pexp(log_r) / a);
 }
 
-/* For each order the log of 1 (1 + theta) ... (1 + (order-1) theta) / theta^order. */
-static status prepare(double theta, size_t highest, pool *p, void **prepared)
+/* ---- pairs with negative theta ---- */
+
+/* u^a - u for a near 1 */
+static double more_than(double u, double a)
 {
-    double a = positive(theta), sum = 0, *factors = pool_take(p, highest + 1, sizeof *factors);
-    if (!factors) return NO_MEMORY;
-    for (size_t n = 1; n <= highest; n++) {
-        factors[n] = sum - (double)n * log(a);
-        sum += log1p((double)n * a);
-    }
-    *prepared = factors;
-    return OK;
+    return u * expm1((a - 1) * log(u));
 }
 
-static double log_derivative(void *prepared, size_t order, double log_t, double theta)
-{
-    const double *factors = prepared;
-    return factors[order] - (1 / positive(theta) + (double)order) * portable_log1pexp(log_t);
-}
-
-/* For theta in (-1;0), a = -theta: log(u^a + v^a - 1) / a, -infinity where nothing lies. */
+/* For theta in (-1;0), a = -theta: log(u^a + v^a - 1) / a, -infinity where nothing lies. What is
+ * near 1 is kept as what it lacks, and a near 1 as what u^a exceeds u by. */
 static double log_cdf(double u, double v, double a)
 {
-    double below = expm1(a * log(u)) + expm1(a * log(v));
-    return below > -1 ? log1p(below) / a : -HUGE_VAL;
+    double small = fmin(u, v), large = fmax(u, v), missing = expm1(a * log(large)), sum;
+    if (a > 0.5) sum = ((large - 1) + small) + more_than(small, a) + more_than(large, a);
+    else sum = pow(small, a) + missing;
+    if (sum > 0.5) return log1p(expm1(a * log(small)) + missing) / a;
+    return sum > 0 ? log(sum) / a : -HUGE_VAL;
 }
 
 static double pair_cdf(double u, double v, double theta)
@@ -178,6 +173,14 @@ static double pair_conditional(double u, double v, double theta)
     return fmin(1, exp((1 + theta) * (log_c - log(u))));
 }
 
+/* (C/u)^a is 1 - (1 - v^a) / u^a */
+static double pair_beyond(double u, double v, double theta)
+{
+    if (theta == -1) return NAN;
+    double a = -theta, lacks = -expm1(a * log(v)) / pow(u, a);
+    return lacks < 0.5 ? -expm1((1 - a) / a * log1p(-lacks)) : 1 - pair_conditional(u, v, theta);
+}
+
 static double pair_log_density(double u, double v, double theta)
 {
     double a = -theta, log_c = log_cdf(u, v, a);
@@ -189,13 +192,6 @@ static double pair_log_density(double u, double v, double theta)
 static double pair_quantile(double u, double w, double theta)
 {
     return theta == -1 ? NAN : conditional_quantile(u, w, theta);
-}
-
-static double derivative_seconds(size_t order, bool next)
-{
-    (void)order;
-    (void)next;
-    return 4e-8;
 }
 
 /* -theta in [1e-20;1] of a pair */
@@ -245,14 +241,17 @@ static double pair_both_turned(double u, double v, double theta)
 static const struct generator generator = {
     .log_inverse = log_inverse,
     .log_inverse_turned = log_inverse_turned,
-    .prepare = prepare,
-    .log_derivative = log_derivative,
-    .derivative_seconds = derivative_seconds,
     .turned = { one_turned, both_turned },
 };
 
-static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
-                                            pair_quantile, { pair_one_turned, pair_both_turned } };
+static const struct pair_functions pair = {
+    .cdf = pair_cdf,
+    .log_density = pair_log_density,
+    .conditional = pair_conditional,
+    .beyond = pair_beyond,
+    .conditional_quantile = pair_quantile,
+    .turned = { pair_one_turned, pair_both_turned },
+};
 
 /* Below 1e-20 no draw can be told from independence. */
 static status draw_clayton(const copula *c, const struct draw_rows *where, pool *p)
@@ -270,11 +269,12 @@ const family clayton_family = {
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
     .rho_from_theta = rho_from_theta,
+    .one_minus_rho = one_minus_rho_of_clayton,
     .tail = tail,
     .draw = draw_clayton,
     .frailty = &gamma_frailty,
     .psi = psi,
-    .evaluator = &archimedean_evaluator,
+    .evaluator = &clayton_evaluator,
     .generator = &generator,
     .pair = &pair,
     .use = "losses that are small or absent together; by rotation 180 large ones",

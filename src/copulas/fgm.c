@@ -71,6 +71,11 @@ static double conditional(double u, double v, double theta)
     return v * one_plus(theta, v + 2 * u * (1 - v), v + 2 * (1 - u) * (1 - v));
 }
 
+static double beyond(double u, double v, double theta)
+{
+    return (1 - v) * one_plus(theta, (1 - v) + 2 * (1 - u) * v, (1 - v) + 2 * u * v);
+}
+
 static double conditional_quantile(double u, double w, double theta)
 {
     double k = theta * (1 - 2 * u), b = one_plus(theta, 2 * u, 2 * (1 - u));
@@ -90,8 +95,14 @@ static double one_turned(double u, double v, double theta)
     return cdf(u, v, -theta);
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile,
-                                            { one_turned, cdf } };
+static const struct pair_functions pair = {
+    .cdf = cdf,
+    .log_density = log_density,
+    .conditional = conditional,
+    .beyond = beyond,
+    .conditional_quantile = conditional_quantile,
+    .turned = { one_turned, cdf },
+};
 
 const family fgm_family = {
     .word = "fgm",

@@ -143,20 +143,22 @@ static double log_rest_of(double log_t, double theta)
     return z < 0.5 ? log1p(-z) : log_added(log_one_minus_exp(log_t), -theta - t);
 }
 
-/* For theta > 0. */
+/* For theta > 0. Where z might be below the range of doubles psi = z / theta. */
 static double psi(double log_t, double theta)
 {
-    return -log_rest_of(log_t, positive(theta)) / positive(theta);
+    double a = positive(theta), t = exp(log_t);
+    return t < 600 ? -log_rest_of(log_t, a) / a : exp(portable_log1mexp(-a) - log(a) - t);
 }
 
 /* psi^-1(u) = -log(1 - q), where q falls from 1 at u = 0 to 0 */
 static double log_inverse(double u, double theta)
 {
-    double a = positive(theta), one_minus = a * u < 1e-12 ? a * u : -expm1(-a * u);
+    double a = positive(theta), y = a * u;
+    double one_minus = y < 1e-12 ? u * (a / -expm1(-a)) : expm1(-y) / expm1(-a);
     double log_q = a < 1 ? log(expm1(a * (1 - u)) / expm1(a))
                          : portable_log1mexp(-a * (1 - u)) - a * u - portable_log1mexp(-a);
     if (log_q < -40) return log_q;
-    return log(log_q < -0.7 ? -log1p(-exp(log_q)) : -log(one_minus / -expm1(-a)));
+    return log(log_q < -0.7 ? -log1p(-exp(log_q)) : -log(one_minus));
 }
 
 /* At 1 - u it is q = (exp(theta u) - 1) / (exp(theta) - 1), at most 1/2 for u below it. */
@@ -182,42 +184,50 @@ static double log_derivative(void *prepared, size_t order, double log_t, double 
     return log_power_sum(prepared, order, log_t) - log(positive(theta));
 }
 
-/* A pair with theta = -s < 0: with E(x) = exp(s x) - 1, exp(s C) - 1 = E(u) E(v) / E(1). */
+/* A pair with theta = -s < 0: with E(x) = (exp(s x) - 1) / s, E(C) = E(u) E(v) / E(1). */
 static double log_e(double x, double s)
 {
     double y = s * x;
-    return y > 1 ? y + log1p(-exp(-y)) : log(expm1(y));
+    if (y > 1) return y + log1p(-exp(-y)) - log(s);
+    return y < 1e-16 ? log(x) : log(expm1(y) / s);
+}
+
+/* x from log E(x) */
+static double of_log_e(double log_e, double s)
+{
+    double log_y = log(s) + log_e;
+    return log_y < -40 ? exp(log_e) : portable_log1pexp(log_y) / s;
 }
 
 static double pair_cdf(double u, double v, double theta)
 {
-    double s = -theta;
-    return portable_log1pexp(log_e(u, s) + log_e(v, s) - log_e(1, s)) / s;
+    double s = positive(-theta);
+    return of_log_e(log_e(u, s) + log_e(v, s) - log_e(1, s), s);
 }
 
-/* log(E(1) + E(u) E(v)) */
+/* log(E(1) + s E(u) E(v)) */
 static double log_bottom(double u, double v, double s)
 {
-    return log_added(log_e(1, s), log_e(u, s) + log_e(v, s));
+    return log_added(log_e(1, s), log(s) + log_e(u, s) + log_e(v, s));
 }
 
 static double pair_log_density(double u, double v, double theta)
 {
-    double s = -theta;
-    return log(s) + log_e(1, s) + s * u + s * v - 2 * log_bottom(u, v, s);
+    double s = positive(-theta);
+    return log_e(1, s) + s * u + s * v - 2 * log_bottom(u, v, s);
 }
 
 static double pair_conditional(double u, double v, double theta)
 {
-    double s = -theta;
+    double s = positive(-theta);
     return fmin(1, exp(s * u + log_e(v, s) - log_bottom(u, v, s)));
 }
 
 /* E(v) = w E(1) / (exp(s u) (1-w) + w) */
 static double pair_quantile(double u, double w, double theta)
 {
-    double s = -theta, bottom = log_added(s * u + log1p(-w), log(w));
-    return portable_log1pexp(log(w) + log_e(1, s) - bottom) / s;
+    double s = positive(-theta), bottom = log_added(s * u + log1p(-w), log(w));
+    return of_log_e(log(w) + log_e(1, s) - bottom, s);
 }
 
 /* With (U, V) from theta (1-U, V) is from -theta, and (1-U, 1-V) again from theta. */
@@ -232,17 +242,39 @@ static double one_turned(double u, double v, double theta)
     return theta < 0 ? cdf(u, v, -theta) : pair_cdf(u, v, -positive(theta));
 }
 
+/* E(1) - E(v) = exp(s v) E(1-v) over the bottom of the conditional probability */
+static double pair_beyond(double u, double v, double theta)
+{
+    double s = positive(-theta);
+    return fmin(1, exp(s * v + log_e(1 - v, s) - log_bottom(u, v, s)));
+}
+
+/* For theta > 0, where the conditional probability is to this as exp(-theta u) (1 - exp(-theta v))
+ * to exp(-theta v) (1 - exp(-theta (1-v))). */
+static double positive_beyond(double u, double v, double theta)
+{
+    double a = positive(theta);
+    return 1 / (1 + exp(a * (v - u)) * (expm1(-a * v) / expm1(-a * (1 - v))));
+}
+
 static const struct generator generator = {
     .log_inverse = log_inverse,
     .log_inverse_turned = log_inverse_turned,
     .prepare = prepare,
     .log_derivative = log_derivative,
     .derivative_seconds = power_sum_seconds,
+    .beyond = positive_beyond,
     .turned = { one_turned, cdf },
 };
 
-static const struct pair_functions pair = { pair_cdf, pair_log_density, pair_conditional,
-                                            pair_quantile, { one_turned, cdf } };
+static const struct pair_functions pair = {
+    .cdf = pair_cdf,
+    .log_density = pair_log_density,
+    .conditional = pair_conditional,
+    .beyond = pair_beyond,
+    .conditional_quantile = pair_quantile,
+    .turned = { one_turned, cdf },
+};
 
 /* The draw for -theta with its second column turned round. */
 static status draw_negative(const copula *c, const struct draw_rows *where, pool *p)
@@ -273,6 +305,7 @@ const family frank_family = {
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
     .rho_from_theta = rho_from_theta,
+    .one_minus_rho = one_minus_rho,
     .tail = tail,
     .draw = draw_frank,
     .frailty = &log_series_frailty,

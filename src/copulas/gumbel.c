@@ -62,6 +62,23 @@ static status rho_from_theta(double theta, double df, double *rho)
     return OK;
 }
 
+/* (1 + A0)^-2 - (1 + A)^-2, where A0 = max(w, 1 - w) is Pickands' function of the upper bound */
+static double below_bound(double p, double theta)
+{
+    double small = exp(-p), bound = 1 / (1 + small), rise = expm1(log1p(exp(-theta * p)) / theta);
+    double a = bound * (1 + rise), ends = (1 + bound) * (1 + a);
+    return bound * rise * (2 + bound + a) / (ends * ends) * small * bound * bound;
+}
+
+/* Where theta is large all of it lies within 40 in theta p. */
+static double one_minus_rho(double theta)
+{
+    double sum = 0;
+    for (int panel = 0; panel < 8; panel++)
+        sum += integral_over(below_bound, theta, 5 * panel / theta, 5 * (panel + 1) / theta);
+    return 24 * sum;
+}
+
 /* 2 - 2^(1/theta) */
 static double tail(double theta, double df, enum corner corner)
 {
@@ -91,18 +108,27 @@ static double one_turned(double u, double v, double theta)
     return -v * expm1(-y * expm1(portable_log1pexp(log_ratio) / theta));
 }
 
+/* The probability that a column is beyond exp(-y) given that the other is exp(-x), one less
+ * exp(x - z) (z/x)^(1-theta) with z = (x^theta + y^theta)^(1/theta). */
+static double beyond(double x, double y, double theta)
+{
+    double log_rise = portable_log1pexp(theta * (log(y) - log(x))) / theta;
+    return -expm1(-x * expm1(log_rise) - (theta - 1) * log_rise);
+}
+
+static double pair_beyond(double u, double v, double theta)
+{
+    return beyond(-log(u), -log(v), theta);
+}
+
 struct given {
     double theta, y;                         /* -log of the other column */
 };
 
-/* The probability that the other column is above its point, given that this one is lost below 1:
- * 1 - exp(x - z) (z/x)^(1-theta) with x = -log(1 - lost), z = (x^theta + y^theta)^(1/theta). */
 static double above_given(double lost, const void *with)
 {
     const struct given *k = with;
-    double x = -log1p(-lost), theta = k->theta;
-    double log_rise = portable_log1pexp(theta * log(k->y / x)) / theta;
-    return -expm1(-x * expm1(log_rise) - (theta - 1) * log_rise);
+    return beyond(-log1p(-lost), k->y, k->theta);
 }
 
 /* u + v - 1 + C(1-u, 1-v) */
@@ -134,6 +160,7 @@ static const struct generator generator = {
     .prepare = prepare,
     .log_derivative = log_derivative,
     .derivative_seconds = stable_sum_seconds,
+    .beyond = pair_beyond,
     .turned = { one_turned, both_turned },
 };
 
@@ -145,6 +172,7 @@ const family gumbel_family = {
     .theta_from_tau = theta_from_tau,
     .tau_from_theta = tau_from_theta,
     .rho_from_theta = rho_from_theta,
+    .one_minus_rho = one_minus_rho,
     .tail = tail,
     .draw = draw_by_frailty,
     .frailty = &stable_frailty,

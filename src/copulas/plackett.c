@@ -13,8 +13,8 @@
  *   above, the integral over m is done in closed form and 1 - tau is one over d.
  *
  * Special cases
- *   theta = 1: independence. tau = -1 and 1 are not reached. At points theta beyond 1e-100 and
- *   1e100 is taken as these.
+ *   theta = 1: independence. tau = -1 and 1 are not reached. At points theta beyond 1e-300 and
+ *   1e300 is taken as these.
  *
  * Accuracy
  *   tau, rho and theta to 1e-14 relative, also near independence.
@@ -26,10 +26,9 @@
 
 #include <math.h>
 
-/* theta where its square neither overflows nor vanishes; what is beyond looks the same */
 static double held(double theta)
 {
-    return fmax(1e-100, fmin(theta, 1e100));
+    return fmax(1e-300, fmin(theta, 1e300));
 }
 
 /* ---- tau, of eta >= 0 ---- */
@@ -90,7 +89,7 @@ static double positive_tau(double eta)
 static status tau_from_theta(double theta, double *tau)
 {
     if (!(theta > 0 && theta < HUGE_VAL)) return OUT_OF_DOMAIN;
-    theta = held(theta);
+    theta = fmax(1e-100, fmin(theta, 1e100));      /* tau is 1 or -1 to rounding before */
     *tau = theta >= 1 ? positive_tau(theta - 1) : -positive_tau((1 - theta) / theta);
     return OK;
 }
@@ -153,13 +152,21 @@ static double rho_over(double x, const void *rho)
     return rho_of_log(x) - *(const double *)rho;
 }
 
+/* 1 - rho = (x + exp(-x) - 1) / (cosh x - 1) */
+static double rho_over_strong(double x, const void *rho)
+{
+    double half = sinh(x / 2);
+    return (1 - *(const double *)rho) - (x + expm1(-x)) / (2 * half * half);
+}
+
 /* rho is near x/3 for small x, and 1 - rho below 2 x exp(-x) for large. */
 static status theta_from_spearman(double rho, double *theta)
 {
     double size = fabs(rho), x = 0;
     if (!(size < 1)) return OUT_OF_DOMAIN;
     double far = fmin(700, 3 * size + 8 * size - 1.5 * log(1 - size));
-    status s = size < 1e-300 ? OK : root_between(rho_over, &size, 2.9 * size, far, &x);
+    status s = size < 1e-300 ? OK : root_between(size < 0.9 ? rho_over : rho_over_strong, &size,
+                                                 2.9 * size, far, &x);
     *theta = exp(copysign(x, rho));
     return s;
 }
@@ -174,18 +181,26 @@ static double tail(double theta, double df, enum corner corner)
 
 /* ---- at points ---- */
 
+/* u + v - 1, to rounding also where one is near 1 and the other near 0 */
+static double beyond_diagonal(double u, double v)
+{
+    return u > v ? (u - 1) + v : (v - 1) + u;
+}
+
 /* S; for theta < 1 with d and m as above */
 static double root_of(double u, double v, double theta)
 {
-    double eta = theta - 1, d = u - v, m = (u - 1) + v;
-    if (eta >= 0) return sqrt(1 + 2 * eta * (u * (1 - v) + v * (1 - u)) + eta * d * (eta * d));
-    return sqrt(theta * ((1 - d) * (1 + d) + theta * d * d) - eta * m * m);
+    double eta = theta - 1, d = u - v, m = beyond_diagonal(u, v);
+    if (eta >= 0) return hypot(sqrt(1 + 2 * eta * (u * (1 - v) + v * (1 - u))), eta * d);
+    double apart = ((1 - u) + v) * ((1 - v) + u) + theta * d * d;
+    return hypot(sqrt(theta) * sqrt(apart), sqrt(-eta) * m);
 }
 
 static double cdf(double u, double v, double theta)
 {
     theta = held(theta);
-    double eta = theta - 1, b = 1 + eta * (u + v), root = root_of(u, v, theta);
+    double eta = theta - 1, root = root_of(u, v, theta);
+    double b = eta >= 0 ? 1 + eta * (u + v) : theta * (u + v) - beyond_diagonal(u, v);
     return b > 0 ? 2 * theta / (b + root) * u * v : (root - b) / (-2 * eta);
 }
 
@@ -199,17 +214,28 @@ static double log_density(double u, double v, double theta)
 static double conditional(double u, double v, double theta)
 {
     theta = held(theta);
-    double root = root_of(u, v, theta), a = theta * (u - v) - ((u - 1) + v);
+    double root = root_of(u, v, theta), a = theta * (u - v) - beyond_diagonal(u, v);
     return a > 0 ? 2 * theta / (root + a) * v * (1 - v) / root : (root - a) / (2 * root);
 }
 
-static double conditional_quantile(double u, double w, double theta)
+static double beyond(double u, double v, double theta)
 {
     theta = held(theta);
-    double eta = theta - 1, a = w * (1 - w), b = theta + a * eta * eta;
-    double c = 2 * a * (u * theta * theta + (1 - u)) + theta * (1 - 2 * a);
-    double d = sqrt(theta * (theta + 4 * a * u * (1 - u) * eta * eta)), e = (1 - u) + theta * u;
-    return w < 0.5 ? 2 * a * e * e / (c + (1 - 2 * w) * d) : (c + (2 * w - 1) * d) / (2 * b);
+    double root = root_of(u, v, theta), a = theta * (u - v) - beyond_diagonal(u, v);
+    return a < 0 ? 2 * theta / (root - a) * v * (1 - v) / root : (root + a) / (2 * root);
+}
+
+/* Johnson's parts, divided by the power of 2 below theta: the square of theta might overflow. */
+static double conditional_quantile(double u, double w, double theta)
+{
+    int exponent;
+    theta = held(theta);
+    double near = ldexp(frexp(theta, &exponent), 1), scale = ldexp(1, 1 - exponent);
+    double eta = theta - 1, little = eta * scale, a = w * (1 - w), b = near + a * eta * little;
+    double c = 2 * a * (u * theta * near + (1 - u) * scale) + near * (1 - 2 * a);
+    double d = sqrt(near * (near + 4 * a * u * (1 - u) * eta * little)), e = (1 - u) + theta * u;
+    return w < 0.5 ? 2 * a * e * (e * scale) / (c + (1 - 2 * w) * d)
+                   : (c + (2 * w - 1) * d) / (2 * b);
 }
 
 static status draw_plackett(const copula *c, const struct draw_rows *where, pool *p)
@@ -224,8 +250,14 @@ static double one_turned(double u, double v, double theta)
     return cdf(u, v, 1 / held(theta));
 }
 
-static const struct pair_functions pair = { cdf, log_density, conditional, conditional_quantile,
-                                            { one_turned, cdf } };
+static const struct pair_functions pair = {
+    .cdf = cdf,
+    .log_density = log_density,
+    .conditional = conditional,
+    .beyond = beyond,
+    .conditional_quantile = conditional_quantile,
+    .turned = { one_turned, cdf },
+};
 
 const family plackett_family = {
     .word = "plackett",

@@ -6,13 +6,6 @@
 #include <float.h>
 #include <gsl/gsl_errno.h>
 
-static size_t split(const char *text, double *u)
-{
-    size_t n = 0;
-    for (char *end; *text; text = end + (*end == ' ')) u[n++] = strtod(text, &end);
-    return n;
-}
-
 /* archimedean_points.csv, written by copula_points.py with mpmath at 400 digits. Numbers that are
  * tiny differences of large ones lose what their doubles do not hold: clayton with theta = 1e-9
  * stands near the density 1. */
@@ -23,7 +16,7 @@ static void published_points(void **state)
     for (size_t i = 0; i < t->rows; i++) {
         struct sample_copula s;
         double u[20], theta = csv_number(t, i, "theta"), most = csv_number(t, i, "tolerance");
-        size_t d = split(csv_text(t, i, "u"), u);
+        size_t d = numbers_in(csv_text(t, i, "u"), u);
         copula *c = one_parameter(&s, csv_text(t, i, "family"), d, theta);
         assert_close(ask(c, CDF, u), csv_number(t, i, "C"), most);
         assert_within(ask(c, LOG_DENSITY, u), csv_number(t, i, "log_density"), most);

@@ -37,4 +37,12 @@ static inline double ask_pair(const copula *c, enum asked what, double u, double
     return ask(c, what, (double[]){ u, v });
 }
 
+/* the numbers of a text, blanks between them; how many */
+static inline size_t numbers_in(const char *text, double *u)
+{
+    size_t n = 0;
+    for (char *end; *text; text = end + (*end == ' ')) u[n++] = strtod(text, &end);
+    return n;
+}
+
 #endif

@@ -126,6 +126,10 @@ static void theta_of_rho(void **state)
     assert_close(negative, -0.5, 1e-12);
     double t = number_of("THETARHO", 3, (value[]){ text("t"), number(0.469020170), number(4) });
     assert_within(t, 0.5, 1e-8);
+    double many = number_of("THETARHO", 3, (value[]){ text("t"), number(0.5), number(1e9) });
+    assert_within(many, half, 1e-9);                       /* the normal, and below that of tau */
+    double few = number_of("THETARHO", 3, (value[]){ text("t"), number(0.5), number(1e-9) });
+    assert_within(few, sqrt(0.5), 1e-8);
     refused("THETARHO", 2, (value[]){ text("t"), number(0.5) }, BAD_KIND,
             "df is missing: t needs it");
     refused("THETARHO", 3, (value[]){ text("joe"), number(0.5), number(4) }, BAD_KIND,
@@ -157,6 +161,9 @@ static void df_from_tail_dependence(void **state)
     assert_close(number_of("DFFROMTAIL", 2, (value[]){ number(0.5), number(0.3125) }), 3, 1e-12);
     refused("DFFROMTAIL", 2, (value[]){ number(0.5), number(0.7) }, OUT_OF_DOMAIN,
             "lambda is 0.7, but with a correlation of 0.5 the t copula reaches only (0;0.666667)");
+    refused("DFFROMTAIL", 2, (value[]){ number(0.9999999), number(1e-300) }, OUT_OF_DOMAIN,
+            "lambda is 1e-300, but with a correlation of 0.9999999 takes degrees of freedom "
+            "outside [1e-6;1e9]");
     refused("DFFROMTAIL", 2, (value[]){ number(1), number(0.5) }, OUT_OF_DOMAIN,
             "correlation is 1, but must be above -1 and below 1");
 }
