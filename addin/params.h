@@ -9,6 +9,9 @@
     { .name = "x", .help = "One column or row of observations.", .kind = COLUMN }, \
     { .name = "y", .help = "As many observations of another line.", .kind = COLUMN, .fits = "x" }
 
+#define MODEL_BLOCK \
+    { .name = "model", .help = "A model block, as MODEL returns it.", .kind = MODEL }
+
 #define OBSERVATIONS \
     { .name = "data", .help = "Observations in rows, lines in columns.", .kind = DATA }
 

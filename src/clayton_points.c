@@ -122,8 +122,8 @@ static status from_conditional(const struct evaluation *e, const double *w, doub
     return OK;
 }
 
-/* w times the sum over k < d of (1/theta)(1/theta + 1)...(1/theta + k-1) / k! (1 - w^theta)^k (Barbe,
- * Genest, Ghoudi & Remillard 1996) */
+/* w times the sum over k < d of (1/theta)(1/theta + 1)...(1/theta + k-1) / k! (1 - w^theta)^k
+ * (Barbe, Genest, Ghoudi & Remillard 1996) */
 static double kendall(const struct evaluation *e, double w)
 {
     double theta = fmax(e->c->theta, LEAST), missing = -expm1(theta * log(w)), term = w, sum = w;

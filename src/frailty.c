@@ -129,7 +129,9 @@ static void log_sibuyas(const struct frailty_tables *t, double *restrict a,
 }
 
 const struct frailty gamma_frailty = { prepare_gamma, log_gammas, gamma_transforms, gamma_mean };
-const struct frailty stable_frailty = { prepare_theta, log_stables, stable_transforms, stable_mean };
+const struct frailty stable_frailty = { prepare_theta, log_stables, stable_transforms,
+                                        stable_mean };
 const struct frailty log_series_frailty = { prepare_theta, log_log_series, log_series_transforms,
                                             log_series_mean };
-const struct frailty sibuya_frailty = { prepare_sibuya, log_sibuyas, sibuya_transforms, sibuya_mean };
+const struct frailty sibuya_frailty = { prepare_sibuya, log_sibuyas, sibuya_transforms,
+                                        sibuya_mean };

@@ -4,10 +4,10 @@
  *   Mid-ranks R, S among the rows that have both. A row is in the lower tail of k rows when
  *   max(R, S) <= k, in the upper when min(R, S) > n - k: rows are counted by max and min, rounded
  *   up to whole ranks, and the counts accumulated, which gives the tails of every size at once.
- *   Schmidt & Stadtmueller (2006) give the limit of the variance of sqrt(k) (lambda^ - lambda) for ranked data as lambda + a^2 + b^2 + 2
- *   lambda ((a - 1)(b - 1) - 1), a and b the partial derivatives of the tail copula at (1;1). They
- *   add up to lambda; halves are exact for exchangeable pairs, and make lambda (1 - lambda)(1 -
- *   lambda/2) of it.
+ *   Schmidt & Stadtmueller (2006) give the limit of the variance of sqrt(k) (lambda^ - lambda) for
+ *   ranked data as lambda + a^2 + b^2 + 2 lambda ((a - 1)(b - 1) - 1), a and b the partial
+ *   derivatives of the tail copula at (1;1). They add up to lambda; halves are exact for
+ *   exchangeable pairs, and make lambda (1 - lambda)(1 - lambda/2) of it.
  *
  * Special cases
  *   Ties across the edge of the tail are all in it or all outside, by their mid-rank.

@@ -28,8 +28,9 @@ status new_joint_ranks(const double *x, const double *y, size_t n, struct joint_
 size_t rows_in_tail(const struct joint_ranks *ranks, double fraction);
 
 /* With k rows in the tail, k = 1 to n, and mid-ranks R, S of n rows: upper #(R > n-k and S >
- * n-k)/k, lower #(R <= k and S <= k)/k. The error is that of Schmidt & Stadtmueller (2006) with both partial
- * derivatives of the tail copula taken as lambda/2: sqrt(lambda (1 - lambda)(1 - lambda/2)/k). */
+ * n-k)/k, lower #(R <= k and S <= k)/k. The error is that of Schmidt & Stadtmueller (2006) with
+ * both partial derivatives of the tail copula taken as lambda/2: sqrt(lambda (1 - lambda)(1 -
+ * lambda/2)/k). */
 void upper_tail(const struct joint_ranks *ranks, size_t k, struct tail_estimate *t);
 void lower_tail(const struct joint_ranks *ranks, size_t k, struct tail_estimate *t);
 

@@ -1,5 +1,6 @@
 /* describe.c - what a model says, and what stands in a block. */
 #include "../function.h"
+#include "../params.h"
 #include "../read.h"
 #include "../words.h"
 #include "../../src/pair_measures.h"
@@ -251,8 +252,7 @@ const function describe_functions[] = {
             { "TAUOF(MODEL(\"t\";0.5;4;0;3))", "1" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
         },
         .costly = true,
         .call = cell_tauof,
@@ -269,8 +269,7 @@ const function describe_functions[] = {
             { "RHOOF(MODEL(\"clayton\";-0.5))", "-0.466666666666667" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
         },
         .costly = true,
         .call = cell_rhoof,
@@ -288,8 +287,7 @@ const function describe_functions[] = {
             { "TAILOF(MODEL(\"gaussian\";0.9);\"upper\")", "0" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
             { .name = "corner", .help = "lower or upper.", .kind = WORD, .words = "lower upper" },
         },
         .call = cell_tailof,

@@ -1,5 +1,6 @@
 /* points.c - what a model says at points. */
 #include "../function.h"
+#include "../params.h"
 #include "../read.h"
 #include "../shape.h"
 #include "../words.h"
@@ -273,12 +274,12 @@ const function points_functions[] = {
             "in which nothing cancels; for a grouped t also the integral over its chi-squares. "
             "gaussian and t beyond pairs by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with "
             "32,768 points, fewer for many rows, of which columns beyond the 128th are random "
-            "numbers; WHY states the standard error. Archimedean families in any dimension by their generator, rotated "
-            "by 180 as the mean over their frailty (Marshall & Olkin 1988) of the product of what "
-            "the columns then do by themselves, to 1e-10 relative too. A row with a gap gives an "
-            "empty cell; points with a header give a column with the header cdf. The probability "
-            "that all columns are above a point is that of the model with rotation 180 at 1 - u; "
-            "give that as it is, 1e-20 where u is 1 - 1e-20.",
+            "numbers; WHY states the standard error. Archimedean families in any dimension by "
+            "their generator, rotated by 180 as the mean over their frailty (Marshall & Olkin "
+            "1988) of the product of what the columns then do by themselves, to 1e-10 relative "
+            "too. A row with a gap gives an empty cell; points with a header give a column with "
+            "the header cdf. The probability that all columns are above a point is that of the "
+            "model with rotation 180 at 1 - u; give that as it is, 1e-20 where u is 1 - 1e-20.",
         .examples = {
             { "CDF(MODEL(\"gaussian\";0.5);{0.5;0.5})", "0.333333333333333" },
             { "CDF(MODEL(\"clayton\";1);{0.5;0.5|0.2;0.9})", "0.333333333333333" },
@@ -286,8 +287,7 @@ const function points_functions[] = {
             { "CDF(MODEL(\"gumbel\";2);{0.5;1.5})", "#NUM!" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
             { .name = "points", .fits = "model",
               .help = "One point a row, one column for each of the model, from 0 to 1. Below a "
                       "header the result begins with the word cdf. Many rows get fewer points of "
@@ -313,8 +313,7 @@ const function points_functions[] = {
             { "DENSITY(MODEL(\"gaussian\";1);{0.5;0.5})", "#NUM!" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
             { .name = "points", .fits = "model",
               .help = "One point a row, one column for each of the model, between 0 and 1.",
               .kind = DATA },
@@ -330,17 +329,16 @@ const function points_functions[] = {
             "The transform of Rosenblatt (1952): column 1 as it is, column j the probability that "
             "the line is at most what it is, given the columns before. Of rows that follow the "
             "model the result is uniform and independent, which is a way to look where a model "
-            "does not fit. A singular matrix and perfect dependence are "
-            "#NUM!. A row with a gap gives empty cells. What would take more than about 20 s is "
-            "refused: 10,000 rows of gumbel take that in some 1,800 columns, one row in some "
-            "6,000, and 10,000 of a grouped t in some 60.",
+            "does not fit. A singular matrix and perfect dependence are #NUM!. A row with a gap "
+            "gives empty cells. What would take more than about 20 s is refused: 10,000 rows of "
+            "gumbel take that in some 1,800 columns, one row in some 6,000, and 10,000 of a "
+            "grouped t in some 60.",
         .examples = {
             { "INDEX(CONDITIONAL(MODEL(\"clayton\";1);{0.5;0.5});1;2)", "0.444444444444444" },
             { "INDEX(CONDITIONAL(MODEL(\"independent\");{0.3;0.8});1;2)", "0.8" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
             { .name = "points", .fits = "model",
               .help = "One point a row, one column for each of the model, between 0 and 1.",
               .kind = DATA },
@@ -365,8 +363,7 @@ const function points_functions[] = {
               "0.877620530654097" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
             { .name = "points", .fits = "model",
               .help = "One row of uniforms for each row wanted, between 0 and 1.", .kind = DATA },
         },
@@ -384,17 +381,16 @@ const function points_functions[] = {
             "gaussian, t and rotation 180 in more than two dimensions, a grouped t, and a t pair "
             "with df below 0.25 by quasi-Monte Carlo: along up to 4,096 lines through the unit "
             "cube on which the distribution function rises, fewer in many columns, which take some "
-            "2 s in all and answer every value; WHY states the standard error. A value of another t "
-            "pair takes some 0.02 s, with df below 2 some 0.08 s; what would take more than about "
-            "20 s is refused. Of a pair tau is 3 - 4 times the area below it (Genest & Rivest "
-            "1993).",
+            "2 s in all and answer every value; WHY states the standard error. A value of another "
+            "t pair takes some 0.02 s, with df below 2 some 0.08 s; what would take more than "
+            "about 20 s is refused. Of a pair tau is 3 - 4 times the area below it (Genest & "
+            "Rivest 1993).",
         .examples = {
             { "KENDALLOF(MODEL(\"independent\");0.5)", "0.846573590279973" },
             { "KENDALLOF(MODEL(\"clayton\";1);0.5)", "0.75" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.",
-              .kind = MODEL },
+            MODEL_BLOCK,
             { .name = "w", .help = "From 0 to 1, a number or a range of them.", .kind = NUMBERS,
               .low = 0, .high = 1 },
         },

@@ -1,5 +1,6 @@
 /* simulate.c - draws from a model. */
 #include "../function.h"
+#include "../params.h"
 #include "../../src/scheme.h"
 
 static const char GROUP[] = "Simulate";
@@ -80,7 +81,7 @@ const function simulate_functions[] = {
             { "DRAW(MODEL(\"gumbel\";2);5;42;\"latin\";4)", "#NUM!" },
         },
         .params = {
-            { .name = "model", .help = "A model block, as MODEL returns it.", .kind = MODEL },
+            MODEL_BLOCK,
             { .name = "rows", .help = "How many rows, at most 1048576.", .kind = WHOLE,
               .low = 1, .high = 1048576 },
             { .name = "seed", .help = "A whole number from 0; another seed gives other numbers.",

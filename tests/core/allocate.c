@@ -124,8 +124,8 @@ static void alike_rows(void **state)
     pool_empty(&p);
 }
 
-/* A line's part is its loss when that is the same in each of very many rows, and as exactly when the
- * rows are tied only in their sum: here 0.1 and 0.3 in turn, on average 0.2. */
+/* A line's part is its loss when that is the same in each of very many rows, and as exactly when
+ * the rows are tied only in their sum: here 0.1 and 0.3 in turn, on average 0.2. */
 static void parts_of_many_tied_rows(void **state)
 {
     (void)state;
@@ -146,8 +146,8 @@ static void parts_of_many_tied_rows(void **state)
     pool_empty(&p);
 }
 
-/* At a level of 1 to the last bit the tail is a part of the largest row, and by definition the parts
- * are its losses, even where lines are far larger than their sum in the row next to it. */
+/* At a level of 1 to the last bit the tail is a part of the largest row, and by definition the
+ * parts are its losses, even where lines are far larger than their sum in the row next to it. */
 static void the_very_largest_row(void **state)
 {
     (void)state;

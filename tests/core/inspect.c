@@ -48,8 +48,8 @@ static void feasible_says_why_not(void **unused)
                                          "but 0.8 in the opposite cell");
     assert_feasible("1,2;2,1", 0, 0, "matrix has 2 in row 1, column 2, outside [-1;1]");
     assert_feasible(",a,b;a,1,0;b,0,2", 0, 0,
-                    "header of matrix skipped (\"a\", ...); matrix has 2 on its diagonal, in row 3, "
-                    "column 3, where 1 must stand");
+                    "header of matrix skipped (\"a\", ...); matrix has 2 on its diagonal, in row "
+                    "3, column 3, where 1 must stand");
 }
 
 /* The limits for 0.5 and 0.7 of Stanley & Wang (1969), as printed to eight digits. */

@@ -115,8 +115,8 @@ static bool is_feasible(const double *m, size_t d)
     return feasible;
 }
 
-/* A matrix that is feasible by its eigenvalues, singular and off by the noise of a sheet's rounding,
- * has leeway by definition: the entry as it stands is one that will do. And what will do lies
+/* A matrix that is feasible by its eigenvalues, singular and off by the noise of a sheet's
+ * rounding, has leeway by definition: the entry as it stands is one that will do. And what will do lies
  * between the limits, as far as its last digits allow. */
 static void feasible_singular_matrices(void **unused)
 {

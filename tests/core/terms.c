@@ -90,8 +90,8 @@ static void without_terms(void **state)
     pool_empty(&p);
 }
 
-/* A gain goes whole to the aggregate as well: of 100 - 30 = 70 it pays 20 beyond 50, which the lines
- * share as 100 to -30. */
+/* A gain goes whole to the aggregate as well: of 100 - 30 = 70 it pays 20 beyond 50, which the
+ * lines share as 100 to -30. */
 static void gains_without_terms(void **state)
 {
     (void)state;

@@ -46,9 +46,9 @@ static void texts_that_read_as_names(void **state)
     (void)state;
     static const char *const names[] = { "motor", "Q1", "5 EUR", "2018 motor", "\xc3\xa9t\xc3\xa9",
                                          "\xe6\x90\x8d" };
-    static const char *const others[] = { "", " ", "(7)", "$5", "\xe2\x82\xac 5", "\xe2\x88\x92" "5",
-                                          "12-", "1/2", "2020-01-01", "1\xc2\xa0" "234,5", "5\xc2\xa0%",
-                                          "-", "1e5" };
+    static const char *const others[] = { "", " ", "(7)", "$5", "\xe2\x82\xac 5", "\xe2\x88\x92"
+                                          "5", "12-", "1/2", "2020-01-01", "1\xc2\xa0" "234,5",
+                                          "5\xc2\xa0%", "-", "1e5" };
     for (size_t i = 0; i < sizeof names / sizeof *names; i++) assert_true(reads_as_name(names[i]));
     for (size_t i = 0; i < sizeof others / sizeof *others; i++)
         assert_false(reads_as_name(others[i]));

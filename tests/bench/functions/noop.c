@@ -1,5 +1,6 @@
 /* noop.c - a function that does nothing with two ranges: what the office and the conversion of the
- * arguments cost. Built into the extension that `make bench` measures, never into the one that ships.
+ * arguments cost. Built into the extension that `make bench` measures, never into the one that
+ * ships.
  */
 #include "../../../addin/function.h"
 
