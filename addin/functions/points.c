@@ -140,6 +140,14 @@ static status row_cdf(const struct evaluation *e, const double *u, double *to, d
     return cdf_at(e, u, to, error);
 }
 
+/* The error rounded up to two digits. */
+static void remark_quasi(size_t points, double error, report *r)
+{
+    double digit = error > 0 ? pow(10, floor(log10(error)) - 1) : 1;
+    remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %g", points,
+           ceil(error / digit) * digit);
+}
+
 static status cell_cdf(const argument *in, value *out, report *r)
 {
     struct answers a;
@@ -147,8 +155,7 @@ static status cell_cdf(const argument *in, value *out, report *r)
     struct way way = { row_cdf, cdf_seconds_at };
     status s = ask_all(in, ASK_CDF, 1, way, &a, &e, r);
     if (s == OK && a.error > 0)
-        remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %g",
-               box_points(&e), a.error);
+        remark_quasi(box_points(&e), a.error, r);
     return s == OK ? one_column(in, &a, "cdf", out, r) : s;
 }
 
@@ -255,8 +262,7 @@ static status cell_kendallof(const argument *in, value *out, report *r)
     if (s == OK) s = kendall_at(&e, w, n, k, &error, r->pool);
     if (s != OK) return s;
     if (n > 0 && kendall_rays(&e))
-        remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %.2g",
-               kendall_rays(&e), error);
+        remark_quasi(kendall_rays(&e), error, r);
     put_back(asked, k, to);
     return numbers_like(&in[1], to, out, r);
 }

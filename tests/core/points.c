@@ -68,6 +68,12 @@ static void values(void **state)
     pool_empty(&c.pool);
 }
 
+static double told_error(const struct call *c)
+{
+    const char *at = strstr(c->report.facts, "at most ");
+    return at ? strtod(at + strlen("at most "), NULL) : NAN;
+}
+
 /* David (1953): 1/4 at correlation 1/2 in three columns; the error is in WHY. A mean over a frailty
  * has none. */
 static void errors_are_told(void **state)
@@ -79,6 +85,7 @@ static void errors_are_told(void **state)
     assert_within(cell(&c, 0, 0), 0.25, 1e-5);
     assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo with 32768 points, with a "
                                            "standard error of at most "));
+    assert_in_range(1e9 * told_error(&c), 1, 1e4);
     call(&c, "CDF", 2, (value[]){ survival, cells(&c.pool, "0.5,0.5,0.5") });
     assert_true(cell(&c, 0, 0) > 0.25);
     assert_null(strstr(c.report.facts, "standard error"));
@@ -147,6 +154,7 @@ static void kendall_distribution(void **state)
     assert_int_equal(fault_in(cell(&c, 2, 1)), OUT_OF_DOMAIN);
     assert_non_null(strstr(c.report.facts, "by quasi-Monte Carlo with 4096 points, with a standard "
                            "error of at most "));
+    assert_in_range(1e9 * told_error(&c), 1e3, 1e6);
     double known = cell(&c, 1, 1);
     call(&c, "KENDALLOF", 2, (value[]){ t, number(0.5) });
     assert_int_equal(c.out.is, IS_NUMBER);
