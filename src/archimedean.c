@@ -6,6 +6,10 @@
  *   psi^(j-1)(T_(j-1)) (Hofert, Maechler & McNeil 2012). The derivatives are the family's, by
  *   sums of positive terms. The inverse is a root in log t.
  *
+ * Special cases
+ *   Dependence so strong that log w is lost beside the derivative (theta from about 1e10): the
+ *   inverse leaves the column as those before.
+ *
  * Accuracy
  *   Logarithms to about 1e-15 times their size and the order.
  */
@@ -15,6 +19,8 @@
 
 #include <float.h>
 #include <math.h>
+
+static const double FAR_FROM_ONE = 1e10;      /* a logarithm only theta can bring about */
 
 double log_added(double a, double b)
 {
@@ -124,10 +130,11 @@ static status from_conditional(const struct evaluation *e, const double *w, doub
     struct wanted k = { .e = e, .log_sum = e->c->family->generator->log_inverse(w[0], theta) };
     u[0] = w[0];
     for (size_t j = 1; j < e->c->dimension; j++) {
-        double log_t;
+        double before = log_derivative(e, j, k.log_sum), log_t = k.log_sum;
         k.order = j;
-        k.log_goal = log_derivative(e, j, k.log_sum) + log(w[j]);
-        status s = solve(&k, &log_t);
+        k.log_goal = before + log(w[j]);
+        bool lost = k.log_goal == before && fabs(before) > FAR_FROM_ONE;
+        status s = lost ? OK : solve(&k, &log_t);
         if (s != OK) return s;
         u[j] = e->c->family->psi(log_t, theta);
         k.log_sum = log_added(k.log_sum, log_t);

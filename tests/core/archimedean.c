@@ -176,6 +176,22 @@ static void transforms_of_many(void **state)
         }
 }
 
+/* Where theta has left nothing but the upper bound min(u, v) (Nelsen 2006, chapter 4) the columns
+ * are the same, whatever w. */
+static void upper_bound(void **state)
+{
+    (void)state;
+    static const char *const words[] = { "clayton", "gumbel", "frank", "joe" };
+    for (int k = 0; k < 24; k++) {
+        struct sample_copula s;
+        const double theta = pow(10, 15 + k / 4 % 3);
+        const double w[3] = { k < 12 ? 0.3 : 0.999, k % 2 ? 0.9 : 1e-3, 0.5 };
+        for (size_t d = 2; d <= 3; d++)
+            assert_within(ask(one_parameter(&s, words[k % 4], d, theta), FROM_CONDITIONAL, w), w[0],
+                          3e-14);
+    }
+}
+
 /* Rotation by 180 in three dimensions is the sum over all subsets, written out. */
 static void survival(void **state)
 {
@@ -215,8 +231,8 @@ int main(void)
         cmocka_unit_test(published_points), cmocka_unit_test(published_derivatives),
         cmocka_unit_test(any_sequence),
         cmocka_unit_test(many_columns), cmocka_unit_test(near_zero), cmocka_unit_test(independence),
-        cmocka_unit_test(transforms_of_many), cmocka_unit_test(survival),
-        cmocka_unit_test(every_take_can_fail),
+        cmocka_unit_test(transforms_of_many), cmocka_unit_test(upper_bound),
+        cmocka_unit_test(survival), cmocka_unit_test(every_take_can_fail),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
