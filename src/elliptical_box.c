@@ -3,24 +3,24 @@
  * Method
  *   Genz (1992): with X = L Y the probability is an integral over the unit cube, column by column
  *   of the conditional probability given those drawn before; for t one more coordinate drives the
- *   chi-squares (Genz & Bretz 2002). Scrambled Sobol' points under eight seeds, in the columns
- *   beyond IN_SOBOL random numbers under the same: the mean, and its standard error from how the
- *   eight differ. The seeds are fixed, so that the same question has the same answer.
+ *   chi-squares (Genz & Bretz 2002). The points of cube.h under eight seeds: the mean, and its
+ *   standard error from how the eight differ. The seeds are fixed, so that the same question has
+ *   the same answer.
  *
  * Special cases
  *   Where a pivot is zero the column is decided by those before it.
  */
+#include "cube.h"
 #include "elliptical_points.h"
 #include "normal.h"
-#include "sobol.h"
 
 #include <math.h>
 
-enum { SEEDS = 8, MOST_ROWS = 4096, FEWEST_ROWS = 64, IN_SOBOL = 128 };
+enum { SEEDS = 8, MOST_ROWS = 4096, FEWEST_ROWS = 64 };
 
 /* What every question shares. */
 struct box_points {
-    struct sobol under[SEEDS];
+    struct cube_points under[SEEDS];
     size_t rows;                              /* under each seed */
     double (*u)[ROWS_AT_ONCE];                /* by column, that of the chi-squares last */
     double *scale, *y;                        /* of the columns at one point */
@@ -41,9 +41,8 @@ status elliptical_box_prepare(struct elliptical_points *m, pool *p)
     box->scale = pool_take(p, m->d, sizeof *box->scale);
     box->y = pool_take(p, m->d, sizeof *box->y);
     status s = box->u && box->scale && box->y ? OK : NO_MEMORY;
-    size_t in_sobol = m->d < IN_SOBOL ? m->d : IN_SOBOL;
     for (int k = 0; s == OK && k < SEEDS; k++)
-        s = sobol_prepare(&box->under[k], in_sobol, (uint64_t)k, p);
+        s = cube_prepare(&box->under[k], m->d, (uint64_t)k, p);
     return s;
 }
 
@@ -90,17 +89,18 @@ static double at_point(struct box *b, size_t row)
     return product;
 }
 
-/* The last of Sobol's dimensions is that of the chi-squares, which matter to every column. */
+/* The chi-squares, which matter to every column, get the last dimension of Sobol's points. */
+static size_t dimension_of(size_t column, size_t d)
+{
+    size_t last = d < SOBOL_DIMENSIONS ? d - 1 : SOBOL_DIMENSIONS - 1;
+    return column < last ? column : column + 1 == d ? last : column + 1;
+}
+
 static void take_points(const struct box *b, size_t seed, size_t first)
 {
-    const struct sobol *points = &b->m->box->under[seed];
-    size_t last = points->dimensions - 1, random = b->m->d - points->dimensions;
-    double unused[ROWS_AT_ONCE];
-    for (size_t j = 0; j < last; j++) sobol_of_rows(points, j, first, b->u[j]);
-    sobol_of_rows(points, last, first, b->u[b->m->d - 1]);
-    for (size_t j = 0; j < random; j += 2)
-        uniforms_of_rows(seed, FOR_BOX, first, (uint32_t)(j / 2), b->u[last + j],
-                         j + 1 < random ? b->u[last + j + 1] : unused);
+    size_t d = b->m->d;
+    for (size_t j = 0; j < d; j++)
+        cube_of_rows(&b->m->box->under[seed], dimension_of(j, d), first, b->u[j]);
 }
 
 static double mean_under_seed(struct box *b, size_t seed)

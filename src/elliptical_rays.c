@@ -34,7 +34,7 @@ struct elliptical_cut {
     size_t kinds, *kind_of;                   /* of degrees of freedom, and of each column */
     struct student *table;                    /* of each kind */
     double *log_chi;                          /* of each kind, on the ray */
-    struct ray_numbers inner[RAY_SEEDS];
+    struct cube_points inner[RAY_SEEDS];
     double (*u)[ROWS_AT_ONCE], (*y)[ROWS_AT_ONCE];
     double (*ratio)[ROWS_AT_ONCE];            /* of the roots of chi-squares to those of the ray */
     double weight[ROWS_AT_ONCE], rest[ROWS_AT_ONCE], product[ROWS_AT_ONCE];
@@ -118,7 +118,7 @@ static void choose(const struct rays *r, const double *u, int seed, size_t index
     struct elliptical_cut *c = r->own;
     size_t d = c->m->d, needed = c->m->df ? d : d - 1;
     for (size_t j = 0; j < needed; j++)
-        ray_numbers_of_rows(&c->inner[seed], j, index * ROWS_AT_ONCE, c->u[j]);
+        cube_of_rows(&c->inner[seed], j, index * ROWS_AT_ONCE, c->u[j]);
     choose_columns(c, u, r->low < r->high);
     if (c->m->df) choose_chi_squares(c, u[r->dimensions - 1], c->u[d - 1]);
 }
@@ -223,6 +223,6 @@ status elliptical_rays(const struct evaluation *e, struct rays *r, pool *p)
     r->dimensions = d - found + (m->df != NULL);
     status s = m->df ? tables_of_kinds(c, p) : OK;
     for (int k = 0; s == OK && k < RAY_SEEDS; k++)
-        s = ray_numbers_prepare(&c->inner[k], d, (uint64_t)(RAY_SEEDS + k), p);
+        s = cube_prepare(&c->inner[k], d, (uint64_t)(RAY_SEEDS + k), p);
     return s;
 }

@@ -39,25 +39,6 @@ struct asked {
     double *sum;              /* of probabilities over the rays of a seed */
 };
 
-status ray_numbers_prepare(struct ray_numbers *n, size_t dimensions, uint64_t seed, pool *p)
-{
-    n->seed = seed;
-    size_t within = dimensions < SOBOL_DIMENSIONS ? dimensions : SOBOL_DIMENSIONS;
-    return sobol_prepare(&n->sobol, within, seed, p);
-}
-
-void ray_numbers_of_rows(const struct ray_numbers *n, size_t dimension, uint64_t first, double *u)
-{
-    double other[ROWS_AT_ONCE];
-    if (dimension < n->sobol.dimensions) {
-        sobol_of_rows(&n->sobol, dimension, first, u);
-        return;
-    }
-    bool odd = dimension % 2;
-    uniforms_of_rows(n->seed, FOR_DRAW, first, (uint32_t)(dimension / 2), odd ? other : u,
-                     odd ? u : other);
-}
-
 /* ---- the table of a ray ---- */
 
 static const double LOWEST_SCORE = -38, HIGHEST_SCORE = 8.3;   /* of 0 and 1 */
@@ -150,14 +131,14 @@ static double probability_before(const struct table *t, double g)
 
 /* ---- all rays ---- */
 
-static status add_rays(const struct rays *r, const struct ray_numbers *numbers, int seed,
+static status add_rays(const struct rays *r, const struct cube_points *numbers, int seed,
                        size_t rays, double (*u)[ROWS_AT_ONCE], double *row, struct asked *a)
 {
     struct table t;
     for (size_t i = 0; i < rays; i++) {
         size_t place = i % ROWS_AT_ONCE;
         for (size_t j = 0; place == 0 && j < r->dimensions; j++)
-            ray_numbers_of_rows(numbers, j, i, u[j]);
+            cube_of_rows(numbers, j, i, u[j]);
         for (size_t j = 0; j < r->dimensions; j++) row[j] = u[j][place];
         r->choose(r, row, seed, i);
         status s = tabulate(r, &t);
@@ -180,18 +161,18 @@ static double mean_of_seeds(const double *sum, size_t n, size_t rays, double *er
     return mean;
 }
 
-static status prepare_seeds(struct ray_numbers numbers[RAY_SEEDS], size_t dimensions, pool *p)
+static status prepare_seeds(struct cube_points numbers[RAY_SEEDS], size_t dimensions, pool *p)
 {
     status s = OK;
     for (int k = 0; s == OK && k < RAY_SEEDS; k++)
-        s = ray_numbers_prepare(&numbers[k], dimensions, (uint64_t)k, p);
+        s = cube_prepare(&numbers[k], dimensions, (uint64_t)k, p);
     return s;
 }
 
 status kendall_by_rays(const struct rays *r, size_t rays, const double *w, size_t n, double *k,
                        double *error, pool *p)
 {
-    struct ray_numbers numbers[RAY_SEEDS];
+    struct cube_points numbers[RAY_SEEDS];
     double (*u)[ROWS_AT_ONCE] = pool_take(p, r->dimensions, sizeof *u);
     double *row = pool_take(p, r->dimensions, sizeof *row);
     double *score = pool_take(p, n, sizeof *score);

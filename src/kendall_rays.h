@@ -8,16 +8,9 @@
 #define KENDALL_RAYS_H
 
 #include "evaluate.h"
-#include "sobol.h"
+#include "cube.h"
 
 enum { RAY_SEEDS = 8 };
-
-/* Scrambled Sobol' points under a seed, as many dimensions as there are; random numbers in any
- * beyond. */
-struct ray_numbers {
-    struct sobol sobol;
-    uint64_t seed;
-};
 
 /* How a kind of copula is cut into rays. A place on a ray is a number from `low` to `high`; they
  * are the same where there are no rays, but points. */
@@ -54,10 +47,5 @@ status survival_rays(const struct evaluation *e, struct rays *r, pool *p);
  * answers, OUT_OF_DOMAIN where that is NaN. */
 status kendall_by_rays(const struct rays *r, size_t rays, const double *w, size_t n, double *k,
                        double *error, pool *p);
-
-status ray_numbers_prepare(struct ray_numbers *n, size_t dimensions, uint64_t seed, pool *p);
-
-/* ROWS_AT_ONCE numbers of a dimension from row `first`, within [2^-53; 1 - 2^-53] */
-void ray_numbers_of_rows(const struct ray_numbers *n, size_t dimension, uint64_t first, double *u);
 
 #endif

@@ -22,7 +22,7 @@ enum purpose {
     FOR_REPLICATES = 5,      /* seeds of whole replicated draws */
     FOR_SCRAMBLING = 6,
     FOR_STRATA = 7,          /* places within the strata of a latin hypercube */
-    FOR_BOX = 8              /* probabilities in more columns than Sobol' points have */
+    FOR_CUBE = 8             /* dimensions that Sobol' points do not have */
 };
 
 /* The numbers of one row. */

@@ -279,7 +279,7 @@ const function points_functions[] = {
             "conditional probability, which is positive, and rotated ones of all families by forms "
             "in which nothing cancels; for a grouped t also the integral over its chi-squares. "
             "gaussian and t beyond pairs by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with "
-            "32,768 points, fewer for many rows, of which columns beyond the 128th are random "
+            "32,768 points, fewer for many rows, of which columns beyond the 130th are random "
             "numbers; WHY states the standard error. Archimedean families in any dimension by "
             "their generator, rotated by 180 as the mean over their frailty (Marshall & Olkin "
             "1988) of the product of what the columns then do by themselves, to 1e-10 relative "

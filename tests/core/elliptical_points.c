@@ -192,7 +192,7 @@ static void every_take_can_fail(void **state)
         }
 }
 
-/* equicorrelated.csv, SciPy: as integrals over what the columns share. Beyond 128 columns random
+/* equicorrelated.csv, SciPy: as integrals over what the columns share. Beyond 130 columns random
  * numbers take part; of eight means twice the standard error is exceeded once in twelve times. */
 static void boxes_of_many_columns(void **state)
 {
