@@ -74,9 +74,8 @@ static double elliptical_cdf_seconds(const struct evaluation *e, const struct el
     return m->grouped ? 2.5e-6 * grouped_nodes(m) : m->df ? 4e-5 : 5e-6;
 }
 
-double cdf_seconds_at(const struct evaluation *e, const double *u)
+double cdf_seconds(const struct evaluation *e)
 {
-    (void)u;
     const struct elliptical_points *m = elliptical_of(e);
     double d = (double)e->c->dimension;
     if (m) return elliptical_cdf_seconds(e, m);
@@ -92,27 +91,25 @@ static double elliptical_seconds(const struct elliptical_points *m)
                       : d * ((m->df ? 5e-6 : 1e-7) + 1e-9 * d);
 }
 
-double density_seconds_at(const struct evaluation *e, const double *u)
+double density_seconds(const struct evaluation *e)
 {
-    (void)u;
     size_t d = e->c->dimension;
     return elliptical_of(e) ? elliptical_seconds(elliptical_of(e))
                             : 1.2e-7 * (double)d + derivative_seconds(e, d, false);
 }
 
-double conditional_seconds_at(const struct evaluation *e, const double *u)
+double conditional_seconds(const struct evaluation *e)
 {
-    (void)u;
     const struct elliptical_points *m = elliptical_of(e);
     if (m) return elliptical_seconds(m) * (m->grouped ? 1.4 : 1);
     return 2e-7 * (double)e->c->dimension + derivatives_seconds(e, false)
            + derivatives_seconds(e, true);
 }
 
-double from_conditional_seconds_at(const struct evaluation *e, const double *u)
+double from_conditional_seconds(const struct evaluation *e)
 {
     const struct elliptical_points *m = elliptical_of(e);
-    double once = conditional_seconds_at(e, u);
+    double once = conditional_seconds(e);
     return e->by == &archimedean_evaluator ? 12 * once : m && m->grouped ? 1.5 * once : once;
 }
 
@@ -128,7 +125,7 @@ static double ray_seconds(const struct evaluation *e)
     const struct elliptical_points *m = elliptical_of(e);
     double d = (double)e->c->dimension, places = 30;
     if (m) return places * ROWS_AT_ONCE * d * (1.3e-8 + 2e-10 * d);
-    double cdf = d > FEW_FOR_SUBSETS ? cdf_seconds_at(e, NULL) : 4e-6 + 4e-8 * exp2(d);
+    double cdf = d > FEW_FOR_SUBSETS ? cdf_seconds(e) : 4e-6 + 4e-8 * exp2(d);
     return places * (cdf + formula_seconds(e) + 2e-7 * d);
 }
 

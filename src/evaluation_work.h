@@ -9,10 +9,9 @@
 #include "evaluate.h"
 
 /* For one point of evaluate.h. */
-typedef double seconds_at(const struct evaluation *e, const double *u);
+typedef double seconds_of_point(const struct evaluation *e);
 
-seconds_at cdf_seconds_at, density_seconds_at, conditional_seconds_at,
-           from_conditional_seconds_at;
+seconds_of_point cdf_seconds, density_seconds, conditional_seconds, from_conditional_seconds;
 
 /* How many rays kendall_at() takes, see kendall_rays.h: fewer where one takes longer, from 64 to
  * 4,096, or 16 times as many points; 0 where it takes none. */

@@ -26,7 +26,7 @@ typedef status answer_row(const struct evaluation *e, const double *u, double *t
 /* How a row is answered, and about how long that takes. */
 struct way {
     answer_row *of;
-    seconds_at *takes;
+    seconds_of_point *takes;
 };
 
 /* Each number within (0;1), or [0;1] if closed. */
@@ -62,19 +62,16 @@ static status within_time(double seconds, size_t n, const char *what, report *r)
 }
 
 /* Less quasi-Monte Carlo for many rows; refuses what would freeze the office all the same. */
-static status check_time(const argument *in, const struct evaluation *e, seconds_at *takes,
-                         report *r)
+static status check_time(const argument *in, const struct evaluation *e,
+                         seconds_of_point *takes, report *r)
 {
     const samples *points = &in[POINTS].data;
-    double *u = pool_take(r->pool, points->cols, sizeof *u), seconds = 0;
+    double *u = pool_take(r->pool, points->cols, sizeof *u);
     size_t whole = 0;
     if (!u) return NO_MEMORY;
-    for (size_t i = 0; i < in[POINTS].filled; i++)
-        if (take_row(points, i, u)) {
-            seconds += takes(e, u);
-            whole++;
-        }
-    if (takes == cdf_seconds_at) seconds = with_fewer_box_points(e, seconds);
+    for (size_t i = 0; i < in[POINTS].filled; i++) whole += take_row(points, i, u);
+    double seconds = (double)whole * takes(e);
+    if (takes == cdf_seconds) seconds = with_fewer_box_points(e, seconds);
     return within_time(seconds, whole, "point", r);
 }
 
@@ -152,7 +149,7 @@ static status cell_cdf(const argument *in, value *out, report *r)
 {
     struct answers a;
     struct evaluation e;
-    struct way way = { row_cdf, cdf_seconds_at };
+    struct way way = { row_cdf, cdf_seconds };
     status s = ask_all(in, ASK_CDF, 1, way, &a, &e, r);
     if (s == OK && a.error > 0)
         remark_quasi(box_points(&e), a.error, r);
@@ -172,7 +169,7 @@ static status cell_density(const argument *in, value *out, report *r)
 {
     struct answers a;
     struct evaluation e;
-    struct way way = { row_density, density_seconds_at };
+    struct way way = { row_density, density_seconds };
     status s = ask_all(in, ASK_DENSITY, 1, way, &a, &e, r);
     return s == OK ? one_column(in, &a, "density", out, r) : s;
 }
@@ -189,7 +186,7 @@ static status cell_conditional(const argument *in, value *out, report *r)
     struct answers a;
     struct evaluation e;
     size_t d = in[ASKED].model->dimension;
-    struct way way = { row_conditional, conditional_seconds_at };
+    struct way way = { row_conditional, conditional_seconds };
     status s = ask_all(in, ASK_CONDITIONAL, d, way, &a, &e, r);
     return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
 }
@@ -206,7 +203,7 @@ static status cell_fromconditional(const argument *in, value *out, report *r)
     struct answers a;
     struct evaluation e;
     size_t d = in[ASKED].model->dimension;
-    struct way way = { row_from_conditional, from_conditional_seconds_at };
+    struct way way = { row_from_conditional, from_conditional_seconds };
     status s = ask_all(in, ASK_CONDITIONAL, d, way, &a, &e, r);
     return s == OK ? table_like(&in[POINTS], &a.s, out, r) : s;
 }
