@@ -24,7 +24,21 @@
 
 static const double FARTHEST = 300;           /* sinh of more is taken apart */
 static const double LOWEST_DF = 1e-3;         /* of student_tail.h */
-static const double LOWEST_DF_IN_BOX = 0.05;  /* less overflows for u not even near 0 and 1 */
+
+/* ---- numbers beyond what a double holds ---- */
+
+struct signed_log signed_log_of(double a, double df)
+{
+    double size = fabs(a), log_sinh = size + log(-expm1(-2 * size) / 2);
+    return (struct signed_log){ copysign(1, a), log(df) / 2 + log_sinh };
+}
+
+double times_scale(struct signed_log x, double log_scale)
+{
+    return x.sign * exp(fmin(x.log_size + log_scale, FARTHEST));
+}
+
+/* ---- getting ready ---- */
 
 static bool are_grouped(const copula *c)
 {
@@ -80,11 +94,9 @@ static status prepare(struct evaluation *e, pool *p)
     if (d > 2) s = elliptical_box_prepare(m, p);
     if (s != OK) return s;
     if (m->grouped) return grouped_prepare(m, p);
-    if (!m->df) return OK;
+    if (!m->df || d > 2) return OK;
     m->table = pool_take(p, 1, sizeof *m->table);
-    if (!m->table) return NO_MEMORY;
-    return d == 2 ? student_tables(m->table, m->df[0] + 1, p)
-                  : chi_square_table(m->table, m->df[0], p);
+    return m->table ? student_tables(m->table, m->df[0] + 1, p) : NO_MEMORY;
 }
 
 /* What the columns before j contribute to column j. */
@@ -113,16 +125,13 @@ static status pair_by_limits(const struct elliptical_points *m, const double *u,
     return OK;
 }
 
-/* ---- the normal copula ---- */
-
-static status gaussian_cdf(const struct evaluation *e, const double *u, double *value,
-                           double *error)
+static status cdf(const struct evaluation *e, const double *u, double *value, double *error)
 {
     const struct elliptical_points *m = e->prepared;
-    if (m->d == 2) return pair_by_limits(m, u, value);
-    for (size_t j = 0; j < m->d; j++) e->room[j] = u[j] < 1 ? normal_quantile(u[j]) : HUGE_VAL;
-    return elliptical_box(m, e->room, value, error);
+    return m->d == 2 ? pair_by_limits(m, u, value) : elliptical_box(m, u, value, error);
 }
+
+/* ---- the normal copula ---- */
 
 static status gaussian_log_density(const struct evaluation *e, const double *u, double *value)
 {
@@ -214,17 +223,6 @@ static double log_one_plus(const struct t_point *t)
     return t->scale == 0 ? log1p(t->squares) : 2 * t->scale + log(t->one + t->squares);
 }
 
-static status t_cdf(const struct evaluation *e, const double *u, double *value, double *error)
-{
-    const struct elliptical_points *m = e->prepared;
-    double *x = e->room;
-    if (m->d == 2) return pair_by_limits(m, u, value);
-    if (m->grouped) grouped_scores(m, u, x);
-    for (size_t j = 0; j < m->d && !m->grouped; j++)
-        x[j] = u[j] < 1 ? sqrt(m->df[0]) * sinh(student_quantile(u[j], m->df[0])) : HUGE_VAL;
-    return elliptical_box(m, x, value, error);
-}
-
 static status t_log_density(const struct evaluation *e, const double *u, double *value)
 {
     const struct elliptical_points *m = e->prepared;
@@ -281,10 +279,6 @@ static const char *limit(const struct evaluation *e, enum question q)
     for (size_t j = 0; q != ASK_KENDALL && m->df && j < m->d; j++)
         if (m->df[j] < LOWEST_DF)
             return "has less than 0.001 degrees of freedom, too few to compute with";
-    for (size_t j = 0; q == ASK_CDF && m->d > 2 && m->df && j < m->d; j++)
-        if (m->df[j] < LOWEST_DF_IN_BOX)
-            return "has less than 0.05 degrees of freedom, too few for its distribution function "
-                   "beyond pairs";
     if ((q == ASK_DENSITY || q == ASK_CONDITIONAL) && m->singular)
         return "has a singular matrix: it has no density and some columns no conditional "
                "distribution";
@@ -294,7 +288,7 @@ static const char *limit(const struct evaluation *e, enum question q)
 const struct evaluator gaussian_evaluator = {
     .takes_rotation = true,
     .prepare = prepare,
-    .cdf = gaussian_cdf,
+    .cdf = cdf,
     .log_density = gaussian_log_density,
     .conditional = gaussian_conditional,
     .from_conditional = gaussian_from_conditional,
@@ -304,7 +298,7 @@ const struct evaluator gaussian_evaluator = {
 const struct evaluator t_evaluator = {
     .takes_rotation = true,
     .prepare = prepare,
-    .cdf = t_cdf,
+    .cdf = cdf,
     .log_density = t_log_density,
     .conditional = t_conditional,
     .from_conditional = t_from_conditional,

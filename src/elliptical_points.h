@@ -20,6 +20,17 @@ struct elliptical_points {
     struct box_points *box;       /* for elliptical_box(); NULL if that has no answer */
 };
 
+/* A number as a sign and the logarithm of its size, which may lie beyond what a double holds. */
+struct signed_log {
+    double sign, log_size;
+};
+
+/* sqrt(df) sinh(a) */
+struct signed_log signed_log_of(double a, double df);
+
+/* Column over sqrt(df/chi-square), kept within +-e^300: there no normal number is. */
+double times_scale(struct signed_log x, double log_scale);
+
 /* ---- elliptical_pair.c ---- */
 
 /* P(X <= x, Y <= y) of a normal pair, to 1e-12 relative down to 1e-300 */
@@ -36,14 +47,13 @@ double student_pair_probability(double a, double b, double correlation, double d
 status elliptical_box_prepare(struct elliptical_points *m, pool *p);
 
 /* How many a probability takes, 32,768 at first; half as many from now on, if there are more than
- * 512. */
+ * 2,048. */
 size_t elliptical_box_points(const struct elliptical_points *m);
 bool elliptical_box_halve(struct elliptical_points *m);
 
-/* P(X_1 <= x_1, ..., X_d <= x_d) and its standard error by quasi-Monte Carlo; x are the normal
- * scores, or for t the points where a column is sqrt(df / chi-square) times a normal number.
- * OUT_OF_DOMAIN without elliptical_box_prepare(). Source: Genz (1992), Genz & Bretz (2002). */
-status elliptical_box(const struct elliptical_points *m, const double *x, double *value,
+/* P(U_1 <= u_1, ..., U_d <= u_d), 0 < u <= 1, and its standard error by quasi-Monte Carlo. Source:
+ * Genz (1992), Genz & Bretz (2002), Botev (2017). */
+status elliptical_box(const struct elliptical_points *m, const double *u, double *value,
                       double *error);
 
 /* ---- grouped_points.c, grouped_pair.c: several df, one uniform driving all chi-squares ---- */
@@ -52,17 +62,11 @@ struct grouped_points;
 
 status grouped_prepare(struct elliptical_points *m, pool *p);
 
-/* The points where the columns are sqrt(df/chi-square) times a normal number. */
-void grouped_scores(const struct elliptical_points *m, const double *u, double *x);
-
 /* Integrals over the uniform, for every u within (0;1). NOT_SETTLED where correlations within about
  * 1e-9 of -1 or 1 leave a peak too narrow to be found. */
 status grouped_pair_cdf(const struct elliptical_points *m, const double *u, double *value);
 status grouped_log_density(const struct elliptical_points *m, const double *u, double *value);
 status grouped_conditional(const struct elliptical_points *m, const double *u, double *w);
 status grouped_from_conditional(const struct elliptical_points *m, const double *w, double *u);
-
-/* for elliptical_box(): sqrt(chi-square / df) of every column at the uniform v */
-void grouped_scales(const struct elliptical_points *m, double v, double *scale);
 
 #endif

@@ -23,8 +23,8 @@ double kendall_seconds(const struct evaluation *e, size_t n);
 /* Quasi-Monte Carlo points that a probability is made of; 0 where it is not made so. */
 size_t box_points(const struct evaluation *e);
 
-/* Where probabilities that take so many seconds in all are by quasi-Monte Carlo: halves the number
- * of points, down to 512, until they take about 3. Returns what they take then. */
-double with_fewer_box_points(const struct evaluation *e, double seconds);
+/* Where n probabilities are by quasi-Monte Carlo: halves the number of points, down to 2,048, until
+ * they take about 2 seconds. Returns what they take then, also where nothing can be halved. */
+double with_fewer_box_points(const struct evaluation *e, size_t n);
 
 #endif

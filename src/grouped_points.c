@@ -68,30 +68,6 @@ status grouped_prepare(struct elliptical_points *m, pool *p)
     return s;
 }
 
-void grouped_scales(const struct elliptical_points *m, double v, double *scale)
-{
-    double z = fmax(-8.2, fmin(8.2, normal_quantile(v)));
-    for (size_t j = 0; j < m->d; j++)
-        scale[j] = exp((log_chi_square(&m->groups->score[j]->near, z) - log(m->df[j])) / 2);
-}
-
-void grouped_scores(const struct elliptical_points *m, const double *u, double *x)
-{
-    for (size_t j = 0; j < m->d; j++)
-        x[j] = u[j] < 1 ? sqrt(m->df[j]) * sinh(student_quantile(u[j], m->df[j])) : HUGE_VAL;
-}
-
-struct signed_log signed_log_of(double a, double df)
-{
-    double size = fabs(a), log_sinh = size + log(-expm1(-2 * size) / 2);
-    return (struct signed_log){ copysign(1, a), log(df) / 2 + log_sinh };
-}
-
-double times_scale(struct signed_log x, double log_scale)
-{
-    return x.sign * exp(fmin(x.log_size + log_scale, FARTHEST));
-}
-
 /* ---- what the columns say about z ---- */
 
 /* Column j at every node. */

@@ -6,17 +6,6 @@
 #include "elliptical_points.h"
 #include "placed_nodes.h"
 
-/* A number as a sign and the logarithm of its size, which may lie beyond what a double holds. */
-struct signed_log {
-    double sign, log_size;
-};
-
-/* sqrt(df) sinh(a) */
-struct signed_log signed_log_of(double a, double df);
-
-/* Column over sqrt(df/chi-square), kept within +-e^300: there no normal number is. */
-double times_scale(struct signed_log x, double log_scale);
-
 struct grouped_points {
     struct chi_square_score **score;  /* of each column; columns with the same df share */
     size_t *like;                     /* the first column with the same df */

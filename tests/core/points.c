@@ -112,7 +112,7 @@ static void takes_too_long(void **state)
     assert_within(cell(&c, 699, 0), 0.25, 1e-4);
     assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo with 16384 points, with a standard"));
     refused("CDF", wide, halves(p, 10000, 128), OUT_OF_DOMAIN,
-            "10000 points of this model would take about 55 s: ask for fewer at a time");
+            "10000 points of this model would take about 113 s: ask for fewer at a time");
     refused("FROMCONDITIONAL", gumbel, halves(p, 3000, 1000), OUT_OF_DOMAIN,
             "3000 points of this model would take about 27 s: ask for fewer at a time");
     call(&c, "CONDITIONAL", 2, (value[]){ gumbel, halves(p, 2, 1000) });

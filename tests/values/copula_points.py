@@ -4,7 +4,8 @@ probabilities of Student's t by integrals of its density, those of a t pair by t
 correlation from -1 on), Archimedean copulas by Taylor coefficients of their generators at 400 digits, rotated pairs by
 the definitions of the families and of the rotations at 800 digits, at the doubles nearest to u and v; survival_cdf.csv,
 rotation 180 in any dimension, by inclusion and exclusion with as many digits as make it agree with itself at twice as
-many. equicorrelated.csv, normal and t copulas in many dimensions, with SciPy: an integral over what columns share."""
+many. equicorrelated.csv and small_boxes.csv, normal and t copulas in many dimensions and far down, with SciPy: an
+integral over what columns share."""
 import csv
 import os
 import sys
@@ -221,8 +222,31 @@ def equicorrelated():
                     yield d, df or '', rho, u, repr(float(given[0] if df is None else given @ weight))
 
 
+def log_box(x, rho, d):
+    """log P(all of d equicorrelated normal columns <= x) for each x: over the factor they share, in logarithms."""
+    z = numpy.linspace(-40, 12, 20001)
+    return numpy.array([special.logsumexp(stats.norm.logpdf(z) + d * special.log_ndtr(
+        (each - rho ** 0.5 * z) / (1 - rho) ** 0.5)) + numpy.log(z[1] - z[0]) for each in numpy.atleast_1d(x)])
+
+
+def small_boxes():
+    """The same in the lower tail, and for t over log(chi-square/df)."""
+    cases = ((20, 4, .3, .01), (20, None, .3, .01), (20, 8, .2, .01), (40, 8, .3, .01), (40, 8, .2, .01),
+             (3, 4, .3, .01), (3, None, .3, .001), (5, 4, .5, 1e-6), (100, None, .5, .01), (100, 8, .2, .05),
+             (10, None, .9, 1e-10), (10, 2.5, .9, .2), (50, None, .1, .9), (50, 30, .2, .95), (4, .5, .5, .01))
+    for d, df, rho, u in cases:
+        if df is None:
+            value = log_box(special.ndtri(u), rho, d)[0]
+        else:
+            t = numpy.linspace(-90, 8, 3000)
+            log_density = stats.chi2.logpdf(numpy.exp(t) * df, df) + t + numpy.log(df)
+            x = stats.t.ppf(u, df) * numpy.exp(t / 2)
+            value = special.logsumexp(log_density + log_box(x, rho, d)) + numpy.log(t[1] - t[0])
+        yield d, df or '', rho, u, repr(float(numpy.exp(value)))
+
+
 def main():
-    which = sys.argv[1:] or ['tail', 'pair', 'archimedean', 'rotated', 'survival', 'equicorrelated']
+    which = sys.argv[1:] or ['tail', 'pair', 'archimedean', 'rotated', 'survival', 'equicorrelated', 'small']
     if 'tail' in which:
         write('student_tail.csv', ['df', 't', 'y', 'tail', 'tolerance'], student_tails())
     if 'pair' in which:
@@ -234,6 +258,8 @@ def main():
         write('survival_cdf.csv', ['family', 'theta', 'u', 'C', 'tolerance'], survivals())
     if 'equicorrelated' in which:
         write('equicorrelated.csv', ['d', 'df', 'correlation', 'u', 'C'], equicorrelated())
+    if 'small' in which:
+        write('small_boxes.csv', ['d', 'df', 'correlation', 'u', 'C'], small_boxes())
     if 'rotated' in which:
         write('rotated_cdf.csv', ['family', 'parameter', 'rotation', 'u', 'v', 'C', 'tolerance'], rotated_pairs())
 
