@@ -62,6 +62,10 @@ status grouped_log_density(const struct elliptical_points *m, const double *u, d
 status grouped_conditional(const struct elliptical_points *m, const double *u, double *w);
 status grouped_from_conditional(const struct elliptical_points *m, const double *w, double *u);
 
+/* About how long all of them took since grouped_prepare(), counted, not measured. Beyond 30 s they
+ * are NOT_SETTLED. */
+double grouped_seconds(const struct elliptical_points *m);
+
 /* for elliptical_box(): sqrt(chi-square / df) of every column at the uniform v */
 void grouped_scales(const struct elliptical_points *m, double v, double *scale);
 

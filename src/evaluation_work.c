@@ -116,6 +116,12 @@ double from_conditional_seconds_at(const struct evaluation *e, const double *u)
     return e->by == &archimedean_evaluator ? 12 * once : m && m->grouped ? 1.5 * once : once;
 }
 
+double seconds_spent(const struct evaluation *e)
+{
+    const struct elliptical_points *m = elliptical_of(e);
+    return m && m->grouped ? grouped_seconds(m) : 0;
+}
+
 /* The Kendall distribution by the generator. */
 static double formula_seconds(const struct evaluation *e)
 {

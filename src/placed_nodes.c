@@ -68,7 +68,7 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes)
     struct placed_sum s = { .highest = highest_of(nodes), .log_integral = -HUGE_VAL };
     if (!isfinite(s.highest)) return s;
     double half[2] = { 0, 0 };
-    for (size_t k = 0; k < nodes->n; k++) 
+    for (size_t k = 0; k < nodes->n; k++)
         half[k & 1] += exp(nodes->log_term[k] - s.highest) * node_weight(nodes, k);
     double ends = fmax(nodes->log_term[0], nodes->log_term[nodes->n - 1]);
     s.log_integral = s.highest + log(half[0] + half[1]);
