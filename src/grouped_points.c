@@ -288,7 +288,9 @@ status grouped_log_density(const struct elliptical_points *m, const double *u, d
 
 /* ---- conditional probabilities ---- */
 
-/* log P(the next column is below | those before), or above where event is -1 */
+/* log P(the next column is below | those before), or above where event is -1. Nodes placed for what
+ * is given see where any event is that is not far out; those placed for an event elsewhere may all
+ * lie where this one is certain, and miss where most of it is. */
 static status log_probability(const struct elliptical_points *m, int event, double *value)
 {
     struct grouped_points *g = m->groups;
@@ -297,8 +299,10 @@ static status log_probability(const struct elliptical_points *m, int event, doub
     column_at_nodes(m, g->learnt);
     take_event(m);
     g->sum = sum_over_nodes(&g->nodes);
-    bool stays = g->sum.settled && fabs(g->sum.log_integral - g->log_placed) < MOVED;
-    status s = stays ? OK : place(m, event);
+    bool seen = !g->for_event && fabs(g->sum.log_integral - g->log_placed) < MOVED;
+    if (seen && !g->sum.settled)
+        g->sum = settle_nodes(&g->nodes, terms_at, (void *)m, MOST_NODES);
+    status s = seen && g->sum.roughly ? OK : place(m, event);
     *value = g->sum.log_integral - g->log_mass;
     return s;
 }

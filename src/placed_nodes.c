@@ -292,13 +292,19 @@ struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *wi
     return sum_over_nodes(nodes);
 }
 
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
-                              size_t most)
+struct placed_sum settle_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
+                               size_t most)
 {
-    span_nodes(nodes, of, with);
     size_t equal = most < MOST_EQUAL_NODES ? most : MOST_EQUAL_NODES;
     struct placed_sum s = with_more(nodes, of, with, equal);
     if (s.settled || !isfinite(s.highest)) return s;
     crowd_at_cliff(nodes, s.highest, of, with);
     return with_more(nodes, of, with, most);
+}
+
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
+                              size_t most)
+{
+    span_nodes(nodes, of, with);
+    return settle_nodes(nodes, of, with, most);
 }
