@@ -7,17 +7,10 @@
 
 #include <gsl/gsl_errno.h>
 
-static size_t split(const char *text, double *u)
-{
-    size_t n = 0;
-    for (char *end; *text; text = end + (*end == ' ')) u[n++] = strtod(text, &end);
-    return n;
-}
-
 static copula *grouped(struct sample_copula *s, const char *df, double correlation)
 {
     double each[50];
-    size_t d = split(df, each);
+    size_t d = numbers_in(df, each);
     copula *c = elliptical(s, "t", d, correlation, 1);
     for (size_t j = 0; j < d; j++) s->df[j] = each[j];
     return c;
@@ -33,7 +26,7 @@ static void published(void **state)
         struct sample_copula s;
         double u[50], log_density = csv_number(t, i, "log_density");
         copula *c = grouped(&s, csv_text(t, i, "df"), csv_number(t, i, "correlation"));
-        assert_int_equal(split(csv_text(t, i, "u"), u), c->dimension);
+        assert_int_equal(numbers_in(csv_text(t, i, "u"), u), c->dimension);
         assert_within(ask(c, LOG_DENSITY, u), log_density, 1e-10 * fmax(1, fabs(log_density)));
         assert_close(ask(c, CONDITIONAL, u), csv_number(t, i, "conditional"), 1e-10);
     }
@@ -168,8 +161,8 @@ static void there_and_back(void **state)
 }
 
 /* Far out, where Newton's steps overshoot to where the event is next to impossible and must find
- * back: roots of the conditional probability by definition, with mpmath, 40 digits, by the trapezoid
- * rule with steps of 0.05 and 0.025 in z, which agree to 20 digits. */
+ * back: roots of the conditional probability by definition, with mpmath, 40 digits, by the
+ * trapezoid rule with steps of 0.05 and 0.025 in z, which agree to 20 digits. */
 static void back_from_far_out(void **state)
 {
     (void)state;
