@@ -116,6 +116,8 @@ static void short_and_long(void **state)
     s.df[1] = 0.05;
     ready(&e, c, &p);
     assert_true(1e4 * cdf_seconds_at(&e, u) > 20);
+    ready(&e, elliptical(&s, "t", 7, 0.5, 0.01), &p);
+    assert_true(1e4 * density_seconds_at(&e, u) > 5);
     c = elliptical(&s, "t", 20, 0.5, 4);
     s.df[1] = 30;
     ready(&e, c, &p);
