@@ -69,4 +69,8 @@ status grouped_log_density(const struct elliptical_points *m, const double *u, d
 status grouped_conditional(const struct elliptical_points *m, const double *u, double *w);
 status grouped_from_conditional(const struct elliptical_points *m, const double *w, double *u);
 
+/* About how long all of them took since grouped_prepare(), counted, not measured. Beyond 30 s they
+ * are NOT_SETTLED. */
+double grouped_seconds(const struct elliptical_points *m);
+
 #endif

@@ -13,6 +13,10 @@ typedef double seconds_of_point(const struct evaluation *e);
 
 seconds_of_point cdf_seconds, density_seconds, conditional_seconds, from_conditional_seconds;
 
+/* About how long what was asked so far took, counted as it was done, where points of a model may
+ * take much longer than that; else 0. */
+double seconds_spent(const struct evaluation *e);
+
 /* How many rays kendall_at() takes, see kendall_rays.h: fewer where one takes longer, from 64 to
  * 4,096, or 16 times as many points; 0 where it takes none. */
 size_t kendall_rays(const struct evaluation *e);

@@ -12,7 +12,9 @@
  *
  * Special cases
  *   Correlations near -1 and 1 make narrow peaks, whose integrals may need more nodes than there
- *   are: NOT_SETTLED.
+ *   are: NOT_SETTLED. Points far from what the model makes, of many columns with few degrees of
+ *   freedom, may take hundreds of times as many nodes as others: nodes are counted, and where that
+ *   comes to too long nothing settles any more.
  *
  * Accuracy
  *   1e-10 for log-densities, or relative where they are large; 1e-10 relative for conditional
@@ -29,6 +31,7 @@ static const double LOG_SQRT_2_PI = 0.918938533204672742, FARTHEST = 300;
 static const double LEFT_OUT = 44, LEAST_LEFT = 30;      /* in logarithms, of placed_nodes.h */
 static const double STEEP = 1.2;                         /* growth from a node to the next */
 static const double MOVED = 8;                           /* a sum by so much: place nodes anew */
+static const double TOO_LONG = 30;                       /* seconds */
 
 static status score_of_column(struct elliptical_points *m, size_t j, pool *p)
 {
@@ -160,10 +163,32 @@ static double hidden_after(const struct elliptical_points *m, size_t k)
     return fmax(bound_at(g, k), bound_at(g, k + 1)) + 1 - largest * largest / (2 * d);
 }
 
+/* A chi-square of each kind, and rows of the Cholesky factor, at every node. */
+static void count_seconds(struct grouped_points *g, size_t first, size_t end)
+{
+    double columns = (double)(end - first), mean = (double)(first + end) / 2;
+    g->seconds += (double)g->nodes.n * columns * (3e-8 + 8e-10 * mean);
+}
+
+double grouped_seconds(const struct elliptical_points *m)
+{
+    return m->groups->seconds;
+}
+
+static void nothing_at(struct placed_nodes *nodes)
+{
+    for (size_t k = 0; k < nodes->n; k++) nodes->log_term[k] = nodes->hidden[k] = -HUGE_VAL;
+}
+
 static void terms_at(struct placed_nodes *nodes, void *with)
 {
     const struct elliptical_points *m = with;
     struct grouped_points *g = m->groups;
+    count_seconds(g, 0, g->learnt + 1);
+    if (g->seconds > TOO_LONG) {
+        nothing_at(nodes);
+        return;
+    }
     for (size_t j = 0; j <= g->learnt; j++) scale_at_nodes(m, j);
     for (size_t k = 0; k < nodes->n; k++) {
         double z = node_at(nodes, k);
@@ -198,6 +223,7 @@ static status learn(const struct elliptical_points *m)
     size_t j = g->learnt++;
     g->event = 0;
     if (j > 0 && !g->for_event) {
+        count_seconds(g, j, j + 1);
         column_at_nodes(m, j);
         learn_at_nodes(m, j);
         scale_at_nodes(m, j + 1);
@@ -238,16 +264,21 @@ status grouped_log_density(const struct elliptical_points *m, const double *u, d
 
 /* ---- conditional probabilities ---- */
 
-/* log P(the next column is below | those before), or above where event is -1 */
+/* log P(the next column is below | those before), or above where event is -1. Nodes placed for what
+ * is given see where any event is that is not far out; those placed for an event elsewhere may all
+ * lie where this one is certain, and miss where most of it is. */
 static status log_probability(const struct elliptical_points *m, int event, double *value)
 {
     struct grouped_points *g = m->groups;
     g->event = event;
+    count_seconds(g, g->learnt, g->learnt + 1);
     column_at_nodes(m, g->learnt);
     take_event(m);
     g->sum = sum_over_nodes(&g->nodes);
-    bool stays = g->sum.settled && fabs(g->sum.log_integral - g->log_placed) < MOVED;
-    status s = stays ? OK : place(m, event);
+    bool seen = !g->for_event && fabs(g->sum.log_integral - g->log_placed) < MOVED;
+    if (seen && !g->sum.settled)
+        g->sum = settle_nodes(&g->nodes, terms_at, (void *)m, MOST_NODES);
+    status s = seen && g->sum.roughly ? OK : place(m, event);
     *value = g->sum.log_integral - g->log_mass;
     return s;
 }

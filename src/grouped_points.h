@@ -21,6 +21,7 @@ struct grouped_points {
     double log_placed;                /* with this integral */
     double log_mass;                  /* the integral of what is given */
     double outside;                   /* bound on what is given beyond the nodes */
+    double seconds;                   /* about what all so far took, counted */
     struct placed_sum sum;
 };
 

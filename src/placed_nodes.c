@@ -68,7 +68,7 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes)
     struct placed_sum s = { .highest = highest_of(nodes), .log_integral = -HUGE_VAL };
     if (!isfinite(s.highest)) return s;
     double half[2] = { 0, 0 };
-    for (size_t k = 0; k < nodes->n; k++) 
+    for (size_t k = 0; k < nodes->n; k++)
         half[k & 1] += exp(nodes->log_term[k] - s.highest) * node_weight(nodes, k);
     double ends = fmax(nodes->log_term[0], nodes->log_term[nodes->n - 1]);
     s.log_integral = s.highest + log(half[0] + half[1]);
@@ -292,13 +292,19 @@ struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *wi
     return sum_over_nodes(nodes);
 }
 
-struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
-                              size_t most)
+struct placed_sum settle_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
+                               size_t most)
 {
-    span_nodes(nodes, of, with);
     size_t equal = most < MOST_EQUAL_NODES ? most : MOST_EQUAL_NODES;
     struct placed_sum s = with_more(nodes, of, with, equal);
     if (s.settled || !isfinite(s.highest)) return s;
     crowd_at_cliff(nodes, s.highest, of, with);
     return with_more(nodes, of, with, most);
+}
+
+struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
+                              size_t most)
+{
+    span_nodes(nodes, of, with);
+    return settle_nodes(nodes, of, with, most);
 }

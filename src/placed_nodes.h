@@ -41,9 +41,13 @@ struct placed_sum sum_over_nodes(const struct placed_nodes *nodes);
  * that takes. */
 struct placed_sum span_nodes(struct placed_nodes *nodes, log_terms *of, void *with);
 
-/* The same, and as many as it takes to settle, which leaves an error below 3e-11, but no more than
- * `most`; crowded around where the integrand is steepest if equally spaced ones would have to be
- * many. */
+/* Between the ends of nodes whose log_term is set as many as it takes to settle, which leaves an
+ * error below 3e-11, but no more than `most`; crowded around where the integrand is steepest if
+ * equally spaced ones would have to be many. */
+struct placed_sum settle_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
+                               size_t most);
+
+/* span_nodes() and settle_nodes() */
 struct placed_sum place_nodes(struct placed_nodes *nodes, log_terms *of, void *with,
                               size_t most);
 

@@ -75,6 +75,14 @@ static status check_time(const argument *in, const struct evaluation *e,
     return within_time(seconds, whole, "point", r);
 }
 
+/* After the first i rows: whether all would take too long, where that was not to be seen before. */
+static status check_spent(const argument *in, const struct evaluation *e, size_t i, report *r)
+{
+    double spent = seconds_spent(e), all = (double)in[POINTS].filled;
+    if (spent <= LONGEST) return OK;
+    return within_time(spent * all / (double)i, in[POINTS].filled, "point", r);
+}
+
 static status each_row(const argument *in, const struct evaluation *e, answer_row *of,
                        struct answers *a, report *r)
 {
@@ -86,6 +94,7 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
         bool whole = take_row(points, i, u);
         status s = whole ? of(e, u, to, &error) : OK;
         if (s == NO_MEMORY) return s;
+        if (check_spent(in, e, i + 1, r) != OK) return OUT_OF_DOMAIN;
         if (!whole) a->empty++;
         if (s == OK && error > 0) a->error = fmax(a->error, error);
         if (s == OK && error > 0) a->part = fmax(a->part, error / to[0]);

@@ -173,12 +173,13 @@ static double pair_conditional(double u, double v, double theta)
     return fmin(1, exp((1 + theta) * (log_c - log(u))));
 }
 
-/* (C/u)^a is 1 - (1 - v^a) / u^a */
+/* One less (C/u)^(1-a); (C/u)^a is 1 - (1 - v^a) / u^a */
 static double pair_beyond(double u, double v, double theta)
 {
     if (theta == -1) return NAN;
     double a = -theta, lacks = -expm1(a * log(v)) / pow(u, a);
-    return lacks < 0.5 ? -expm1((1 - a) / a * log1p(-lacks)) : 1 - pair_conditional(u, v, theta);
+    double log_ratio = lacks < 0.5 ? log1p(-lacks) / a : log_cdf(u, v, a) - log(u);
+    return -expm1((1 - a) * log_ratio);
 }
 
 static double pair_log_density(double u, double v, double theta)
@@ -217,7 +218,7 @@ static double above_given(double lost, const void *with)
     const struct given *k = with;
     double theta = k->theta, x = theta * log1p(-lost);
     double log_rise = theta > 0 ? portable_log1pexp(k->log_t + x) : log1p(k->t * exp(x));
-    return -expm1(-(1 + 1 / theta) * log_rise);
+    return -expm1(-(1 + theta) / theta * log_rise);         /* theta may be next to -1 */
 }
 
 /* u + v - 1 + C(1-u, 1-v), theta > 0 */

@@ -112,6 +112,8 @@ static void short_and_long(void **state)
     s.df[1] = 0.05;
     ready(&e, c, &p);
     assert_true(1e4 * cdf_seconds(&e) > 20);
+    ready(&e, elliptical(&s, "t", 7, 0.5, 0.01), &p);
+    assert_true(1e4 * density_seconds(&e) > 5);
     c = elliptical(&s, "t", 20, 0.5, 4);
     s.df[1] = 30;
     ready(&e, c, &p);
@@ -151,12 +153,37 @@ static void rays(void **state)
     pool_empty(&p);
 }
 
+/* Points that the model would hardly make take many times what others do, and are counted. */
+static void spent(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    struct evaluation e;
+    pool p = { 0 };
+    double u[50], w[50];
+    copula *c = elliptical(&s, "t", 50, 0.5, 0.01);
+    for (size_t j = 0; j < 50; j++) s.df[j] = j % 2 ? 0.01 : 0.001;
+    ready(&e, c, &p);
+    assert_same(seconds_spent(&e), 0);
+    for (size_t j = 0; j < 50; j++) u[j] = 0.3;
+    assert_int_equal(conditional_at(&e, u, w), OK);
+    double central = seconds_spent(&e);
+    assert_true(central > 0 && central < 3 * conditional_seconds(&e));
+    for (size_t j = 0; j < 50; j++) u[j] = j % 3 ? 1e-300 : 1 - 0x1p-53;
+    assert_int_equal(conditional_at(&e, u, w), OK);
+    assert_true(seconds_spent(&e) - central > 10 * conditional_seconds(&e));
+    ready(&e, one_parameter(&s, "gumbel", 3, 2), &p);
+    assert_same(seconds_spent(&e), 0);
+    pool_empty(&p);
+}
+
 int main(void)
 {
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(fewer_points), cmocka_unit_test(other_ways),
         cmocka_unit_test(many_columns), cmocka_unit_test(short_and_long), cmocka_unit_test(rays),
+        cmocka_unit_test(spent),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

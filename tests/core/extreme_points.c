@@ -213,6 +213,25 @@ static void tails_of_t(void **state)
     csv_free(t);
 }
 
+/* Rotated clayton with theta next to -1, where 1 + 1/theta and 1 - w have no digits left: by
+ * definition with mpmath, 60 digits, of the doubles that stand here. */
+static void next_to_perfect(void **state)
+{
+    (void)state;
+    static const double at[][4] = {
+        { 0.3, 0.4, 1.9482015372832833405e-15, 8.466206339857443056e-15 },
+        { 0.001, 0.002, 2.0014043860760602485e-20, 2.0024069269860217216e-17 },
+        { 1e-9, 0.25, 2.8745213471359773873e-24, 2.8745213488013117478e-15 },
+    };
+    struct sample_copula s;
+    copula *c = one_parameter(&s, "clayton", 2, -0.99999999999999);
+    c->rotation = 180;
+    for (size_t i = 0; i < sizeof at / sizeof *at; i++) {
+        assert_close(ask_pair(c, CDF, at[i][0], at[i][1]), at[i][2], 1e-10);
+        assert_close(ask_pair(c, CONDITIONAL, at[i][0], at[i][1]), at[i][3], 1e-10);
+    }
+}
+
 int main(void)
 {
     const struct CMUnitTest tests[] = {
@@ -224,6 +243,7 @@ int main(void)
         cmocka_unit_test(rho_of_joe_near_independence),
         cmocka_unit_test(theta_of_strong_rho),
         cmocka_unit_test(tails_of_t),
+        cmocka_unit_test(next_to_perfect),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }
