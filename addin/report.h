@@ -25,6 +25,10 @@ __attribute__((format(printf, 3, 4))) status refuse(report *r, status s, const c
 /* Adds a fact, such as "2 rows dropped for gaps"; facts are joined by "; ". */
 __attribute__((format(printf, 2, 3))) void remark(report *r, const char *format, ...);
 
+/* Refuses what would keep the office waiting for more than 20 seconds: so many points, pairs or
+ * values (`what`, one of them) of a model. */
+status within_time(double seconds, size_t n, const char *what, report *r);
+
 /* The same formatting into a text of the pool's; NULL when there is no memory. */
 __attribute__((format(printf, 2, 3))) char *text_from(pool *p, const char *format, ...);
 

@@ -11,8 +11,6 @@
 
 enum { ASKED, POINTS };
 
-static const double LONGEST = 20;         /* seconds that a call may keep the office waiting */
-
 /* What came out, and what WHY is to say of it. */
 struct answers {
     samples s;
@@ -52,13 +50,6 @@ static bool take_row(const samples *points, size_t i, double *u)
         whole = whole && !is_gap(u[j]);
     }
     return whole;
-}
-
-static status within_time(double seconds, size_t n, const char *what, report *r)
-{
-    if (seconds <= LONGEST) return OK;
-    return refuse(r, OUT_OF_DOMAIN, "%zu %s%s of this model would take about %g s%s", n, what,
-                  plural(n), round(seconds), n > 1 ? ": ask for fewer at a time" : "");
 }
 
 /* Less quasi-Monte Carlo for many rows; refuses what would freeze the office all the same. */
