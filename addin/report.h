@@ -13,6 +13,7 @@ typedef struct {
     char facts[512];    /* what there is to say of a call that went well */
     const value *given; /* the arguments as they came, for checksums */
     size_t n_given;
+    const char *cause;  /* of errors in cells of the result, where the usual one is none */
     bool undefined;          /* the result held an undefined number: a defect, for tests */
 } report;
 

@@ -16,6 +16,7 @@ struct answers {
     samples s;
     double error;             /* the largest that a row has */
     size_t empty;             /* rows with a gap */
+    bool beyond;              /* whether an answer is beyond the range of numbers */
 };
 
 /* One row of points; the answer goes into `to`. */
@@ -79,6 +80,7 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
         if (s == NO_MEMORY) return s;
         if (!whole) a->empty++;
         if (s == OK && whole) a->error = fmax(a->error, error);
+        if (s == OK && whole) a->beyond = a->beyond || isinf(*to);
         for (size_t j = 0; j < a->s.cols; j++)
             column(&a->s, j)[i] = !whole ? gap() : s != OK ? fault(s)
                                 : isfinite(to[j]) ? to[j] : fault(OUT_OF_DOMAIN);
@@ -128,10 +130,14 @@ static status row_cdf(const struct evaluation *e, const double *u, double *to, d
     return cdf_at(e, u, to, error);
 }
 
-/* The error rounded up to two digits. */
+/* The error rounded up to two digits; where all points say the same they tell none. */
 static void remark_quasi(size_t points, double error, report *r)
 {
-    double digit = error > 0 ? pow(10, floor(log10(error)) - 1) : 1;
+    if (error == 0) {
+        remark(r, "by quasi-Monte Carlo with %zu points, which all agree", points);
+        return;
+    }
+    double digit = pow(10, floor(log10(error)) - 1);
     remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %g", points,
            ceil(error / digit) * digit);
 }
@@ -162,6 +168,7 @@ static status cell_density(const argument *in, value *out, report *r)
     struct evaluation e;
     struct way way = { row_density, density_seconds };
     status s = ask_all(in, ASK_DENSITY, 1, way, &a, &e, r);
+    if (s == OK && a.beyond) r->cause = "the density is above 1e308";
     return s == OK ? one_column(in, &a, "density", out, r) : s;
 }
 
@@ -267,25 +274,25 @@ const function points_functions[] = {
             "conditional probability, which is positive, and rotated ones of all families by forms "
             "in which nothing cancels; for a grouped t also the integral over its chi-squares. "
             "gaussian and t beyond pairs by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with "
-            "32,768 points, fewer for many rows, of which columns beyond the 130th are random "
-            "numbers; WHY states the standard error. Archimedean families in any dimension by "
-            "their generator, rotated by 180 as the mean over their frailty (Marshall & Olkin "
+            "32,768 points, fewer for many rows, down to 512, of which columns beyond the 130th "
+            "are random numbers; WHY states the standard error. Archimedean families in any "
+            "dimension by their generator, rotated by 180 as the mean over their frailty (Marshall & Olkin "
             "1988) of the product of what the columns then do by themselves, to 1e-10 relative "
             "too. A row with a gap gives an empty cell; points with a header give a column with "
-            "the header cdf. The probability that all columns are above a point is that of the "
-            "model with rotation 180 at 1 - u; give that as it is, 1e-20 where u is 1 - 1e-20.",
+            "the header cdf. What would take more than about 20 s is refused. The probability that "
+            "all columns are above a point is that of the model with rotation 180 at 1 - u; give "
+            "that as it is, 1e-20 where u is 1 - 1e-20. A computed range such as 1-A2:C2 reaches a "
+            "function whole only in a formula entered with Ctrl+Shift+Enter.",
         .examples = {
             { "CDF(MODEL(\"gaussian\";0.5);{0.5;0.5})", "0.333333333333333" },
             { "CDF(MODEL(\"clayton\";1);{0.5;0.5|0.2;0.9})", "0.333333333333333" },
-            { "CDF(MODEL(\"t\";0.5;4;180);{0.01;0.01})", "0.00287678434851538" },
+            { "CDF(MODEL(\"gumbel\";2;;180);{0.01;0.01})", "0.00588721111702" },
             { "CDF(MODEL(\"gumbel\";2);{0.5;1.5})", "#NUM!" },
         },
         .params = {
             MODEL_BLOCK,
             { .name = "points", .fits = "model",
-              .help = "One point a row, one column for each of the model, from 0 to 1. Below a "
-                      "header the result begins with the word cdf. Many rows get fewer points of "
-                      "quasi-Monte Carlo each, down to 512, and more than about 20 s are refused.",
+              .help = "One point a row, one column a line, from 0 to 1.",
               .kind = DATA },
         },
         .call = cell_cdf,
@@ -375,9 +382,11 @@ const function points_functions[] = {
             "gaussian, t and rotation 180 in more than two dimensions, a grouped t, and a t pair "
             "with df below 0.25 by quasi-Monte Carlo: along up to 4,096 lines through the unit "
             "cube on which the distribution function rises, fewer in many columns, which take some "
-            "2 s in all and answer every value; WHY states the standard error. A value of another "
-            "t pair takes some 0.02 s, with df below 2 some 0.08 s; what would take more than "
-            "about 20 s is refused. Of a pair tau is 3 - 4 times the area below it (Genest & "
+            "2 s in all and answer every value; WHY states the standard error: ask all w in one "
+            "formula entered with Ctrl+Shift+Enter, not in one formula a row, since what takes the "
+            "time is made once for a formula. A value of a gaussian pair takes some 0.004 s, of "
+            "another t pair some 0.025, with df below 2 some 0.07; what would take more than about "
+            "20 s is refused. Of a pair tau is 3 - 4 times the area below it (Genest & "
             "Rivest 1993).",
         .examples = {
             { "KENDALLOF(MODEL(\"independent\");0.5)", "0.846573590279973" },
@@ -385,7 +394,7 @@ const function points_functions[] = {
         },
         .params = {
             MODEL_BLOCK,
-            { .name = "w", .help = "From 0 to 1, a number or a range of them.", .kind = NUMBERS,
+            { .name = "w", .help = "Probabilities, a number or a range of them.", .kind = NUMBERS,
               .low = 0, .high = 1 },
         },
         .call = cell_kendallof,

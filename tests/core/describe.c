@@ -183,8 +183,8 @@ static value grouped_model(struct call *c, size_t lines, size_t groups)
     return model(c, 5, (value[]){ text("t"), number(0.5), df, nothing(), number((double)lines) });
 }
 
-/* What counts are pairs that differ, the order of their df aside: 300 lines in seven groups have 28,
- * three hundred groups 44,850. */
+/* What counts are pairs that differ, the order of their df aside: 300 lines in seven groups have
+ * 28, in three hundred groups 44,850. */
 static void too_many_pairs(void **state)
 {
     (void)state;
