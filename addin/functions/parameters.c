@@ -315,7 +315,7 @@ const function parameters_functions[] = {
             { "THETA(\"joe\";-0.1)", "#NUM!" },
         },
         .params = {
-            { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
+            { .name = "family", .help = "The family's word, see FAMILIES.",
               .kind = WORD, .words = family_words },
             { .name = "tau", .help = "Kendall's tau, a number or a range of them.",
               .kind = NUMBERS, .low = -1, .high = 1 },
@@ -340,7 +340,7 @@ const function parameters_functions[] = {
             { "THETARHO(\"gumbel\";-0.1)", "#NUM!" },
         },
         .params = {
-            { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
+            { .name = "family", .help = "The family's word, see FAMILIES.",
               .kind = WORD, .words = family_words },
             { .name = "rho", .help = "Spearman's rho, a number or a range of them.",
               .kind = NUMBERS, .low = -1, .high = 1 },
@@ -429,6 +429,9 @@ const function parameters_functions[] = {
             "An array with labels down its first column: copula, dimension, lines when the matrix "
             "carried names, theta or df and matrix, rotation when it is not 0. It can stand in the "
             "sheet, be copied as values and edited, or be nested straight into another function. "
+            "By hand: copula and dimension always; theta, or matrix (and df for t); lines, rotation "
+            "and notes if wanted; in any order. A range for df may have a header, which must name "
+            "the lines as the matrix does. "
             "With (U;V) from the unrotated copula, rotation 90 is (1-U;V), 180 is (1-U;1-V), the "
             "survival copula, and 270 is (U;1-V); theta is that of the unrotated copula. Beyond "
             "pairs rotation is 0 or 180. A matrix must have a unit diagonal and be symmetric and "
@@ -441,7 +444,7 @@ const function parameters_functions[] = {
             { "MODEL(\"gumbel\";0.5)", "#NUM!" },
         },
         .params = {
-            { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
+            { .name = "family", .help = "The family's word, see FAMILIES.",
               .kind = WORD, .words = family_words },
             { .name = "parameter",
               .help = "theta; for gaussian and t a matrix, or one correlation for all pairs.",
