@@ -46,7 +46,7 @@ static size_t place_of(const function *f, const char *name)
 static status read_all(const function *f, const value *in, size_t n_in, argument *read, report *r)
 {
     static const value nothing = { .is = IS_NOTHING };
-    size_t n = count_params(f) - f->rest;
+    size_t n = f->rest ? 0 : count_params(f);
     for (size_t i = 0; i < n; i++) {
         const param *p = f->params + i;
         const argument *earlier = p->fits ? read + place_of(f, p->fits) : NULL;
@@ -74,17 +74,22 @@ static status refuse_overflow(value *out, report *r)
     return OK;
 }
 
-/* An error in a cell of the result is no refusal, but the first one is worth a word. */
+/* An error in a cell of the result is no refusal, but the first fact that there is to tell. */
 static void remark_faults(const value *out, report *r)
 {
     if (out->is != IS_TABLE) return;
     size_t faults = 0, first = 0;
     for (size_t i = 0; i < out->table.rows * out->table.cols; i++)
         if (fault_in(out->table.at[i]) != OK && !faults++) first = i;
-    if (faults)
-        remark(r, "cells of the result that hold errors: %zu, the first in row %zu, column %zu: %s",
-               faults, first / out->table.cols + 1, first % out->table.cols + 1,
-               usual_sentence(fault_in(out->table.at[first])));
+    if (!faults) return;
+    char others[sizeof r->facts];
+    memcpy(others, r->facts, sizeof others);
+    *r->facts = 0;
+    remark(r, "%zu cell%s of the result hold%s, the first in row %zu, column %zu: %s", faults,
+           plural(faults), faults == 1 ? "s an error" : " errors", first / out->table.cols + 1,
+           first % out->table.cols + 1,
+           r->cause ? r->cause : usual_sentence(fault_in(out->table.at[first])));
+    if (*others) remark(r, "%s", others);
 }
 
 static status run(const function *f, const value *in, size_t n_in, value *out, report *r)

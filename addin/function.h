@@ -92,7 +92,8 @@ typedef struct function {
     example examples[MAX_EXAMPLES];
     param params[MAX_PARAMS]; /* up to the first without a name */
     bool costly;              /* worth keeping in the cache of recent results */
-    bool rest;                /* the last parameter stands for any number of further values (WHY) */
+    bool rest;                /* the last parameter stands for any number of further values, and
+                                 the call takes all of them from the report, unread (WHY) */
     status (*call)(const argument *in, value *out, report *r);
 } function;
 

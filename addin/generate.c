@@ -102,12 +102,20 @@ static void escaped(const char *s)
     }
 }
 
+/* The wizard shows no list, so that the many words for a family stand in their help. */
+static void xcu_words(const param *p)
+{
+    if (p->words != family_words) return;
+    printf(" Words: %s.", p->words);
+}
+
 static void xcu_param(const param *p)
 {
     printf("        <node oor:name=\"%s\" oor:op=\"replace\">\n"
            "         <prop oor:name=\"DisplayName\"><value xml:lang=\"en-US\">%s</value></prop>\n"
            "         <prop oor:name=\"Description\"><value xml:lang=\"en-US\">", p->name, p->name);
     escaped(p->help);
+    xcu_words(p);
     if (p->optional) optional_note(p, " ", "");
     else fputs(" Required.", stdout);    /* the wizard calls every `any` optional */
     puts("</value></prop>\n        </node>");

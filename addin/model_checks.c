@@ -63,8 +63,9 @@ static status check_theta(const copula *c, report *r)
     if (above && below) return OK;
     const char *range = theta_range(f, c->dimension, r->pool);
     if (!range) return NO_MEMORY;
-    return refuse(r, OUT_OF_DOMAIN, "theta is %g, but %s in %s takes %s", theta, f->word,
-                  c->dimension > 2 ? "more than two dimensions" : "two dimensions", range);
+    return refuse(r, OUT_OF_DOMAIN, "theta is %g, but %s in %s takes %s%s", theta, f->word,
+                  c->dimension > 2 ? "more than two dimensions" : "two dimensions", range,
+                  theta == 0 ? " (a blank cell counts as 0)" : "");
 }
 
 static status check_df(const copula *c, report *r)

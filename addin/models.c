@@ -241,13 +241,31 @@ static status refuse_correlations(const struct reading *b, const double *matrix,
     return sentence ? refuse(b->r, status_of_defect(found), "%s", sentence) : NO_MEMORY;
 }
 
+/* Names that stand above the numbers or between them belong elsewhere. */
+static status refuse_names(const struct reading *b, size_t first)
+{
+    const table *t = b->t;
+    for (size_t row = first; row < t->rows && (row == first || !word_at(t, row, 0)); row++)
+        for (size_t col = 1; col < t->cols; col++) {
+            const char *word = word_at(t, row, col);
+            if (word && reads_as_name(word))
+                return refuse(b->r, BAD_KIND, "%s has the text \"%s\" in row %zu, column %zu, "
+                              "where a number of the matrix is needed (names go into a row with "
+                              "the label lines)", b->param, word, row + 1, col + 1);
+        }
+    return OK;
+}
+
 static status read_correlations(struct reading *b, copula *c)
 {
     if (!b->row[MATRIX_LABEL]) return missing(b, MATRIX_LABEL);
     size_t first = b->row[MATRIX_LABEL] - 1, d = c->dimension;
+    status named = refuse_names(b, first);
+    if (named != OK) return named;
     if (b->matrix_rows != d)
-        return refuse(b->r, BAD_KIND, "%s has a matrix of %zu rows from row %zu on, not %zu",
-                      b->param, b->matrix_rows, first + 1, d);
+        return refuse(b->r, BAD_KIND, "%s has a matrix of %zu row%s from row %zu on, not %zu%s",
+                      b->param, b->matrix_rows, plural(b->matrix_rows), first + 1, d,
+                      b->matrix_rows < d ? " (does the range hold the whole block?)" : "");
     double *matrix = pool_take(b->r->pool, d * d, sizeof *matrix);
     if (!matrix) return NO_MEMORY;
     c->matrix = b->matrix = matrix;

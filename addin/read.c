@@ -154,10 +154,8 @@ static status check_fit(argument *a, const argument *earlier, report *r)
     if (lines != wanted)
         return refuse(r, BAD_KIND, "%s has %zu line%s, but %s has %zu", a->param->name, lines,
                       plural(lines), earlier->param->name, wanted);
-    for (size_t i = 0; names && theirs && i < lines; i++)
-        if (*names[i] && *theirs[i] && !same_word(names[i], theirs[i]))
-            return refuse(r, BAD_KIND, "%s names line %zu \"%s\", but %s names it \"%s\"",
-                          a->param->name, i + 1, names[i], earlier->param->name, theirs[i]);
+    status s = check_same_names(a->param->name, names, earlier->param->name, theirs, lines, r);
+    if (s != OK) return s;
     return a->param->kind == MARGINS ? adopt_names(&a->margins, theirs, r) : OK;
 }
 

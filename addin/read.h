@@ -23,7 +23,7 @@ status read_data(const char *name, const value *v, bool gaps_allowed, argument *
 /* A square of numbers, with or without a header row and a name column. */
 status read_matrix(const value *v, const char *name, samples *m, bool *header, report *r);
 
-/* A number, or a table of numbers and gaps, its header row skipped. */
+/* A number, or a table of numbers and gaps below a header row or without one. */
 status read_numbers(const char *name, const value *v, argument *a, report *r);
 
 /* ---- read_blocks.c: labelled blocks ---- */
@@ -62,6 +62,11 @@ status number_at(const char *name, const table *t, size_t row, size_t col, doubl
 /* Why a value is no table, for a parameter that needs `wanted` ("a column", "a range"); OK if it is
  * one. */
 status table_of(const char *name, const value *v, const char *wanted, const table **t, report *r);
+
+/* Where both name the n lines, the names must be the same, in order; an empty one is none, and
+ * either list may be NULL. */
+status check_same_names(const char *name, const char **names, const char *other,
+                        const char **theirs, size_t n, report *r);
 
 /* The first row's texts as names, an empty cell as ""; NULL when there is no memory. */
 const char **names_in_row(const table *t, size_t row, size_t from, size_t n, report *r);

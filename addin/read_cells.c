@@ -80,6 +80,16 @@ const char **names_in_row(const table *t, size_t row, size_t from, size_t n, rep
     return names;
 }
 
+status check_same_names(const char *name, const char **names, const char *other,
+                        const char **theirs, size_t n, report *r)
+{
+    for (size_t i = 0; names && theirs && i < n; i++)
+        if (*names[i] && *theirs[i] && !same_word(names[i], theirs[i]))
+            return refuse(r, BAD_KIND, "%s names line %zu \"%s\", but %s names it \"%s\"", name,
+                          i + 1, names[i], other, theirs[i]);
+    return OK;
+}
+
 value single_of(const value *v)
 {
     if (v->is == IS_TEXT && !*v->text) return (value){ .is = IS_NOTHING };

@@ -192,6 +192,8 @@ status read_numbers(const char *name, const value *v, argument *a, report *r)
     const table *t = &v->table;
     a->header = t->rows > 1 && header_in(t);
     status s = check_numbers(name, t, a->header, r);
-    if (s != OK) return s;
-    return turned(t, a->header, 0, t->rows - a->header, t->cols, &a->data, r);
+    if (s == OK) s = turned(t, a->header, 0, t->rows - a->header, t->cols, &a->data, r);
+    if (s != OK || !a->header) return s;
+    a->data.names = names_in_row(t, 0, 0, t->cols, r);
+    return a->data.names ? OK : NO_MEMORY;
 }

@@ -2,6 +2,7 @@
 #include "report.h"
 #include "words.h"
 
+#include <math.h>
 #include <string.h>
 
 enum { MOST_CELLS = 20000000, MOST_ROWS = 1048576, LONGEST_TEXT = 1024 };
@@ -27,6 +28,13 @@ void remark(report *r, const char *format, ...)
     va_start(rest, format);
     format_text(r->facts + at, sizeof r->facts - at, format, rest);
     va_end(rest);
+}
+
+status within_time(double seconds, size_t n, const char *what, report *r)
+{
+    if (seconds <= LONGEST_WAIT) return OK;
+    return refuse(r, OUT_OF_DOMAIN, "%zu %s%s of this model would take about %g s%s", n, what,
+                  plural(n), round(seconds), n > 1 ? ": ask for fewer at a time" : "");
 }
 
 char *text_from(pool *p, const char *format, ...)

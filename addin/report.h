@@ -13,6 +13,7 @@ typedef struct {
     char facts[512];    /* what there is to say of a call that went well */
     const value *given; /* the arguments as they came, for checksums */
     size_t n_given;
+    const char *cause;  /* of errors in cells of the result, where the usual one is none */
     bool undefined;          /* the result held an undefined number: a defect, for tests */
 } report;
 
@@ -24,6 +25,12 @@ __attribute__((format(printf, 3, 4))) status refuse(report *r, status s, const c
 
 /* Adds a fact, such as "2 rows dropped for gaps"; facts are joined by "; ". */
 __attribute__((format(printf, 2, 3))) void remark(report *r, const char *format, ...);
+
+enum { LONGEST_WAIT = 20 };   /* seconds */
+
+/* Refuses what would keep the office waiting for longer than that: so many points, pairs or
+ * values (`what`, one of them) of a model. */
+status within_time(double seconds, size_t n, const char *what, report *r);
 
 /* The same formatting into a text of the pool's; NULL when there is no memory. */
 __attribute__((format(printf, 2, 3))) char *text_from(pool *p, const char *format, ...);

@@ -1,8 +1,9 @@
 /* correlation.c - eigenvalues, feasibility and defects of correlation matrices.
  *
  * Method: eigenvalues by LAPACK (linear.c). A matrix has no eigenvalue below f when G - f I has a
- * Cholesky factor, which costs a fraction of the eigenvalues; only when the factor does not exist,
- * and the matrix may still be within rounding of the floor, are the eigenvalues computed.
+ * Cholesky factor, which costs a fraction of the eigenvalues. For feasibility f is half way to what
+ * is allowed below the floor, so that a singular matrix has its factor too; only when it does not
+ * exist, and the matrix may still be within what is allowed, are the eigenvalues computed.
  * Special cases: d = 1 goes the common way. A matrix with an entry that is not finite has no
  * answer.
  * Accuracy: of the eigenvalues a small multiple of 2.2e-16 d; the factor exists for no matrix whose
@@ -16,6 +17,7 @@
 #include <string.h>
 
 static const double ROUNDING = 1e-9;
+static const double ALLOWED = 1e-12;          /* below the floor, times d */
 
 static double *copy_of(const double *matrix, size_t d, pool *p)
 {
@@ -69,11 +71,11 @@ status lies_above(const double *matrix, size_t d, double floor, bool *above, poo
 status matrix_feasible(const double *matrix, size_t d, double floor, bool *feasible, pool *p)
 {
     if (d == 0) return OUT_OF_DOMAIN;
-    status s = lies_above(matrix, d, floor, feasible, p);
+    double lowest, allowed = ALLOWED * (double)d;
+    status s = lies_above(matrix, d, floor - allowed / 2, feasible, p);
     if (s || *feasible) return s;
-    double lowest;
     s = lowest_eigenvalue(matrix, d, &lowest, p);
-    if (!s) *feasible = lowest >= floor - 1e-12 * (double)d;
+    if (!s) *feasible = lowest >= floor - allowed;
     return s;
 }
 

@@ -159,13 +159,12 @@ size_t kendall_rays(const struct evaluation *e)
     return m && !elliptical_rises(e) ? POINTS_FOR_A_RAY * rays : rays;
 }
 
-/* Without a formula the rule for a pair has 61 points or four times as many, each the root of a
- * probability. */
+/* Without a formula the rule for a pair has 99 points or 253, each the root of a probability. */
 double kendall_seconds(const struct evaluation *e, size_t n)
 {
     const struct elliptical_points *m = elliptical_of(e);
     double rays = (double)kendall_rays(e), values = (double)n;
     if (rays > 0) return fmin(rays, MOST_RAYS) * ray_seconds(e) + rays * 5e-8 * values;
     if (e->rotation == 0 && e->by->kendall) return values * formula_seconds(e);
-    return values * (!m ? 2e-4 : !m->df ? 6e-3 : m->df[0] < 2 ? 8e-2 : 2e-2);
+    return values * (!m ? 2e-4 : !m->df ? 4e-3 : m->df[0] < 2 ? 7e-2 : 2.5e-2);
 }

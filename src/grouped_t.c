@@ -34,13 +34,15 @@ struct columns {
     struct student first, second;
 };
 
-/* Below the smallest distance that counts (FIRST_LOG) all df are alike. */
+/* The lower df first, so that a pair gives the same bits either way round. Below the smallest
+ * distance that counts (FIRST_LOG) all df are alike. */
 static status take_columns(double df1, double df2, struct columns *c, pool *p)
 {
     const double LEAST = 1e-20;
     if (!(df1 > 0 && df2 > 0)) return OUT_OF_DOMAIN;
-    status made = chi_square_table(&c->first, fmax(df1, LEAST), p);
-    return made == OK ? chi_square_table(&c->second, fmax(df2, LEAST), p) : made;
+    double low = fmax(fmin(df1, df2), LEAST), high = fmax(fmax(df1, df2), LEAST);
+    status made = chi_square_table(&c->first, low, p);
+    return made == OK ? chi_square_table(&c->second, high, p) : made;
 }
 
 /* Scores beyond it are too rare to matter. The tables reach a little further. */

@@ -59,6 +59,28 @@ status tail_of_pair(const copula *c, size_t i, size_t j, enum corner corner, dou
     return isnan(*lambda) ? NOT_SETTLED : OK;
 }
 
+static bool grouped(const copula *c, size_t i, size_t j)
+{
+    return df_of(c, i) != df_of(c, j);
+}
+
+double tau_seconds(const copula *c, size_t i, size_t j)
+{
+    return grouped(c, i, j) ? 3.5e-3 : 1e-6;
+}
+
+double rho_seconds(const copula *c, size_t i, size_t j)
+{
+    double df1 = df_of(c, i), df2 = df_of(c, j);
+    if (grouped(c, i, j)) return 7.5e-3 * (df1 < 1 ? 2.5 : 1) * (df2 < 1 ? 2.5 : 1);
+    return !c->family->has_df ? 1e-6 : df1 < 2 ? 2e-3 : 2e-4;
+}
+
+double tail_seconds(const copula *c, size_t i, size_t j)
+{
+    return grouped(c, i, j) ? 6e-4 : 5e-6;
+}
+
 bool one_for_all_pairs(const copula *c)
 {
     return c->dimension == 2 || !c->family->has_matrix;

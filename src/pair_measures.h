@@ -13,6 +13,11 @@ status rho_of_pair(const copula *c, size_t i, size_t j, double *rho, pool *p);
 /* Tail dependence of columns i and j in the corner LOWER or UPPER. */
 status tail_of_pair(const copula *c, size_t i, size_t j, enum corner corner, double *lambda);
 
+/* About how long each takes, in seconds of one core near 3 GHz, off by up to a factor of 3. */
+double tau_seconds(const copula *c, size_t i, size_t j);
+double rho_seconds(const copula *c, size_t i, size_t j);
+double tail_seconds(const copula *c, size_t i, size_t j);
+
 /* Whether all pairs of columns are alike, so that one number describes them. */
 bool one_for_all_pairs(const copula *c);
 

@@ -33,7 +33,16 @@ static bool only_faults(const value *result)
     return result->is == IS_TABLE && !t->words && fault_in(t->at[0]) != OK;
 }
 
-/* "fine", with the facts. The size is told since one cell shows only the first of a result. */
+static bool any_fault(const value *result)
+{
+    const table *t = &result->table;
+    for (size_t i = 0; result->is == IS_TABLE && i < t->rows * t->cols; i++)
+        if (fault_in(t->at[i]) != OK) return true;
+    return false;
+}
+
+/* "fine" where no cell holds an error, with the facts, of which errors in cells are the first. The
+ * size is told since one cell shows only the first of a result. */
 static status say_fine(const value *result, report *inner, value *out)
 {
     const table *t = &result->table;
@@ -41,23 +50,28 @@ static status say_fine(const value *result, report *inner, value *out)
         remark(inner, "the result is %zu x %zu cells", t->rows, t->cols);
     if (only_faults(result))
         return say(text_from(inner->pool, "no cell has a value: %s", inner->facts), out);
+    if (any_fault(result)) return say(text_from(inner->pool, "done, but %s", inner->facts), out);
     return say(text_from(inner->pool, *inner->facts ? "fine: %s" : "fine", inner->facts), out);
 }
+
+static const char HOW_TO_ASK[] = "WHY takes a name in quotes and then the arguments, as in "
+                                 "WHY(\"TAU\";A1:A9;B1:B9)";
 
 /* The named function's own report, in this call's pool. Whatever is wrong, WHY itself says it. */
 static status cell_why(const argument *in, value *out, report *r)
 {
+    (void)in;
     const value *given = r->given;
-    value name = single_of(in[0].raw), result;
-    const char *asked = name.is == IS_TEXT ? name.text : "";
-    const function *f = function_named(without_prefix(asked, "="));
+    value name = { .is = IS_NOTHING }, result;
+    if (r->n_given) name = single_of(&given[0]);
+    if (name.is != IS_TEXT) return say(HOW_TO_ASK, out);
+    const function *f = function_named(without_prefix(name.text, "="));
     if (!f)
-        return say(text_from(r->pool, "there is no function \"%s\": WHY takes a name in quotes and "
-                             "then the arguments, as in WHY(\"TAU\";A1:A9;B1:B9)", asked), out);
+        return say(text_from(r->pool, "there is no function \"%s\": %s", name.text, HOW_TO_ASK),
+                   out);
     if (f->rest) return say("WHY cannot be asked about itself", out);
     report inner = { .pool = r->pool };
-    size_t n = r->n_given ? r->n_given - 1 : 0;
-    status s = call_function(f, given + 1, n, &result, &inner);
+    status s = call_function(f, given + 1, r->n_given - 1, &result, &inner);
     return s == OK ? say_fine(&result, &inner, out) : say(text_from(r->pool, "%s", inner.why), out);
 }
 
@@ -70,7 +84,8 @@ const function govern_functions[] = {
         .detail =
             "The sentence names argument, row and column, counted from the first row of the range. "
             "When all is fine it tells rows used and dropped, headers skipped, repairs made and "
-            "the size of the result. "
+            "the size of the result; when only some cells of it hold errors, how many and where "
+            "the first is. "
             "`=IFERROR(JOINT.TAU(A2:A41;B2:B41);JOINT.WHY(\"TAU\";A2:A41;B2:B41))` shows the "
             "sentence in place of an error. An error in a cell of a range never reaches a "
             "function: the office answers Err:504, here too, and "

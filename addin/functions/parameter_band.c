@@ -82,7 +82,7 @@ const function parameter_band_functions[] = {
             { "THETABAND(\"gumbel\";{1|2|3|4};{4|3|2|1})", "#NUM!" },
         },
         .params = {
-            { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
+            { .name = "family", .help = "The family's word, see FAMILIES.",
               .kind = WORD, .words = family_words },
             PAIR_OF_COLUMNS,
             BAND_SETTINGS("theta"),

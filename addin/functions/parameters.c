@@ -250,6 +250,10 @@ static status take_df(const argument *a, copula *c, report *r)
     if (n != 1 && n != c->dimension)
         return refuse(r, BAD_KIND, "df has %zu values, but must have 1 or %zu, one a column", n,
                       c->dimension);
+    if (n == c->dimension && a->data.rows == 1) {
+        status s = check_same_names("df", a->data.names, "the matrix", c->lines, n, r);
+        if (s != OK) return s;
+    }
     double *df = pool_take(r->pool, c->dimension, sizeof *df);
     if (!df) return NO_MEMORY;
     for (size_t i = 0; i < c->dimension; i++) {
@@ -275,9 +279,11 @@ static status refuse_model(const argument *in, const copula *c, status s, const 
 static status cell_model(const argument *in, value *out, report *r)
 {
     copula c = { .family = families[in[FAMILY].word],
-                 .dimension = (size_t)in[DIMENSION].number,
-                 .rotation = (int)in[ROTATION].number };
-    status s = take_parameter(in, &c, r);
+                 .dimension = (size_t)in[DIMENSION].number };
+    status s = check_degrees(in[ROTATION].number, r);
+    if (s != OK) return s;
+    c.rotation = (int)in[ROTATION].number;
+    s = take_parameter(in, &c, r);
     if (s == OK) s = take_df(&in[FREEDOM], &c, r);
     if (s != OK) return s;
     const char *label = "";
@@ -309,7 +315,7 @@ const function parameters_functions[] = {
             { "THETA(\"joe\";-0.1)", "#NUM!" },
         },
         .params = {
-            { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
+            { .name = "family", .help = "The family's word, see FAMILIES.",
               .kind = WORD, .words = family_words },
             { .name = "tau", .help = "Kendall's tau, a number or a range of them.",
               .kind = NUMBERS, .low = -1, .high = 1 },
@@ -334,7 +340,7 @@ const function parameters_functions[] = {
             { "THETARHO(\"gumbel\";-0.1)", "#NUM!" },
         },
         .params = {
-            { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
+            { .name = "family", .help = "The family's word, see FAMILIES.",
               .kind = WORD, .words = family_words },
             { .name = "rho", .help = "Spearman's rho, a number or a range of them.",
               .kind = NUMBERS, .low = -1, .high = 1 },
@@ -423,6 +429,9 @@ const function parameters_functions[] = {
             "An array with labels down its first column: copula, dimension, lines when the matrix "
             "carried names, theta or df and matrix, rotation when it is not 0. It can stand in the "
             "sheet, be copied as values and edited, or be nested straight into another function. "
+            "By hand: copula and dimension always; theta, or matrix (and df for t); lines, "
+            "rotation and notes if wanted; in any order. A range for df may have a header, which must name "
+            "the lines as the matrix does. "
             "With (U;V) from the unrotated copula, rotation 90 is (1-U;V), 180 is (1-U;1-V), the "
             "survival copula, and 270 is (U;1-V); theta is that of the unrotated copula. Beyond "
             "pairs rotation is 0 or 180. A matrix must have a unit diagonal and be symmetric and "
@@ -435,7 +444,7 @@ const function parameters_functions[] = {
             { "MODEL(\"gumbel\";0.5)", "#NUM!" },
         },
         .params = {
-            { .name = "family", .help = "The word for the family, as FAMILIES lists them.",
+            { .name = "family", .help = "The family's word, see FAMILIES.",
               .kind = WORD, .words = family_words },
             { .name = "parameter",
               .help = "theta; for gaussian and t a matrix, or one correlation for all pairs.",
@@ -443,9 +452,9 @@ const function parameters_functions[] = {
             { .name = "df",
               .help = "For t the degrees of freedom above 0, one number or one for each column; "
                       "for other families 0 counts as left out.",
-              .kind = NUMBERS, .low = 0, .high = 1e9, .optional = true },
+              .kind = NUMBERS, .optional = true },
             { .name = "rotation", .help = "0, 90, 180 or 270 degrees.", .kind = WHOLE,
-              .low = 0, .high = 270, .optional = true, .otherwise = 0 },
+              .optional = true, .otherwise = 0 },
             { .name = "dimension",
               .help = "How many columns the model has, where parameter is not a matrix.",
               .kind = WHOLE, .low = 2, .high = 16384, .optional = true, .otherwise = 2 },

@@ -11,13 +11,12 @@
 
 enum { ASKED, POINTS };
 
-static const double LONGEST = 20;         /* seconds that a call may keep the office waiting */
-
 /* What came out, and what WHY is to say of it. */
 struct answers {
     samples s;
     double error, part;       /* the largest that a row has, and as a part of its number */
     size_t empty;             /* rows with a gap */
+    bool beyond;              /* whether an answer is beyond the range of numbers */
 };
 
 /* One row of points; the answer goes into `to`. */
@@ -54,13 +53,6 @@ static bool take_row(const samples *points, size_t i, double *u)
     return whole;
 }
 
-static status within_time(double seconds, size_t n, const char *what, report *r)
-{
-    if (seconds <= LONGEST) return OK;
-    return refuse(r, OUT_OF_DOMAIN, "%zu %s%s of this model would take about %g s%s", n, what,
-                  plural(n), round(seconds), n > 1 ? ": ask for fewer at a time" : "");
-}
-
 /* Less quasi-Monte Carlo for many rows; refuses what would freeze the office all the same. */
 static status check_time(const argument *in, const struct evaluation *e,
                          seconds_of_point *takes, report *r)
@@ -79,7 +71,7 @@ static status check_time(const argument *in, const struct evaluation *e,
 static status check_spent(const argument *in, const struct evaluation *e, size_t i, report *r)
 {
     double spent = seconds_spent(e), all = (double)in[POINTS].filled;
-    if (spent <= LONGEST) return OK;
+    if (spent <= LONGEST_WAIT) return OK;
     return within_time(spent * all / (double)i, in[POINTS].filled, "point", r);
 }
 
@@ -98,6 +90,7 @@ static status each_row(const argument *in, const struct evaluation *e, answer_ro
         if (!whole) a->empty++;
         if (s == OK && error > 0) a->error = fmax(a->error, error);
         if (s == OK && error > 0) a->part = fmax(a->part, error / to[0]);
+        if (s == OK && whole) a->beyond = a->beyond || isinf(*to);
         for (size_t j = 0; j < a->s.cols; j++)
             column(&a->s, j)[i] = !whole ? gap() : s != OK ? fault(s)
                                 : isfinite(to[j]) ? to[j] : fault(OUT_OF_DOMAIN);
@@ -154,8 +147,13 @@ static double two_digits(double error)
     return ceil(error / digit) * digit;
 }
 
+/* Where all points say the same they tell no error. */
 static void remark_quasi(size_t points, double error, report *r)
 {
+    if (error == 0) {
+        remark(r, "by quasi-Monte Carlo with %zu points, which all agree", points);
+        return;
+    }
     remark(r, "by quasi-Monte Carlo with %zu points, with a standard error of at most %g", points,
            two_digits(error));
 }
@@ -187,6 +185,7 @@ static status cell_density(const argument *in, value *out, report *r)
     struct evaluation e;
     struct way way = { row_density, density_seconds };
     status s = ask_all(in, ASK_DENSITY, 1, way, &a, &e, r);
+    if (s == OK && a.beyond) r->cause = "the density is above 1e308";
     return s == OK ? one_column(in, &a, "density", out, r) : s;
 }
 
@@ -299,21 +298,20 @@ const function points_functions[] = {
             "their generator, rotated by 180 as the mean over their frailty (Marshall & Olkin "
             "1988) of the product of what the columns then do by themselves, to 1e-10 relative "
             "too. A row with a gap gives an empty cell; points with a header give a column with "
-            "the header cdf. The probability that all columns are above a point is that of the "
-            "model with rotation 180 at 1 - u; give that as it is, 1e-20 where u is 1 - 1e-20.",
+            "the header cdf. What would take more than about 20 s is refused. The probability that "
+            "all columns are above a point is that of the model with rotation 180 at 1 - u; give "
+            "that as it is, 1e-20 where u is 1 - 1e-20. A computed range such as 1-A2:C2 reaches a "
+            "function whole only in a formula entered with Ctrl+Shift+Enter.",
         .examples = {
             { "CDF(MODEL(\"gaussian\";0.5);{0.5;0.5})", "0.333333333333333" },
             { "CDF(MODEL(\"clayton\";1);{0.5;0.5|0.2;0.9})", "0.333333333333333" },
-            { "CDF(MODEL(\"t\";0.5;4;180);{0.01;0.01})", "0.00287678434851538" },
+            { "CDF(MODEL(\"gumbel\";2;;180);{0.01;0.01})", "0.00588721111702" },
             { "CDF(MODEL(\"gumbel\";2);{0.5;1.5})", "#NUM!" },
         },
         .params = {
             MODEL_BLOCK,
             { .name = "points", .fits = "model",
-              .help = "One point a row, one column for each of the model, from 0 to 1. Below a "
-                      "header the result begins with the word cdf. More than about 20 s "
-                      "are refused.",
-              .kind = DATA },
+              .help = "One point a row, one column a line, from 0 to 1.", .kind = DATA },
         },
         .call = cell_cdf,
         .costly = true,
@@ -402,17 +400,19 @@ const function points_functions[] = {
             "gaussian, t and rotation 180 in more than two dimensions, a grouped t, and a t pair "
             "with df below 0.25 by quasi-Monte Carlo: along up to 4,096 lines through the unit "
             "cube on which the distribution function rises, fewer in many columns, which take some "
-            "2 s in all and answer every value; WHY states the standard error. A value of another "
-            "t pair takes some 0.02 s, with df below 2 some 0.08 s; what would take more than "
-            "about 20 s is refused. Of a pair tau is 3 - 4 times the area below it (Genest & "
-            "Rivest 1993).",
+            "2 s in all and answer every value; WHY states the standard error: ask all w in one "
+            "formula entered with Ctrl+Shift+Enter, not in one formula a row, since what takes the "
+            "time is made once for a formula. A value of a gaussian pair takes some 0.004 s, of "
+            "another t pair some 0.025, with df below 2 some 0.07; what would take more than about "
+            "20 s is refused. Of a pair tau is 3 - 4 times the area below it (Genest & Rivest "
+            "1993).",
         .examples = {
             { "KENDALLOF(MODEL(\"independent\");0.5)", "0.846573590279973" },
             { "KENDALLOF(MODEL(\"clayton\";1);0.5)", "0.75" },
         },
         .params = {
             MODEL_BLOCK,
-            { .name = "w", .help = "From 0 to 1, a number or a range of them.", .kind = NUMBERS,
+            { .name = "w", .help = "Probabilities, a number or a range of them.", .kind = NUMBERS,
               .low = 0, .high = 1 },
         },
         .call = cell_kendallof,

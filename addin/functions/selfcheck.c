@@ -161,7 +161,8 @@ const function selfcheck_functions[] = {
         .name = "selfCheck",
         .group = "Govern",
         .help = "Computes published values again inside this office: one row each, pass or fail.",
-        .detail = "Columns: check, computed, published, allowed difference, source, result. "
+        .detail = "Columns: check, computed, published, allowed (the difference that passes at "
+                  "most), source, result. "
                   "`=SUMPRODUCT(JOINT.SELFCHECK()&\"\"=\"fail\")` must be 0. The last row is "
                   "simulated and may differ by about six standard errors.",
         .examples = {

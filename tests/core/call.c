@@ -130,7 +130,21 @@ static void why_speaks_for_others(void **state)
     assert_non_null(strstr(out.text, "there is no function \"nothing\""));
     in[0] = number(1);
     assert_int_equal(call_function(why, in, 1, &out, &r), OK);
-    assert_non_null(strstr(out.text, "takes a name in quotes"));
+    assert_string_equal(out.text, "WHY takes a name in quotes and then the arguments, as in "
+                                  "WHY(\"TAU\";A1:A9;B1:B9)");
+    assert_int_equal(call_function(why, in, 0, &out, &r), OK);
+    assert_non_null(strstr(out.text, "WHY takes a name in quotes"));
+    in[0] = text("greiner");
+    in[1] = cells(&p, "0.5,2;3,1");
+    assert_int_equal(call_function(why, in, 2, &out, &r), OK);
+    assert_string_equal(out.text, "done, but 2 cells of the result hold errors, the first in row "
+                                  "1, column 2: a number is outside its domain; the result is 2 x "
+                                  "2 cells");
+    in[1] = cells(&p, "a,b;0.5,2");
+    assert_int_equal(call_function(why, in, 2, &out, &r), OK);
+    assert_string_equal(out.text, "done, but 1 cell of the result holds an error, the first in row "
+                                  "2, column 2: a number is outside its domain; header of tau "
+                                  "skipped (\"a\", ...); the result is 2 x 2 cells");
     in[0] = text("why");
     assert_int_equal(call_function(why, in, 1, &out, &r), OK);
     assert_string_equal(out.text, "WHY cannot be asked about itself");

@@ -91,8 +91,10 @@ static void feasible_allows_rounding_and_no_more(void **unused)
     }
     double singular[] = { 1, 1, 1, 1 };
     bool feasible = false;
+    p.taken = 0;
     assert_int_equal(matrix_feasible(singular, 2, 0, &feasible, &p), OK);
     assert_true(feasible);
+    assert_int_equal(p.taken, 1);                /* a factor shows it, without the eigenvalues */
     assert_null(p.last);
 }
 

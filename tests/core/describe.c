@@ -173,6 +173,33 @@ static void different_pairs(void **state)
     pool_empty(&c.pool);
 }
 
+/* a grouped t with one correlation, whose df are 3, 4, ... and begin again after `groups` */
+static value grouped_model(struct call *c, size_t lines, size_t groups)
+{
+    report r = { .pool = &c->pool };
+    value df;
+    assert_int_equal(new_table(&r, lines, 1, &df), OK);
+    for (size_t i = 0; i < lines; i++) put_number(&df, i, 0, 3 + (double)(i % groups));
+    return model(c, 5, (value[]){ text("t"), number(0.5), df, nothing(), number((double)lines) });
+}
+
+/* What counts are pairs that differ, the order of their df aside: 300 lines in seven groups have
+ * 28, in three hundred groups 44,850. */
+static void too_many_pairs(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    value few = grouped_model(&c, 300, 7), many = grouped_model(&c, 300, 300);
+    assert_int_equal(call(&c, "RHOOF", 1, &few)->s, OK);
+    assert_same(c.out.table.at[1], c.out.table.at[300]);
+    assert_int_equal(call(&c, "RHOOF", 1, &many)->s, OUT_OF_DOMAIN);
+    assert_string_equal(c.report.why, "44850 pairs of this model would take about 336 s: ask for "
+                                      "fewer at a time");
+    assert_int_equal(call(&c, "TAUOF", 1, &many)->s, OUT_OF_DOMAIN);
+    assert_int_equal(call(&c, "TAILOF", 2, (value[]){ many, text("upper") })->s, OUT_OF_DOMAIN);
+    pool_empty(&c.pool);
+}
+
 static void reading_refused(void **state)
 {
     (void)state;
@@ -197,6 +224,7 @@ int main(void)
         cmocka_unit_test(numbers), cmocka_unit_test(matrices), cmocka_unit_test(reading),
         cmocka_unit_test(reading_refused), cmocka_unit_test(ambiguous_columns),
         cmocka_unit_test(equal_pairs), cmocka_unit_test(different_pairs),
+        cmocka_unit_test(too_many_pairs),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);
 }

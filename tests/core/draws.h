@@ -24,7 +24,7 @@ static inline copula *elliptical(struct sample_copula *s, const char *word, size
                                  double correlation, double df)
 {
     s->c = (copula){ .family = family_named(word), .dimension = d, .matrix = s->matrix,
-                     .df = s->df };
+                     .df = df > 0 ? s->df : NULL };
     for (size_t i = 0; i < d; i++) {
         s->df[i] = df;
         for (size_t j = 0; j < d; j++) s->matrix[i * d + j] = i == j ? 1 : correlation;

@@ -86,6 +86,16 @@ static void means(void **state)
     }
     struct sample_copula s;
     mean_is_tau(elliptical(&s, "gaussian", 2, 0.5, 0), 1.0 / 3, 2e-9);
+    mean_is_tau(elliptical(&s, "gaussian", 2, 0.99, 0), asin(0.99) / asin(1), 2e-9);
+}
+
+/* By definition, the integral over the first normal score, with mpmath, 22 digits. */
+static void strong_dependence(void **state)
+{
+    (void)state;
+    struct sample_copula s;
+    double known = 0.01140003669861097831;
+    assert_within(kendall(elliptical(&s, "gaussian", 2, 0.996, 0), 0.01), known, 1e-9);
 }
 
 /* elliptical pairs with t: K of a draw, within 4.5 standard errors of a share */
@@ -134,7 +144,7 @@ int main(void)
     gsl_set_error_handler_off();
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(closed_forms), cmocka_unit_test(means),
-        cmocka_unit_test(mean_of_heavy_tails),
+        cmocka_unit_test(mean_of_heavy_tails), cmocka_unit_test(strong_dependence),
         cmocka_unit_test(curve_of_a_draw), cmocka_unit_test(ends), cmocka_unit_test(many),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

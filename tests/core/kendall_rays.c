@@ -158,7 +158,7 @@ static copula *simulated_copula(const struct csv *t, size_t row, struct sample_c
     copula *c = elliptical(s, word, d, 0, 0);
     for (size_t i = 0; i < d; i++)
         for (size_t j = 0; j < i; j++) set_correlation(s, i, j, a[i] * a[j]);
-    numbers_of(csv_text(t, row, "df"), s->df);
+    if (numbers_of(csv_text(t, row, "df"), s->df) > 0) c->df = s->df;
     return c;
 }
 

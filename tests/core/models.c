@@ -183,9 +183,14 @@ static void cells_that_are_wrong(void **state)
     refused("copula,t,;dimension,2,;df,4,;matrix,1,0.5;,0.5,", BAD_KIND,
             "model has an empty cell in row 5, column 3, not the matrix");
     refused("copula,t,;dimension,2,;df,4,;matrix,1,0.5", BAD_KIND,
-            "model has a matrix of 1 rows from row 4 on, not 2");
+            "model has a matrix of 1 row from row 4 on, not 2 (does the range hold the whole "
+            "block?)");
     refused("copula,t,;dimension,3,;df,4,;matrix,1,0.5;,0.5,1", BAD_KIND,
-            "model has a matrix of 2 rows from row 4 on, not 3");
+            "model has a matrix of 2 rows from row 4 on, not 3 (does the range hold the whole "
+            "block?)");
+    refused("copula,gaussian,;dimension,2,;matrix,motor,cargo;,1,0.5;,0.5,1", BAD_KIND,
+            "model has the text \"motor\" in row 3, column 2, where a number of the matrix is "
+            "needed (names go into a row with the label lines)");
     refused("copula,t,,;dimension,2,,;df,4,,;matrix,1,0.5,0;,0.5,1,", BAD_KIND,
             "model has too much beside the matrix, in row 4, column 4");
     refused("copula,t,,;dimension,3,,;df,4,5,;matrix,1,0,0;,0,1,0;,0,0,1", BAD_KIND,

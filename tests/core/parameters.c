@@ -269,6 +269,8 @@ static void models_refused(void **state)
             "parameter is missing: gaussian needs a matrix, or one correlation for all pairs");
     refused("MODEL", 2, (value[]){ text("gumbel"), number(0.5) }, OUT_OF_DOMAIN,
             "theta is 0.5, but gumbel in two dimensions takes [1;1e+17]");
+    refused("MODEL", 2, (value[]){ text("gumbel"), number(0) }, OUT_OF_DOMAIN,
+            "theta is 0, but gumbel in two dimensions takes [1;1e+17] (a blank cell counts as 0)");
     refused("MODEL", 2, (value[]){ text("gumbel"), cells(&p, "1,0;0,1") }, BAD_KIND,
             "parameter must be one number");
     refused("MODEL", 2, (value[]){ text("gumbel"), text("two") }, BAD_KIND,
@@ -282,8 +284,14 @@ static void models_refused(void **state)
             "df has 3 values, but must have 1 or 2, one a column");
     refused("MODEL", 3, (value[]){ text("t"), number(0.5), cells(&p, "4;-5") }, OUT_OF_DOMAIN,
             "df is -5, but must be above 0 and at most 1000000000");
+    refused("MODEL", 3, (value[]){ text("t"), number(0.5), number(-1) }, OUT_OF_DOMAIN,
+            "df is -1, but must be above 0 and at most 1000000000");
     refused("MODEL", 4, (value[]){ text("gumbel"), number(2), nothing(), number(45) },
             OUT_OF_DOMAIN, "rotation is 45, but must be 0, 90, 180 or 270");
+    refused("MODEL", 4, (value[]){ text("gumbel"), number(2), nothing(), number(-90) },
+            OUT_OF_DOMAIN, "rotation is -90, but must be 0, 90, 180 or 270");
+    refused("MODEL", 4, (value[]){ text("gumbel"), number(2), nothing(), number(1e300) },
+            OUT_OF_DOMAIN, "rotation is 1e+300, but must be 0, 90, 180 or 270");
     refused("MODEL", 5, (value[]){ word, number(0.3), nothing(), nothing(), number(5000) },
             OUT_OF_DOMAIN, "dimension is 5000, but gaussian has at most 4000");
     refused("MODEL", 5,
@@ -323,6 +331,26 @@ static void matrices_refused(void **state)
     pool_empty(&p);
 }
 
+/* The degrees of freedom of another line would give a wrong number. */
+static void df_of_named_lines(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    pool *p = &c.pool;
+    const char *matrix = "motor,property,cargo;1,0.3,0.2;0.3,1,0.1;0.2,0.1,1";
+    value t = text("t"), r = cells(p, matrix), bare = cells(p, strchr(matrix, ';') + 1);
+    refused("MODEL", 3, (value[]){ t, r, cells(p, "cargo,property,motor;3,4,5") }, BAD_KIND,
+            "df names line 1 \"cargo\", but the matrix names it \"motor\"");
+    refused("MODEL", 3, (value[]){ t, r, cells(p, "motor,,fire;3,4,5") }, BAD_KIND,
+            "df names line 3 \"fire\", but the matrix names it \"cargo\"");
+    const copula *m = model_of(&c, 3, (value[]){ t, r, cells(p, "Motor,property, cargo ;3,4,5") });
+    assert_same(m->df[2], 5);
+    model_of(&c, 3, (value[]){ t, bare, cells(p, "cargo,property,motor;3,4,5") });
+    model_of(&c, 3, (value[]){ t, r, cells(p, "df;3;4;5") });
+    model_of(&c, 3, (value[]){ t, r, cells(p, "df;3") });
+    pool_empty(p);
+}
+
 /* A blank cell reaches a function as 0. */
 static void df_of_a_blank_cell(void **state)
 {
@@ -345,7 +373,8 @@ static void every_take_can_fail(void **state)
     (void)state;
     for (size_t fail_at = 1;; fail_at++) {
         struct call c = { 0 };
-        value in[] = { text("t"), cells(&c.pool, "motor,cargo;1,0.3;0.3,1"), number(4) };
+        value in[] = { text("t"), cells(&c.pool, "motor,cargo;1,0.3;0.3,1"),
+                       cells(&c.pool, "motor,cargo;4,5") };
         c.pool.fail_at = c.pool.taken + fail_at;
         call(&c, "MODEL", 3, in);
         bool failed = c.pool.taken >= c.pool.fail_at;
@@ -365,7 +394,8 @@ int main(void)
         cmocka_unit_test(list_of_families), cmocka_unit_test(negative_theta),
         cmocka_unit_test(greiner), cmocka_unit_test(models),
         cmocka_unit_test(layout), cmocka_unit_test(models_refused),
-        cmocka_unit_test(matrices_refused), cmocka_unit_test(df_of_a_blank_cell),
+        cmocka_unit_test(matrices_refused), cmocka_unit_test(df_of_named_lines),
+        cmocka_unit_test(df_of_a_blank_cell),
         cmocka_unit_test(every_take_can_fail),
     };
     return cmocka_run_group_tests(tests, NULL, NULL);

@@ -100,6 +100,22 @@ static value halves(pool *p, size_t rows, size_t cols)
     return v;
 }
 
+/* Points that all say the same tell no error; a density that no number holds. */
+static void why_it_is_so(void **state)
+{
+    (void)state;
+    struct call c = { 0 };
+    pool *p = &c.pool;
+    value frank = model(&c, "frank", 3, 0, 180, 100);
+    call(&c, "WHY", 3, (value[]){ text("KENDALLOF"), frank, number(0.3) });
+    assert_string_equal(c.out.text, "fine: by quasi-Monte Carlo with 64 points, which all agree");
+    value many = model(&c, "clayton", 1e17, 0, 0, 40);
+    call(&c, "WHY", 3, (value[]){ text("DENSITY"), many, halves(p, 1, 40) });
+    assert_string_equal(c.out.text, "no cell has a value: 1 cell of the result holds an error, the "
+                                    "first in row 1, column 1: the density is above 1e308");
+    pool_empty(p);
+}
+
 /* Many rows: fewer points each, and an error that says so; too many are refused. */
 static void takes_too_long(void **state)
 {
@@ -118,7 +134,7 @@ static void takes_too_long(void **state)
     call(&c, "CONDITIONAL", 2, (value[]){ gumbel, halves(p, 2, 1000) });
     assert_close(cell(&c, 1, 999), 0.36820332388547027, 1e-10);     /* mpmath, 150 digits */
     refused("KENDALLOF", t, halves(p, 100, 20), OUT_OF_DOMAIN,
-            "2000 values of this model would take about 40 s: ask for fewer at a time");
+            "2000 values of this model would take about 50 s: ask for fewer at a time");
     pool_empty(p);
 }
 
@@ -244,7 +260,8 @@ int main(void)
     const struct CMUnitTest tests[] = {
         cmocka_unit_test(values), cmocka_unit_test(errors_are_told), cmocka_unit_test(refusals),
         cmocka_unit_test(bands),
-        cmocka_unit_test(takes_too_long), cmocka_unit_test(grouped_t),
+        cmocka_unit_test(takes_too_long), cmocka_unit_test(why_it_is_so),
+        cmocka_unit_test(grouped_t),
         cmocka_unit_test(kendall_distribution),
         cmocka_unit_test(every_take_can_fail),
     };
