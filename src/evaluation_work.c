@@ -20,7 +20,7 @@
 
 #include <math.h>
 
-static const double LONG_ENOUGH = 2;          /* seconds for probabilities by quasi-Monte Carlo */
+static const double LONG_ENOUGH = 1;          /* seconds for probabilities by quasi-Monte Carlo */
 static const double ENOUGH_FOR_RAYS = 2;      /* seconds for those of one Kendall distribution */
 static const double LOWEST_DF_ON_CURVE = 0.25;   /* of kendall_distribution.c */
 enum { MOST_RAYS = 4096, FEWEST_RAYS = 64, POINTS_FOR_A_RAY = 16 };

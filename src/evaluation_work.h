@@ -28,7 +28,7 @@ double kendall_seconds(const struct evaluation *e, size_t n);
 size_t box_points(const struct evaluation *e);
 
 /* Where n probabilities are by quasi-Monte Carlo: halves the number of points, down to 2,048, until
- * they take about 2 seconds. Returns what they take then, also where nothing can be halved. */
+ * they take about a second. Returns what they take then, also where nothing can be halved. */
 double with_fewer_box_points(const struct evaluation *e, size_t n);
 
 #endif

@@ -293,15 +293,15 @@ const function points_functions[] = {
             "gaussian and t beyond pairs by quasi-Monte Carlo (Genz 1992; Genz & Bretz 2002) with "
             "32,768 points, drawn about where the probability lies (Botev 2017), which leaves an "
             "error of a hundredth of a percent of the number in three columns, and of some tenths "
-            "in a hundred, in the tails too; WHY states the standard error. More rows than take 2 "
-            "s get fewer points each, down to 2,048. Archimedean families in any dimension by "
-            "their generator, rotated by 180 as the mean over their frailty (Marshall & Olkin "
-            "1988) of the product of what the columns then do by themselves, to 1e-10 relative "
-            "too. A row with a gap gives an empty cell; points with a header give a column with "
-            "the header cdf. What would take more than about 20 s is refused. The probability that "
-            "all columns are above a point is that of the model with rotation 180 at 1 - u; give "
-            "that as it is, 1e-20 where u is 1 - 1e-20. A computed range such as 1-A2:C2 reaches a "
-            "function whole only in a formula entered with Ctrl+Shift+Enter.",
+            "in a hundred, in the tails too; WHY states the standard error. Rows that would take "
+            "more than about a second get fewer points each, down to 2,048. Archimedean families "
+            "in any dimension by their generator, rotated by 180 as the mean over their frailty "
+            "(Marshall & Olkin 1988) of the product of what the columns then do by themselves, to "
+            "1e-10 relative too. A row with a gap gives an empty cell; points with a header give a "
+            "column with the header cdf. What would take more than about 20 s is refused. The "
+            "probability that all columns are above a point is that of the model with rotation 180 "
+            "at 1 - u; give that as it is, 1e-20 where u is 1 - 1e-20. A computed range such as "
+            "1-A2:C2 reaches a function whole only in a formula entered with Ctrl+Shift+Enter.",
         .examples = {
             { "CDF(MODEL(\"gaussian\";0.5);{0.5;0.5})", "0.333333333333333" },
             { "CDF(MODEL(\"clayton\";1);{0.5;0.5|0.2;0.9})", "0.333333333333333" },

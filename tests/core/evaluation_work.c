@@ -25,7 +25,7 @@ static void fewer_points(void **state)
     assert_int_equal(box_points(&e), 32768);
     assert_int_equal(cdf_at(&e, half, &value, &all), OK);
     double seconds = cdf_seconds(&e);
-    assert_true(with_fewer_box_points(&e, 2000) < 2);
+    assert_true(with_fewer_box_points(&e, 1000) < 1);
     assert_int_equal(box_points(&e), 8192);
     assert_within(cdf_seconds(&e), seconds / 4, 1e-6);
     assert_true(with_fewer_box_points(&e, 1000000) > 100);

@@ -126,7 +126,7 @@ static void takes_too_long(void **state)
     value gumbel = model(&c, "gumbel", 2, 0, 0, 1000), t = model(&c, "t", 0.5, 4, 0, 2);
     call(&c, "CDF", 2, (value[]){ three, halves(p, 700, 3) });
     assert_within(cell(&c, 699, 0), 0.25, 1e-4);
-    assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo with 16384 points, with a standard"));
+    assert_non_null(strstr(c.report.facts, "quasi-Monte Carlo with 8192 points, with a standard"));
     refused("CDF", wide, halves(p, 10000, 128), OUT_OF_DOMAIN,
             "10000 points of this model would take about 113 s: ask for fewer at a time");
     refused("FROMCONDITIONAL", gumbel, halves(p, 3000, 1000), OUT_OF_DOMAIN,
