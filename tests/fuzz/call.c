@@ -88,6 +88,12 @@ static void print_value(const char *name, const value *v)
     printf("\n");
 }
 
+/* KENDALLOF takes a second by design, as long as thousands of other calls. */
+static bool too_often(const function *f)
+{
+    return !strcmp(f->name, "kendallOf") && !once_in(30);
+}
+
 static const function *any_function(void)
 {
     size_t n = 0;
@@ -95,7 +101,7 @@ static const function *any_function(void)
     for (const function *const *group = function_tables; *group; group++)
         for (const function *f = *group; f->name; f++)
             if (once_in(++n)) chosen = f;
-    return chosen;
+    return too_often(chosen) ? any_function() : chosen;
 }
 
 static bool one_call(uint64_t seed, size_t *fine)
