@@ -18,6 +18,7 @@
  */
 #include "chi_square_score.h"
 
+#include "elementary.h"
 #include "normal.h"
 #include "quadrature.h"
 #include "stirling.h"
@@ -26,15 +27,6 @@
 
 enum { TERMS = STUDENT_TERMS, PER_DOUBLING = 4 };
 static const double NEAR = 8, FARTHEST = 1e12, PI = 3.14159265358979323846;
-
-/* exp(x) - 1 - x */
-static double exp_beyond_line(double x)
-{
-    if (fabs(x) > 0.5) return expm1(x) - x;
-    double sum = 0;
-    for (int n = 16; n >= 2; n--) sum = (1 + sum) * x / n;
-    return sum * x;
-}
 
 /* side: -1 for the lower tail, 1 for the upper one. */
 struct falling {
@@ -45,7 +37,7 @@ static double fall(double r, const void *with)
 {
     const struct falling *f = with;
     double out = f->side * r;
-    return exp(-f->a * (f->slope * expm1(out) + exp_beyond_line(out)));
+    return exp(-f->a * (f->slope * expm1(out) + portable_exp_beyond_line(out)));
 }
 
 static double integrated_fall(double t, double a, double side)
@@ -62,7 +54,7 @@ static double log_ratio_at(const struct chi_square_score *s, double z, double si
     double t = side > 0 ? log1p(part + sqrt(2 * part)) : -part - sqrt(2 * part);
     for (int i = 0; i < 60; i++) {
         double integral = integrated_fall(t, a, side);
-        double found = s->log_k - a * exp_beyond_line(t) + log(integral);
+        double found = s->log_k - a * portable_exp_beyond_line(t) + log(integral);
         double step = side * (found - wanted) * integral;
         t += step;
         if (fabs(step) <= 1e-15 * fabs(t)) break;

@@ -57,6 +57,14 @@ double portable_expm1(double x)
     return n == 0 ? p : power_of_two(n) * (p + (1.0 - power_of_two(-n)));
 }
 
+double portable_exp_beyond_line(double x)
+{
+    if (fabs(x) > 0.5) return portable_expm1(x) - x;
+    double sum = 0.0;
+    for (int n = 16; n >= 2; n--) sum = (1.0 + sum) * x / n;
+    return sum * x;
+}
+
 double portable_log(double x)
 {
     if (x != x || x < 0.0) return NAN;

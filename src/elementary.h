@@ -17,6 +17,9 @@ double portable_exp(double x);
 /* e^x - 1 without cancellation; below two units in the last place. */
 double portable_expm1(double x);
 
+/* e^x - 1 - x without cancellation */
+double portable_exp_beyond_line(double x);
+
 /* natural logarithm; log 0 is -infinity, of a negative number NaN */
 double portable_log(double x);
 

@@ -105,7 +105,7 @@ static void take_scales(struct box_points *b, double *u)
 }
 
 FOR_EACH_PROCESSOR
-static void subtract_rows(double *restrict rest, double times, const double *restrict y)
+void subtract_rows(double *restrict rest, double times, const double *restrict y)
 {
     for (int i = 0; i < ROWS_AT_ONCE; i++) rest[i] -= times * y[i];
 }

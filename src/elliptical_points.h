@@ -56,6 +56,9 @@ bool elliptical_box_halve(struct elliptical_points *m);
 status elliptical_box(const struct elliptical_points *m, const double *u, double *value,
                       double *error);
 
+/* Takes `times` y from the rest, for ROWS_AT_ONCE points. */
+void subtract_rows(double *restrict rest, double times, const double *restrict y);
+
 /* ---- grouped_points.c, grouped_pair.c: several df, one uniform driving all chi-squares ---- */
 
 struct grouped_points;

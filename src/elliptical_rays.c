@@ -125,12 +125,6 @@ static void choose(const struct rays *r, const double *u, int seed, size_t index
 
 /* ---- C on it ---- */
 
-FOR_EACH_PROCESSOR
-static void subtract_rows(double *restrict rest, double times, const double *restrict y)
-{
-    for (int i = 0; i < ROWS_AT_ONCE; i++) rest[i] -= times * y[i];
-}
-
 /* rest / pivot becomes the probability below it; without a pivot 1 or 0 */
 static void probabilities_below(double *rest, double pivot)
 {

@@ -84,19 +84,10 @@ static double log_integral(log_integrand *f, const struct frailty_mean *m, doubl
 
 /* ---- gamma ---- */
 
-/* e^x - 1 - x */
-static double second_order(double x)
-{
-    if (fabs(x) > 0.5) return expm1(x) - x;
-    double sum = 1;
-    for (int k = 16; k >= 3; k--) sum = 1 + sum * x / k;
-    return sum * x * x / 2;
-}
-
 static double log_with_gamma(double x, const void *with)
 {
     const struct frailty_mean *m = with;
-    return log_product(x - log(m->theta), m) - second_order(x) / m->theta;
+    return log_product(x - log(m->theta), m) - portable_exp_beyond_line(x) / m->theta;
 }
 
 double gamma_mean(struct frailty_mean *m)

@@ -134,19 +134,10 @@ static void fill_tail(struct student *s)
         for (int n = 0; n < TERMS; n++) s->tail[k][n] *= 0.5 / edge;
 }
 
-/* exp(x) - 1 - x */
-static double exp_beyond_line(double x)
-{
-    if (fabs(x) > 0.5) return portable_expm1(x) - x;
-    double sum = 0.0;
-    for (int n = 16; n >= 2; n--) sum = (1.0 + sum) * x / n;
-    return sum * x;
-}
-
 /* log of the density of y = log(chi2 / df) / 2, log_k being log K */
 static double log_density(double y, double df, double log_k)
 {
-    return log_k - 0.5 * df * exp_beyond_line(2.0 * y);
+    return log_k - 0.5 * df * portable_exp_beyond_line(2.0 * y);
 }
 
 /* The y beyond which the tail on the side of `sign` has the probability Phi(-z), by the leading
